@@ -1,0 +1,5 @@
+//! Faults in files that people write or bring: what, where, what is allowed, what to do.
+
+pub mod fault;
+pub mod render;
+pub mod source;

@@ -1,0 +1,3 @@
+//! The earth: positions, distances and bearings, light.
+
+pub mod position;

@@ -1,0 +1,9 @@
+//! snugdown: from a tropical-cyclone forecast to a port's timed closure checklist.
+//!
+//! The rooms stand on floors and import downwards only; `DEVELOPERS.md` draws the house.
+
+pub mod advisory;
+pub mod finding;
+pub mod geo;
+pub mod time;
+pub mod units;

@@ -1,0 +1,1 @@
+//! The port's clock: local time at the edges, UTC inside.

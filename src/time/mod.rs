@@ -1,0 +1,6 @@
+//! Time: whole minutes UTC inside, the port's clock at the edges.
+
+pub mod clock;
+pub mod moment;
+pub mod span;
+pub mod windows;
