@@ -5,5 +5,9 @@
 pub mod advisory;
 pub mod finding;
 pub mod geo;
+pub mod port;
+pub mod record;
+pub mod rules;
+pub mod tide;
 pub mod time;
 pub mod units;

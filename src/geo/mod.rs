@@ -1,3 +1,4 @@
-//! The earth: positions, distances and bearings, light.
+//! The earth: positions, distances and bearings, exposure, light.
 
+pub mod exposure;
 pub mod position;

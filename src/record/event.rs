@@ -1,0 +1,143 @@
+//! One event in the port's record.
+
+use crate::finding::fault::Place;
+use crate::time::moment::Minutes;
+use crate::units::speed::Knots;
+use crate::units::wind::Averaging;
+use chrono::{DateTime, Utc};
+
+/// Something that became known, was ordered, or was done. Never changed: a mistake is mended by a later event.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Event {
+    /// When the port knew it.
+    pub known: DateTime<Utc>,
+    /// Who says so, by title.
+    pub by: String,
+    /// What.
+    pub what: What,
+    /// How it is known, or why it is ordered; empty if not said.
+    pub reason: String,
+    /// Where it stands in the record.
+    pub place: Place,
+}
+
+/// What an event says.
+#[derive(Clone, Debug, PartialEq)]
+pub enum What {
+    /// An advisory came in; its file within the port's folder.
+    AdvisoryTaken {
+        /// The file's name.
+        file: String,
+    },
+    /// The harbourmaster adopts one working arrival time of gales at a reference place, until changed by order.
+    ArrivalAdopted {
+        /// The reference place.
+        place: String,
+        /// The wind.
+        wind: Knots,
+        /// The time; `None` withdraws the adopted one, and the computed one counts again.
+        time: Option<DateTime<Utc>>,
+    },
+    /// A stage is declared, from this time on.
+    StageDeclared {
+        /// The stage.
+        stage: String,
+        /// From when it holds; when it is known if not said.
+        from: DateTime<Utc>,
+    },
+    /// A stage is lifted.
+    StageLifted {
+        /// The stage.
+        stage: String,
+        /// From when.
+        from: DateTime<Utc>,
+    },
+    /// Work on a task began.
+    TaskStarted {
+        /// Full task id.
+        task: String,
+        /// When it began.
+        at: DateTime<Utc>,
+        /// Who does it, if known: members by id.
+        members: Vec<String>,
+    },
+    /// A task is done.
+    TaskDone {
+        /// Full task id.
+        task: String,
+        /// When it was finished.
+        at: DateTime<Utc>,
+        /// Evidence, in words.
+        evidence: String,
+    },
+    /// A task cannot be done.
+    TaskCannot {
+        /// Full task id.
+        task: String,
+    },
+    /// A task is not needed.
+    TaskNotNeeded {
+        /// Full task id.
+        task: String,
+    },
+    /// A task takes another time than the files say, in all.
+    TaskTakes {
+        /// Full task id.
+        task: String,
+        /// How long it takes in all.
+        takes: Minutes,
+    },
+    /// A task may not start before this.
+    TaskNotBefore {
+        /// Full task id.
+        task: String,
+        /// The time.
+        time: DateTime<Utc>,
+    },
+    /// By order a task starts at this time and is not moved.
+    TaskFixed {
+        /// Full task id.
+        task: String,
+        /// Its start; `None` lifts the order.
+        start: Option<DateTime<Utc>>,
+    },
+    /// By order a task may take its shorter way, or must.
+    CutOrdered {
+        /// Full task id.
+        task: String,
+    },
+    /// By order the substitute of a task is taken: the task itself is given up.
+    SubstituteOrdered {
+        /// Full task id.
+        task: String,
+    },
+    /// A member of a pool is out of service.
+    MeansOut {
+        /// The member.
+        member: String,
+        /// From when.
+        from: DateTime<Utc>,
+        /// Until when; `None` if unknown.
+        until: Option<DateTime<Utc>>,
+    },
+    /// A member of a pool is back.
+    MeansBack {
+        /// The member.
+        member: String,
+        /// From when.
+        from: DateTime<Utc>,
+    },
+    /// A wind was observed.
+    Observed {
+        /// The place.
+        place: String,
+        /// The speed.
+        wind: Knots,
+        /// Over which time it is averaged.
+        averaging: Averaging,
+        /// When.
+        at: DateTime<Utc>,
+    },
+    /// The plan made at this time was issued to those concerned.
+    PlanIssued,
+}

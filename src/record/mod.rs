@@ -1,0 +1,3 @@
+//! What was known, ordered, told and done, as plain values, and the situation that follows from it.
+
+pub mod event;

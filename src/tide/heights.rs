@@ -1,0 +1,5 @@
+//! The height of the tide at an instant.
+
+/// A port's tide.
+#[derive(Clone, Debug)]
+pub struct Tide;
