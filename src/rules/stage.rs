@@ -1,5 +1,6 @@
 //! Readiness stages, what triggers them, and the duties that hang on them.
 
+use crate::finding::fault::Place;
 use crate::rules::limit::{Deadline, Reckoning, WindAt};
 use crate::rules::pick::Pick;
 use crate::rules::task::{LinkSpec, TaskSpec};
@@ -45,6 +46,8 @@ pub struct Stage {
     pub status: Vec<(String, String)>,
     /// Whether it belongs to the way down (closing) or up (re-opening).
     pub direction: StageDirection,
+    /// Where it stands in its file.
+    pub written: Place,
 }
 
 /// Closing or re-opening.
@@ -108,4 +111,6 @@ pub struct Duty {
     pub fulfilled_by: Vec<String>,
     /// Where the rule is written.
     pub source: String,
+    /// Where it stands in its file.
+    pub written: Place,
 }

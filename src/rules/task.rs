@@ -1,5 +1,6 @@
 //! Tasks and task templates: what closing the port takes.
 
+use crate::finding::fault::Place;
 use crate::rules::limit::{Anchor, Deadline, WindAt};
 use crate::rules::pick::ForEach;
 use crate::time::moment::Minutes;
@@ -53,6 +54,8 @@ pub struct TaskSpec {
     pub weight: u32,
     /// Where its numbers come from: "common practice, no source; unconfirmed".
     pub basis: String,
+    /// Where it stands in its file.
+    pub written: Place,
 }
 
 /// What is at stake when a task is not done, the gravest first.
@@ -119,6 +122,8 @@ pub struct LinkSpec {
     pub lag: Minutes,
     /// What becomes of this task if the other is given up.
     pub if_given_up: IfGivenUp,
+    /// Where it stands in its file.
+    pub written: Place,
 }
 
 /// Which task a link comes from.
