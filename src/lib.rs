@@ -5,9 +5,14 @@
 pub mod advisory;
 pub mod finding;
 pub mod geo;
+<<<<<<< HEAD
 pub mod port;
 pub mod record;
 pub mod rules;
 pub mod tide;
+=======
+pub mod schedule;
+>>>>>>> engine
 pub mod time;
 pub mod units;
+pub mod plan;
