@@ -5,14 +5,11 @@
 pub mod advisory;
 pub mod finding;
 pub mod geo;
-<<<<<<< HEAD
+pub mod plan;
 pub mod port;
 pub mod record;
 pub mod rules;
-pub mod tide;
-=======
 pub mod schedule;
->>>>>>> engine
+pub mod tide;
 pub mod time;
 pub mod units;
-pub mod plan;

@@ -387,10 +387,6 @@ impl Plan {
     #[must_use]
     pub fn fits(&self) -> bool {
         self.breaches.is_empty()
-            && self
-                .tasks
-                .iter()
-                .all(|task| task.state != TaskState::GivenUp && task.late_by <= Minutes::ZERO)
+            && self.tasks.iter().all(|task| task.state != TaskState::GivenUp && task.late_by <= Minutes::ZERO)
     }
 }
-
