@@ -13,3 +13,4 @@ pub mod schedule;
 pub mod tide;
 pub mod time;
 pub mod units;
+pub mod work;
