@@ -111,6 +111,13 @@ pub enum What {
         /// Full task id.
         task: String,
     },
+    /// What was told or ordered about a task is taken back, as if never said; for a fixed start see `TaskFixed`.
+    TaskRetracted {
+        /// Full task id.
+        task: String,
+        /// What of it.
+        kind: Retracted,
+    },
     /// A member of a pool is out of service.
     MeansOut {
         /// The member.
@@ -140,4 +147,28 @@ pub enum What {
     },
     /// The plan made at this time was issued to those concerned.
     PlanIssued,
+}
+
+/// What an event can take back about a task.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Retracted {
+    /// That it started, is done, cannot be done or is not needed: somebody ticked the wrong line.
+    Progress,
+    /// How long it takes: the files count again.
+    Takes,
+    /// The time before which it may not start.
+    NotBefore,
+    /// The order to cut it or to take its substitute.
+    Way,
+}
+
+impl Event {
+    /// Whether `other` says the same, wherever it stands in the record.
+    #[must_use]
+    pub fn says_the_same(&self, other: &Event) -> bool {
+        self.known == other.known
+            && self.by == other.by
+            && self.what == other.what
+            && self.reason == other.reason
+    }
 }

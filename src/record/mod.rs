@@ -1,3 +1,5 @@
 //! What was known, ordered, told and done, as plain values, and the situation that follows from it.
 
 pub mod event;
+pub mod mention;
+pub mod situation;
