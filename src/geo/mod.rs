@@ -1,3 +1,4 @@
 //! The earth: positions, distances and bearings, light.
 
+pub mod geodesic;
 pub mod position;
