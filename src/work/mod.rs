@@ -3,3 +3,6 @@
 pub mod circle;
 pub mod expand;
 pub mod graph;
+pub mod questions;
+pub mod reckoned;
+pub mod timed;
