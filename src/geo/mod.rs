@@ -1,4 +1,5 @@
 //! The earth: positions, distances and bearings, exposure, light.
 
 pub mod exposure;
+pub mod geodesic;
 pub mod position;
