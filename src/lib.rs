@@ -8,6 +8,7 @@ pub mod geo;
 pub mod port;
 pub mod record;
 pub mod rules;
+pub mod text;
 pub mod tide;
 pub mod time;
 pub mod units;

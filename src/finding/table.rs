@@ -42,46 +42,50 @@ pub struct TableCodes {
     pub time_fold: &'static str,
 }
 
-/// One file being read: its text, and what was found wrong so far.
+/// One file being read: its text, its tables, and what was found wrong so far.
 #[derive(Debug)]
 pub struct Page<'s> {
     source: &'s SourceText,
     codes: &'static TableCodes,
+    table: Option<Spanned<DeTable<'s>>>,
     findings: RefCell<Vec<Finding>>,
 }
 
 impl<'s> Page<'s> {
-    /// A page on which nothing was found yet.
-    #[must_use]
-    pub fn new(source: &'s SourceText, codes: &'static TableCodes) -> Page<'s> {
-        Page { source, codes, findings: RefCell::new(Vec::new()) }
-    }
-
-    /// The whole file as a table; `None`, and findings, if it is not TOML.
+    /// A file as a table; if it is not TOML the page has findings, and no keys.
     ///
-    /// A key that stands twice is a finding, but what stands first is read on.
+    /// A key that stands twice is a finding too, but what stands first is read on.
     #[must_use]
-    pub fn parse(&self) -> Option<Spanned<DeTable<'s>>> {
-        let (table, errors) = DeTable::parse_recoverable(self.source.text());
+    pub fn read(source: &'s SourceText, codes: &'static TableCodes) -> Page<'s> {
+        let (table, errors) = DeTable::parse_recoverable(source.text());
+        let mut page = Page { source, codes, table: None, findings: RefCell::new(Vec::new()) };
         let mut is_readable = true;
         for error in errors.iter().take(MOST_SYNTAX_FINDINGS) {
-            let place = self.place(error.span().unwrap_or(0..0));
-            if error.message().contains("duplicate key") {
-                self.report(Finding::error(
-                    self.codes.duplicate_key,
-                    place,
-                    "this key stands twice in one table",
-                    "each key may stand once",
-                    "remove one of the two",
-                ));
-            } else {
-                is_readable = false;
-                let found = error.message().lines().collect::<Vec<_>>().join("; ");
-                let to_do = "mend this first: the rest of this file was not checked";
-                self.report(Finding::error(self.codes.syntax, place, found, "", to_do));
-            }
+            is_readable &= page.is_only_a_repeated_key(error);
         }
-        is_readable.then_some(table)
+        page.table = is_readable.then_some(table);
+        page
+    }
+
+    fn is_only_a_repeated_key(&self, error: &toml::de::Error) -> bool {
+        let place = self.place(error.span().unwrap_or(0..0));
+        let is_repeated = error.message().contains("duplicate key");
+        self.report(if is_repeated {
+            let (found, allowed) = ("this key stands twice in one table", "each key may stand once");
+            Finding::error(self.codes.duplicate_key, place, found, allowed, "remove one of the two")
+        } else {
+            let found = error.message().lines().collect::<Vec<_>>().join("; ");
+            let to_do = "mend this first: the rest of this file was not checked";
+            Finding::error(self.codes.syntax, place, found, "", to_do)
+        });
+        is_repeated
+    }
+
+    /// The keys of the whole file; `None` if it is not TOML.
+    #[must_use]
+    pub fn keys(&self) -> Option<Keys<'_>> {
+        let table = self.table.as_ref()?.get_ref();
+        Some(Keys { page: self, table, span: 0..0, what: "this file", asked: BTreeSet::new() })
     }
 
     /// The place of some bytes of the file.
@@ -202,6 +206,12 @@ impl<'t> Item<'t> {
     #[must_use]
     pub fn is_table(&self) -> bool {
         self.value.get_ref().is_table()
+    }
+
+    /// Whether it is a list.
+    #[must_use]
+    pub fn is_list(&self) -> bool {
+        self.value.get_ref().is_array()
     }
 
     /// Whether it is a whole number.
@@ -349,12 +359,6 @@ pub struct Keys<'t> {
 }
 
 impl<'t> Keys<'t> {
-    /// The keys of a whole file.
-    #[must_use]
-    pub fn of_file(page: &'t Page<'t>, table: &'t Spanned<DeTable<'t>>) -> Keys<'t> {
-        Keys { page, table: table.get_ref(), span: 0..0, what: "this file", asked: BTreeSet::new() }
-    }
-
     /// Where the table stands: its heading, or its opening bracket.
     #[must_use]
     pub fn place(&self) -> Place {
@@ -401,7 +405,13 @@ impl<'t> Keys<'t> {
     /// The tables under a heading in double brackets, or none.
     #[must_use]
     pub fn tables(&mut self, key: &'static str) -> Vec<Item<'t>> {
-        self.optional(key).map(|item| item.list()).unwrap_or_default()
+        let Some(item) = self.optional(key) else { return Vec::new() };
+        if item.is_table() {
+            let wanted = format!("a list of tables: write the heading as [[{key}]], in double brackets");
+            item.wrong_type(&wanted);
+            return Vec::new();
+        }
+        item.list()
     }
 
     /// Which of some keys is there; a finding if none or more than one is.

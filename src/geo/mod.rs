@@ -3,3 +3,4 @@
 pub mod exposure;
 pub mod geodesic;
 pub mod position;
+pub mod position_text;
