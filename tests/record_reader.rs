@@ -246,6 +246,15 @@ fn without_a_clock_no_time_is_compared_and_no_event_counts() {
 }
 
 #[test]
+fn a_record_saved_by_another_system_reads_the_same() {
+    let saved = format!("\u{feff}{}", EXAMPLE.replace('\n', "\r\n"));
+    let (events, findings) = read(&saved);
+    assert_eq!(findings, []);
+    let what = |events: &[Event]| events.iter().map(|event| event.what.clone()).collect::<Vec<_>>();
+    assert_eq!(what(&events), what(&read(EXAMPLE).0));
+}
+
+#[test]
 fn an_empty_record_is_no_fault() {
     assert_eq!(read(""), (Vec::new(), Vec::new()));
 }

@@ -245,16 +245,11 @@ pub fn situation(events: &[Event], now: DateTime<Utc>) -> Situation {
 /// The events in order of time known, ties in the order given, without those that say the same as one before.
 #[must_use]
 pub fn in_order(events: &[Event]) -> Vec<&Event> {
-    let mut sorted: Vec<&Event> = events.iter().collect();
-    sorted.sort_by_key(|event| event.known);
-    let mut once: Vec<&Event> = Vec::with_capacity(sorted.len());
-    for event in sorted {
-        let mut at_that_time = once.iter().rev().take_while(|earlier| earlier.known == event.known);
-        if !at_that_time.any(|earlier| earlier.says_the_same(event)) {
-            once.push(event);
-        }
-    }
-    once
+    let mut once: Vec<(usize, &Event)> = events.iter().enumerate().collect();
+    once.sort_by(|(_, a), (_, b)| a.compare(b));
+    once.dedup_by(|(_, later), (_, earlier)| later.compare(earlier).is_eq());
+    once.sort_by_key(|(nth, event)| (event.known, *nth));
+    once.into_iter().map(|(_, event)| event).collect()
 }
 
 impl Situation {
