@@ -1,6 +1,7 @@
 //! What looks wrong in a record that can be read: somebody should look, but nothing is lost and nothing is guessed.
 
 use crate::finding::fault::Finding;
+use crate::record::codes;
 use crate::record::event::{Event, Retracted, What};
 use crate::record::situation::{Situation, TaskState, in_order};
 use crate::record::telling::show;
@@ -31,7 +32,7 @@ fn out_of_order(events: &[Event], clock: Option<&PortClock>) -> Vec<Finding> {
         .map(|(above, below)| {
             let (earlier, later) = (show(clock, below.known), show(clock, above.known));
             Finding::warning(
-                "record-out-of-order",
+                codes::OUT_OF_ORDER,
                 below.place.clone(),
                 format!("this was known {earlier}, but the event above it {later}"),
                 "events stand in the order in which they became known; it counts from its own time",
@@ -48,7 +49,7 @@ fn repeats(events: &[Event], once: &[&Event]) -> Vec<Finding> {
     again
         .map(|event| {
             Finding::warning(
-                "record-same-twice",
+                codes::SAME_TWICE,
                 event.place.clone(),
                 "another event says the very same",
                 "it counts once",
@@ -89,7 +90,7 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
     (done < started).then(|| {
         let (done, started) = (show(clock, done), show(clock, started));
         Finding::warning(
-            "record-done-before-started",
+            codes::DONE_BEFORE_STARTED,
             event.place.clone(),
             format!("{task} is done {done}, but started {started}"),
             effect,
@@ -138,7 +139,7 @@ fn idle(fold: &Situation, event: &Event) -> Option<Finding> {
         | What::PlanIssued => None,
     }?;
     Some(Finding::warning(
-        "record-no-effect",
+        codes::NO_EFFECT,
         event.place.clone(),
         found,
         "this event changes nothing",

@@ -1,5 +1,6 @@
 //! What was known, ordered, told and done, as plain values, and the situation that follows from it.
 
+pub mod codes;
 pub mod doubt;
 pub mod event;
 pub mod mention;

@@ -2,28 +2,14 @@
 
 use crate::finding::fault::{Finding, sort_findings};
 use crate::finding::source::SourceText;
-use crate::finding::table::{Item, Keys, Page, TableCodes};
+use crate::finding::table::{Item, Keys, Page};
+use crate::record::codes;
 use crate::record::doubt::doubts;
 use crate::record::event::{Event, Retracted, What};
 use crate::record::telling::{Telling, file_name, named, task_id, wind};
 use crate::text::quantity::{id, instant, lasting};
 use crate::time::clock::PortClock;
 use crate::units::wind::Averaging;
-
-/// The codes of faults that any table can have.
-static CODES: TableCodes = TableCodes {
-    syntax: "record-syntax",
-    duplicate_key: "record-duplicate-key",
-    unknown_key: "record-unknown-key",
-    missing_key: "record-missing-key",
-    wrong_type: "record-wrong-type",
-    no_unit: "record-no-unit",
-    bad_value: "record-bad-value",
-    unknown_word: "record-unknown-word",
-    bad_time: "record-bad-time",
-    time_gap: "record-time-gap",
-    time_fold: "record-time-fold",
-};
 
 /// Reads what one kind of event says.
 type Reading = for<'t> fn(&Telling<'_>, &mut Keys<'t>) -> Option<What>;
@@ -76,7 +62,7 @@ const RETRACTED: [(&str, Option<Retracted>); 5] = [
 /// up here; see [`crate::record::mention::mentions`].
 #[must_use]
 pub fn read_events(source: &SourceText, clock: Option<&PortClock>) -> (Vec<Event>, Vec<Finding>) {
-    let page = Page::read(source, &CODES);
+    let page = Page::read(source, &codes::TABLE);
     let mut events = page.keys().map(|file| events_of(file, clock)).unwrap_or_default();
     let doubtful = doubts(&events, clock);
     events.sort_by_key(|event| event.known);

@@ -1,6 +1,7 @@
 //! The values an event is told with: names, winds, and times judged by when the event was known.
 
 use crate::finding::table::{Item, Keys};
+use crate::record::codes;
 use crate::text::quantity::{id, instant, speed};
 use crate::time::clock::PortClock;
 use crate::time::moment::Moment;
@@ -49,7 +50,7 @@ impl Telling<'_> {
         let time = self.checked_near(&item)?;
         if self.known.is_some_and(|known| known < time) {
             item.fault(
-                "record-not-yet",
+                codes::NOT_YET,
                 format!("{} is {}, but it is told before that", item.key(), self.show(time)),
                 "what was done or seen lies at or before the time at which it is known",
                 "correct one of the two times",
@@ -73,7 +74,7 @@ impl Telling<'_> {
             return Some(end);
         };
         item.fault(
-            "record-ends-before-it-begins",
+            codes::ENDS_FIRST,
             format!("it ends {}, but begins {}", self.show(end), self.show(start)),
             "the end lies after the beginning",
             "correct one of the two times",
@@ -91,7 +92,7 @@ impl Telling<'_> {
         let time = instant(item, self.clock)?;
         if self.known.is_some_and(|known| (time - known).abs() > NEAR) {
             item.fault(
-                "record-far-off",
+                codes::FAR_OFF,
                 format!("{} is {}, more than 30 days from when it is known", item.key(), self.show(time)),
                 "times within 30 days of it",
                 "correct the day, month or year of one of the two times",
@@ -124,7 +125,7 @@ pub fn wind(keys: &mut Keys<'_>) -> Option<Knots> {
     let wind = speed(&item)?;
     if wind.get() > STRONGEST_KT {
         item.fault(
-            "record-absurd-wind",
+            codes::ABSURD_WIND,
             format!("{wind} is stronger than any wind measured outside a tornado"),
             format!("at most {STRONGEST_KT} kt"),
             "correct the speed or its unit",
@@ -159,7 +160,7 @@ pub fn file_name(item: &Item<'_>) -> Option<String> {
     let is_plain = !text.contains(|c: char| c.is_control() || matches!(c, '\\' | ':'));
     if !is_plain || !text.split('/').all(is_inside) || text.chars().count() > LONGEST_FILE {
         item.fault(
-            "record-file-outside",
+            codes::FILE_OUTSIDE,
             format!("{} = {} is not a file within the port's folder", item.key(), item.written()),
             "a name from that folder on, with forward slashes: \"advisories/12.txt\"",
             "put the file into the folder and name it so",
