@@ -10,9 +10,9 @@ use snugdown::time::moment::Minutes;
 use snugdown::units::speed::Knots;
 use snugdown::units::wind::Averaging;
 
-/// So many minutes after an arbitrary midnight.
+/// So many minutes after 1970-01-01T00:00Z.
 fn at(minute: i64) -> DateTime<Utc> {
-    "2026-09-17T00:00:00Z".parse::<DateTime<Utc>>().unwrap() + TimeDelta::minutes(minute)
+    DateTime::UNIX_EPOCH + TimeDelta::minutes(minute)
 }
 
 fn event(known: i64, what: What) -> Event {
@@ -26,7 +26,7 @@ fn told(events: &[(i64, What)]) -> Situation {
 }
 
 fn told_of_task(events: &[(i64, What)]) -> TaskState {
-    told(events).tasks.remove("T").unwrap()
+    told(events).tasks.remove("T").unwrap_or_default()
 }
 
 fn started(minute: i64) -> What {
@@ -76,7 +76,7 @@ fn adopted(time: Option<i64>) -> What {
 fn observed(wind: f64, minute: i64) -> What {
     What::Observed {
         place: "signal".into(),
-        wind: Knots::new(wind).unwrap(),
+        wind: Knots::clamped(wind),
         averaging: Averaging::Minute10,
         at: at(minute),
     }

@@ -5,6 +5,7 @@ use crate::time::moment::Minutes;
 use crate::units::speed::Knots;
 use crate::units::wind::Averaging;
 use chrono::{DateTime, Utc};
+use std::cmp::Ordering;
 
 /// Something that became known, was ordered, or was done. Never changed: a mistake is mended by a later event.
 #[derive(Clone, Debug, PartialEq)]
@@ -22,7 +23,7 @@ pub struct Event {
 }
 
 /// What an event says.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq, PartialOrd)]
 pub enum What {
     /// An advisory came in; its file within the port's folder.
     AdvisoryTaken {
@@ -163,12 +164,11 @@ pub enum Retracted {
 }
 
 impl Event {
-    /// Whether `other` says the same, wherever it stands in the record.
+    /// Orders events by when they were known, then by what they say; equal are those that say the same, wherever they stand.
     #[must_use]
-    pub fn says_the_same(&self, other: &Event) -> bool {
-        self.known == other.known
-            && self.by == other.by
-            && self.what == other.what
-            && self.reason == other.reason
+    pub fn compare(&self, other: &Event) -> Ordering {
+        let head = (self.known, &self.by, &self.reason).cmp(&(other.known, &other.by, &other.reason));
+        // No part of an event is ever NaN, so any two can be compared.
+        head.then_with(|| self.what.partial_cmp(&other.what).unwrap_or(Ordering::Equal))
     }
 }

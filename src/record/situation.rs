@@ -27,7 +27,7 @@ pub struct Situation {
     pub tasks: BTreeMap<String, TaskState>,
     /// Outages of members of pools, by member, in order of their beginning; a member with none is left out.
     pub means: BTreeMap<String, Vec<Outage>>,
-    /// Observed winds, in order told.
+    /// Observed winds, in the order in which they blew.
     pub observed: Vec<Observation>,
     /// When plans were issued, in order.
     pub issued: Vec<Said>,
@@ -235,29 +235,21 @@ pub struct Observation {
 /// * **Observation**: told again for the same place, time and averaging replaces.
 #[must_use]
 pub fn situation(events: &[Event], now: DateTime<Utc>) -> Situation {
-    let mut known: Vec<&Event> = events.iter().filter(|event| event.known <= now).collect();
-    known.sort_by_key(|event| event.known);
     let mut fold = Situation { now, ..Situation::default() };
-    let mut told: Vec<&Event> = Vec::with_capacity(known.len());
-    for event in known {
-        let at_that_time = told.iter().rev().take_while(|earlier| earlier.known == event.known);
-        if at_that_time.into_iter().any(|earlier| earlier.says_the_same(event)) || fold.has_taken(event) {
-            continue;
-        }
-        let said = Said {
-            known: event.known,
-            nth: told.len(),
-            by: event.by.clone(),
-            reason: event.reason.clone(),
-            written: event.place.clone(),
-        };
-        if fold.changes.last() != Some(&event.known) {
-            fold.changes.push(event.known);
-        }
-        fold.tell(&event.what, said);
-        told.push(event);
+    for (nth, event) in in_order(events).into_iter().take_while(|event| event.known <= now).enumerate() {
+        fold.add(event, nth);
     }
     fold
+}
+
+/// The events in order of time known, ties in the order given, without those that say the same as one before.
+#[must_use]
+pub fn in_order(events: &[Event]) -> Vec<&Event> {
+    let mut once: Vec<(usize, &Event)> = events.iter().enumerate().collect();
+    once.sort_by(|(_, a), (_, b)| a.compare(b));
+    once.dedup_by(|(_, later), (_, earlier)| later.compare(earlier).is_eq());
+    once.sort_by_key(|(nth, event)| (event.known, *nth));
+    once.into_iter().map(|(_, event)| event).collect()
 }
 
 impl Situation {
@@ -278,9 +270,28 @@ impl Situation {
         self.observed.iter().filter(|seen| seen.place == place).max_by_key(|seen| (seen.at, seen.said.nth))
     }
 
-    fn has_taken(&self, event: &Event) -> bool {
-        let What::AdvisoryTaken { file } = &event.what else { return false };
-        self.advisories.iter().any(|taken| taken.file == *file)
+    /// Whether `file` was taken already.
+    #[must_use]
+    pub fn has_taken(&self, file: &str) -> bool {
+        self.advisories.iter().any(|taken| taken.file == file)
+    }
+
+    /// Takes in the next event by [`in_order`], the `nth` from 0; for all up to a time see [`situation`].
+    pub fn add(&mut self, event: &Event, nth: usize) {
+        if matches!(&event.what, What::AdvisoryTaken { file } if self.has_taken(file)) {
+            return;
+        }
+        if self.changes.last() != Some(&event.known) {
+            self.changes.push(event.known);
+        }
+        let said = Said {
+            known: event.known,
+            nth,
+            by: event.by.clone(),
+            reason: event.reason.clone(),
+            written: event.place.clone(),
+        };
+        self.tell(&event.what, said);
     }
 
     fn tell(&mut self, what: &What, said: Said) {
@@ -365,10 +376,13 @@ impl Situation {
     }
 
     fn observe(&mut self, new: Observation) {
-        let is_same =
-            |old: &Observation| old.place == new.place && old.at == new.at && old.averaging == new.averaging;
-        self.observed.retain(|old| !is_same(old));
-        self.observed.push(new);
+        let first = self.observed.partition_point(|old| old.at < new.at);
+        let after = self.observed.partition_point(|old| old.at <= new.at);
+        let is_same = |old: &Observation| old.place == new.place && old.averaging == new.averaging;
+        match self.observed.iter_mut().take(after).skip(first).find(|old| is_same(old)) {
+            Some(old) => *old = new,
+            None => self.observed.insert(after, new),
+        }
     }
 }
 
