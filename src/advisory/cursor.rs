@@ -221,7 +221,8 @@ pub fn is_numeric(word: &str) -> bool {
 
 /// A number of digits and at most one full stop; no sign, no exponent, no "nan".
 fn plain_number(text: &str) -> Option<f64> {
-    let is_plain = !text.is_empty() && text.len() <= 7 && text.bytes().all(|b| b.is_ascii_digit() || b == b'.');
+    let is_plain =
+        !text.is_empty() && text.len() <= 7 && text.bytes().all(|b| b.is_ascii_digit() || b == b'.');
     is_plain.then(|| text.parse().ok()).flatten()
 }
 

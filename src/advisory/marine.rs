@@ -167,7 +167,7 @@ fn point(state: &State, valid: DateTime<Utc>, notes: &mut Notes) -> Option<Forec
 /// * A line with any radius above zero is taken as it stands; zeros in single quadrants are real.
 /// * Greatest wind below `speed`: that wind blows nowhere, so the reach is none, at every forecast time; that follows
 ///   from what "greatest wind" means, and is no guess about a product that carries no radii at that time.
-/// * Greatest wind at or above `speed` and no line: not given. Beyond 36 h (64 kt) and 72 h (34 and 50 kt) the texts
+/// * Greatest wind at or above `speed` and no line: not given. Beyond 36 to 48 h (64 kt) and 72 h (34 and 50 kt) the texts
 ///   of 2003 to 2023 never carry the line, however strong the storm, so its absence says nothing.
 /// * Greatest wind at or above `speed` and four zeros: a contradiction; not given, with a warning.
 fn reach(speed: Knots, wind: Knots, given: Option<(Quadrants, Range<usize>)>, notes: &mut Notes) -> Reach {

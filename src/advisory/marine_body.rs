@@ -36,8 +36,16 @@ struct Reader<'a, 'n, 's> {
 }
 
 /// The sentences at which a run of free words ends.
-const KEY_WORDS: [&str; 8] =
-    ["FORECAST VALID", "OUTLOOK VALID", "REQUEST FOR", "NEXT ADVISORY", "EXTENDED OUTLOOK", "$$", "NNNN", "MAX"];
+const KEY_WORDS: [&str; 8] = [
+    "FORECAST VALID",
+    "OUTLOOK VALID",
+    "REQUEST FOR",
+    "NEXT ADVISORY",
+    "EXTENDED OUTLOOK",
+    "$$",
+    "NNNN",
+    "MAX",
+];
 
 impl Reader<'_, '_, '_> {
     /// Goes to the sentence of the centre; watches and warnings before it are free words and never read.
@@ -122,7 +130,8 @@ impl Reader<'_, '_, '_> {
             self.body.states.first().is_some_and(|now| now.position == position && Some(now.valid) == valid);
         if !is_same {
             let range = self.cursor.range_since(at);
-            let found = format!("\"{}\" differs from the centre given above", self.notes.quote(range.clone()));
+            let found =
+                format!("\"{}\" differs from the centre given above", self.notes.quote(range.clone()));
             let to_do = "the first one is used: ask the office which of the two holds";
             self.notes.warning("advisory-repeat-differs", range, found, to_do);
         }
@@ -292,13 +301,13 @@ impl Reader<'_, '_, '_> {
 
     /// What the radii mean, in the words of 1998 and of today: nothing to keep.
     fn explanation(&mut self) -> bool {
-        let is_here = self
-            .cursor
-            .take_any(&["WINDS AND SEAS VARY GREATLY IN EACH QUADRANT", "ALL QUADRANT RADII IN NAUTICAL MILES"]);
+        let is_here = self.cursor.take_any(&[
+            "WINDS AND SEAS VARY GREATLY IN EACH QUADRANT",
+            "ALL QUADRANT RADII IN NAUTICAL MILES",
+        ]);
         if is_here {
-            self.cursor.take(
-                "RADII IN NAUTICAL MILES ARE THE LARGEST RADII EXPECTED ANYWHERE IN THAT QUADRANT",
-            );
+            self.cursor
+                .take("RADII IN NAUTICAL MILES ARE THE LARGEST RADII EXPECTED ANYWHERE IN THAT QUADRANT");
         }
         is_here
     }
@@ -410,7 +419,8 @@ impl Reader<'_, '_, '_> {
         let Some(run) = self.words.get(from..to).filter(|run| !run.is_empty()) else { return };
         let range = Cursor::new(self.words, to).range_since(from);
         let is_radius = |word: &Word| is_quadrant_distance(&word.text);
-        let is_figure = |word: &Word| is_coordinate(&word.text) || is_radius(word) || word.text.ends_with("KT");
+        let is_figure =
+            |word: &Word| is_coordinate(&word.text) || is_radius(word) || word.text.ends_with("KT");
         let holds_figures = if is_tail { run.iter().any(is_radius) } else { run.iter().any(is_figure) };
         let found = || format!("\"{}\" could not be read", self.notes.quote(range.clone()));
         if holds_figures {

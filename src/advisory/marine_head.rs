@@ -90,7 +90,8 @@ pub fn read_head(words: &[Word], title: Title, notes: &mut Notes) -> Option<Head
     let range = Cursor::new(words, title.number_at + 1).range_since(named.start);
     if number.is_none() || named.name.is_empty() {
         let found = format!("storm and number are not readable in \"{}\"", notes.quote(range.clone()));
-        let to_do = "bring the whole text as issued: its title names the storm and ends \"NUMBER\" and a number";
+        let to_do =
+            "bring the whole text as issued: its title names the storm and ends \"NUMBER\" and a number";
         notes.error("advisory-title", range.clone(), found, to_do);
     }
     let office_at = cursor.at();
@@ -161,7 +162,8 @@ fn class_and_name(words: &[Word], title_at: usize) -> Named {
     }
     // A class of which nobody told us: whatever stands between the headings and the last word.
     let is_heading = |word: &Word| {
-        word.text.bytes().any(|b| b.is_ascii_digit()) || matches!(word.text.as_str(), "ALL" | "LOC" | "DDHHMM")
+        word.text.bytes().any(|b| b.is_ascii_digit())
+            || matches!(word.text.as_str(), "ALL" | "LOC" | "DDHHMM")
     };
     let name_at = end.saturating_sub(1);
     let before = words.get(..name_at).unwrap_or(&[]);

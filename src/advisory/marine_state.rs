@@ -79,7 +79,5 @@ pub fn take_motion(cursor: &mut Cursor) -> Option<Motion> {
 /// Which of the winds of 34, 50 and 64 kt this is, if any: radii of others are not used.
 #[must_use]
 pub fn threshold(knots: f64) -> Option<usize> {
-    [Knots::GALE, Knots::STORM, Knots::HURRICANE]
-        .iter()
-        .position(|speed| (speed.get() - knots).abs() < 0.5)
+    [Knots::GALE, Knots::STORM, Knots::HURRICANE].iter().position(|speed| (speed.get() - knots).abs() < 0.5)
 }

@@ -2,3 +2,4 @@
 
 pub mod geodesic;
 pub mod position;
+pub mod position_text;
