@@ -5,5 +5,6 @@
 pub mod advisory;
 pub mod finding;
 pub mod geo;
+pub mod tide;
 pub mod time;
 pub mod units;
