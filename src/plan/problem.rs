@@ -9,7 +9,8 @@ use crate::port::means::{Member as PortMember, Shift};
 use crate::record::situation::Situation;
 use crate::rules::task::{DaylightNeed, IfGivenUp, LinkKind, Stake, TideNeed};
 use crate::schedule::problem as engine;
-use crate::tide::window::{needed_level, windows_above};
+use crate::tide::under_keel::needed_level;
+use crate::tide::window::windows_above;
 use crate::time::local::LocalTime;
 use crate::time::moment::{Minutes, Moment};
 use crate::time::span::Span;
@@ -242,7 +243,7 @@ impl Stater<'_> {
             let (Some(channel), Some(tide)) = (port.channel(&need.channel), port.tide.as_ref()) else {
                 return WindowSet::never();
             };
-            let level = needed_level(draught, channel.depth, channel.under_keel);
+            let level = needed_level(draught, channel.depth, channel.under_keel, Metres::ZERO);
             let enough = windows_above(tide, level, from + need.from, to + need.until);
             let starts = enough.spans().iter().filter_map(|span| {
                 // Half-open on both sides: the last minute of the passage may be the last with water enough.

@@ -4,7 +4,7 @@ use crate::finding::table::{Item, Keys, did_you_mean, quoted};
 use crate::port::codes;
 use crate::port::water::{Channel, ChannelClass};
 use crate::text::quantity;
-use crate::tide::window::UnderKeelRule;
+use crate::tide::under_keel::UnderKeelRule;
 use crate::time::moment::Minutes;
 use crate::units::length::Metres;
 use std::collections::BTreeMap;
@@ -52,7 +52,7 @@ fn read_under_keel(item: &Item<'_>) -> Option<UnderKeelRule> {
     let share = keys.required("share").and_then(|item| quantity::share(&item));
     let least = keys.required("at_least").and_then(|item| quantity::metres(&item, 0.0, MOST_UNDER_KEEL));
     keys.finish();
-    Some(UnderKeelRule { share: share?, least: least? })
+    Some(UnderKeelRule { share: share?.get(), least: least? })
 }
 
 fn read_classes(item: &Item<'_>) -> Option<Vec<ChannelClass>> {
