@@ -3,7 +3,9 @@
 //! The rooms stand on floors and import downwards only; `DEVELOPERS.md` draws the house.
 
 pub mod advisory;
+pub mod arrival;
 pub mod finding;
 pub mod geo;
 pub mod time;
 pub mod units;
+pub mod wind;
