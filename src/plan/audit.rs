@@ -76,7 +76,9 @@ fn roll_call(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) {
     }
     for id in inputs.work.task_ids() {
         match seen.get(id) {
-            None => breaches.push(breach("audit-task-dropped", id, String::from("the plan does not speak of it"))),
+            None => {
+                breaches.push(breach("audit-task-dropped", id, String::from("the plan does not speak of it")))
+            }
             Some(1) => {}
             Some(times) => {
                 breaches.push(breach("audit-task-twice", id, format!("it stands in the plan {times} times")));
@@ -94,20 +96,31 @@ fn shape(line: &TaskLine, now: Moment, breaches: &mut Vec<Breach>) {
                 say("audit-given-up-holds-time", String::from("it has no place in the plan and yet a time"));
             }
             if finish - start != line.takes {
-                say("audit-duration", format!("from start to finish it takes {}, not {}", finish - start, line.takes));
+                say(
+                    "audit-duration",
+                    format!("from start to finish it takes {}, not {}", finish - start, line.takes),
+                );
             }
             if line.state == TaskState::Planned && start < now {
-                say("audit-in-the-past", format!("it is planned to start at {start}, before the plan's own time"));
+                say(
+                    "audit-in-the-past",
+                    format!("it is planned to start at {start}, before the plan's own time"),
+                );
             }
         }
         (None, None) if holds_time(line.state) => {
             say("audit-no-time", String::from("it is in the plan and has no time"));
         }
         (None, None) => {}
-        (Some(_), None) | (None, Some(_)) => say("audit-half-a-time", String::from("it has only a start or a finish")),
+        (Some(_), None) | (None, Some(_)) => {
+            say("audit-half-a-time", String::from("it has only a start or a finish"))
+        }
     }
     if !holds_time(line.state) && line.members.iter().any(|(_, members)| !members.is_empty()) {
-        say("audit-given-up-holds-people", String::from("it has no place in the plan and yet people or craft"));
+        say(
+            "audit-given-up-holds-people",
+            String::from("it has no place in the plan and yet people or craft"),
+        );
     }
     if line.state == TaskState::GivenUp && line.given_up.is_none() {
         say("audit-no-reason", String::from("it is given up without a reason"));

@@ -162,7 +162,8 @@ fn rested(pool: &Pool, member: &Member, mut held: Vec<Hold>, breaches: &mut Vec<
     let mut block: Option<(Moment, Moment, bool)> = None;
     let mut judge = |from: Moment, to: Moment, has_planned: bool, task: &str| {
         if has_planned && to - from > duty.at_most {
-            let what = format!("{} would be on duty for {}; {} is allowed", member.id, to - from, duty.at_most);
+            let what =
+                format!("{} would be on duty for {}; {} is allowed", member.id, to - from, duty.at_most);
             breaches.push(breach("audit-duty", task, what));
         }
     };

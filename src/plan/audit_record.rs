@@ -13,15 +13,24 @@ pub fn record(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) 
         match &state.outcome {
             Some(Outcome::Done { at, .. }) => {
                 if line.state != TaskState::Done || line.finish != Some(Moment::at_or_after(*at)) {
-                    say("audit-done-changed", String::from("it is reported done, and the plan has it otherwise"));
+                    say(
+                        "audit-done-changed",
+                        String::from("it is reported done, and the plan has it otherwise"),
+                    );
                 }
                 continue;
             }
             Some(Outcome::NotNeeded { .. }) if line.state != TaskState::NotNeeded => {
-                say("audit-report-ignored", String::from("it is reported not needed, and the plan has it otherwise"));
+                say(
+                    "audit-report-ignored",
+                    String::from("it is reported not needed, and the plan has it otherwise"),
+                );
             }
             Some(Outcome::Cannot { .. }) if line.state != TaskState::GivenUp => {
-                say("audit-report-ignored", String::from("it is reported impossible, and the plan has it otherwise"));
+                say(
+                    "audit-report-ignored",
+                    String::from("it is reported impossible, and the plan has it otherwise"),
+                );
             }
             Some(Outcome::NotNeeded { .. } | Outcome::Cannot { .. }) => continue,
             None => {}
@@ -53,13 +62,21 @@ pub fn record(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) 
     for arrival in &plan.arrivals {
         let Some(adopted) = inputs.situation.adopted.get(&arrival.place) else {
             if arrival.adopted.is_some() {
-                breaches.push(breach("audit-not-adopted", &arrival.place, String::from("nobody has adopted that arrival")));
+                breaches.push(breach(
+                    "audit-not-adopted",
+                    &arrival.place,
+                    String::from("nobody has adopted that arrival"),
+                ));
             }
             continue;
         };
         let is_its_wind = (adopted.wind.get() - arrival.wind.speed.get()).abs() < 0.05;
         if is_its_wind && arrival.adopted != Some(Moment::at_or_before(adopted.time)) {
-            breaches.push(breach("audit-adopted-changed", &arrival.place, String::from("the adopted arrival is shown otherwise")));
+            breaches.push(breach(
+                "audit-adopted-changed",
+                &arrival.place,
+                String::from("the adopted arrival is shown otherwise"),
+            ));
         }
     }
 }

@@ -10,6 +10,7 @@ use crate::time::moment::{Minutes, Moment};
 use crate::units::chance::Chance;
 use crate::work::graph::Task;
 use crate::work::questions::question_key;
+use crate::work::reckoned::moment_of;
 
 /// Holds every line's times against the rules.
 pub fn times(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) {
@@ -64,7 +65,7 @@ fn stage_due(inputs: AuditInputs<'_>, stage: &Stage, depth: usize) -> Option<Mom
         }
         Trigger::WindOver { wind, after } => {
             let answer = inputs.book.answer(&question_key(wind))?;
-            answer.over_by(Chance::share(9, 10)).moment().map(|at| at + *after)
+            moment_of(answer.end_quantile(Chance::share(9, 10))).map(|at| at + *after)
         }
     };
     stage.any.iter().filter_map(of_trigger).min()
@@ -77,7 +78,9 @@ fn find_stage<'a>(rules: &'a Rules, id: &str) -> Option<&'a Stage> {
 fn anchor_time(inputs: AuditInputs<'_>, anchor: &Anchor) -> Option<Moment> {
     match anchor {
         Anchor::Wind(wind) => inputs.book.usual_arrival(wind).map(|arrival| arrival.at),
-        Anchor::Stage(stage) => find_stage(inputs.rules, stage).and_then(|stage| stage_time(inputs, stage, 0)),
+        Anchor::Stage(stage) => {
+            find_stage(inputs.rules, stage).and_then(|stage| stage_time(inputs, stage, 0))
+        }
         Anchor::Clock(time) => Some(Moment::at_or_before(*time)),
     }
 }
@@ -127,9 +130,9 @@ fn length(inputs: AuditInputs<'_>, task: &Task, line: &TaskLine, breaches: &mut 
 fn gate(inputs: AuditInputs<'_>, task: &Task, line: &TaskLine, breaches: &mut Vec<Breach>) {
     let Some(stage) = task.gate.and_then(|position| inputs.rules.stages.get(position)) else { return };
     let later = inputs.rules.stages.iter().skip_while(|other| other.id != stage.id);
-    let is_open = later
-        .filter(|other| other.direction == stage.direction)
-        .any(|other| declared(inputs.situation, &other.id).is_some() && !is_lifted(inputs.situation, &other.id));
+    let is_open = later.filter(|other| other.direction == stage.direction).any(|other| {
+        declared(inputs.situation, &other.id).is_some() && !is_lifted(inputs.situation, &other.id)
+    });
     if is_open {
         return;
     }
@@ -177,7 +180,8 @@ fn deadlines(inputs: AuditInputs<'_>, task: &Task, line: &TaskLine, breaches: &m
     let Some(finish) = line.finish else { return };
     let is_ordered = inputs.situation.tasks.get(&task.id).is_some_and(|state| state.fixed.is_some());
     let hard = task.done_before.iter().filter(|deadline| deadline.binds == Binding::Hard);
-    let bounds = hard.filter_map(|deadline| anchor_time(inputs, &deadline.anchor).map(|at| at - deadline.lead));
+    let bounds =
+        hard.filter_map(|deadline| anchor_time(inputs, &deadline.anchor).map(|at| at - deadline.lead));
     let stops = task.stops_at.iter().filter_map(|wind| inputs.book.usual_arrival(wind)).map(|a| a.at);
     if let Some(bound) = bounds.chain(stops).min() {
         if finish > bound && !is_ordered {
@@ -221,7 +225,11 @@ fn shown_chance(inputs: AuditInputs<'_>, task: &Task, line: &TaskLine, breaches:
 fn stages(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) {
     for line in &plan.stages {
         let Some(stage) = find_stage(inputs.rules, &line.id) else {
-            breaches.push(breach("audit-unknown-stage", &line.id, String::from("the rules have no such stage")));
+            breaches.push(breach(
+                "audit-unknown-stage",
+                &line.id,
+                String::from("the rules have no such stage"),
+            ));
             continue;
         };
         let is_declared = declared(inputs.situation, &line.id).is_some();
@@ -231,11 +239,21 @@ fn stages(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) {
         if line.status == StageStatus::Lifted && !is_lifted(inputs.situation, &line.id) {
             breaches.push(breach("audit-unlifted", &line.id, String::from("nobody has lifted it")));
         }
-        if is_declared && matches!(line.status, StageStatus::Computed | StageStatus::Recommended | StageStatus::NotDue) {
-            breaches.push(breach("audit-order-dropped", &line.id, String::from("it is declared, and the plan hides it")));
+        if is_declared
+            && matches!(line.status, StageStatus::Computed | StageStatus::Recommended | StageStatus::NotDue)
+        {
+            breaches.push(breach(
+                "audit-order-dropped",
+                &line.id,
+                String::from("it is declared, and the plan hides it"),
+            ));
         }
         if line.due != stage_due(inputs, stage, 0) {
-            breaches.push(breach("audit-stage-due", &line.id, String::from("its due time does not follow from its triggers")));
+            breaches.push(breach(
+                "audit-stage-due",
+                &line.id,
+                String::from("its due time does not follow from its triggers"),
+            ));
         }
     }
 }

@@ -21,7 +21,8 @@ const SUN_TOLERANCE_DEGREES: f64 = 0.025;
 /// Holds every planned line against tide, daylight and the other ships in the channel.
 pub fn water(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) {
     for line in plan.tasks.iter().filter(|line| line.state == TaskState::Planned) {
-        let (Some(task), Some(start), Some(finish)) = (inputs.work.task(&line.id), line.start, line.finish) else {
+        let (Some(task), Some(start), Some(finish)) = (inputs.work.task(&line.id), line.start, line.finish)
+        else {
             continue;
         };
         tide(inputs, task, start, breaches);
@@ -47,9 +48,11 @@ fn tide(inputs: AuditInputs<'_>, task: &Task, start: Moment, breaches: &mut Vec<
     let wanted_m = channel.under_keel.clearance(*draught).get();
     let worst = instants(start + need.from, start + need.until)
         .map(|at| tide.height_at(at).map(|level| clearance_m(level.get()) - wanted_m))
-        .fold(Some(f64::INFINITY), |worst, spare| Some(worst?.min(spare?)));
+        .try_fold(f64::INFINITY, |worst, spare| Some(worst.min(spare?)));
     match worst {
-        None => breaches.push(breach("audit-tide", &task.id, String::from("the tide is not known at that time"))),
+        None => {
+            breaches.push(breach("audit-tide", &task.id, String::from("the tide is not known at that time")))
+        }
         Some(spare) if spare < -HEIGHT_TOLERANCE_M => {
             let what = format!("under its keel {:.2} m are lacking", -spare);
             breaches.push(breach("audit-tide", &task.id, what));
@@ -110,6 +113,7 @@ fn conflict(inputs: AuditInputs<'_>, one: (&Task, Moment), two: (&Task, Moment))
         let gap = if a_in <= b_in { b_in - a_in } else { a_in - b_in };
         return (gap < wanted).then(|| format!("only {gap} in {} apart from", channel.name));
     }
-    let meets = if a_in <= b_in { b_in < a_out + channel.clearance } else { a_in < b_out + channel.clearance };
+    let meets =
+        if a_in <= b_in { b_in < a_out + channel.clearance } else { a_in < b_out + channel.clearance };
     meets.then(|| format!("it meets in {}", channel.name))
 }

@@ -143,9 +143,13 @@ fn all_odds(inputs: &Inputs<'_>, last: &Situation) -> BTreeMap<String, Answers> 
     std::thread::scope(|scope| {
         let workers: Vec<_> = (0..threads)
             .map(|first| {
-                let share: Vec<(&str, &Advisory)> = jobs.iter().copied().skip(first).step_by(threads).collect();
+                let share: Vec<(&str, &Advisory)> =
+                    jobs.iter().copied().skip(first).step_by(threads).collect();
                 scope.spawn(move || {
-                    share.into_iter().map(|(file, advisory)| (file.to_owned(), answer(advisory))).collect::<Vec<_>>()
+                    share
+                        .into_iter()
+                        .map(|(file, advisory)| (file.to_owned(), answer(advisory)))
+                        .collect::<Vec<_>>()
                 })
             })
             .collect();
