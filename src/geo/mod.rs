@@ -1,5 +1,6 @@
 //! The earth: positions, distances and bearings, exposure, light.
 
+pub mod daylight;
 pub mod exposure;
 pub mod geodesic;
 pub mod position;
