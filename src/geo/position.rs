@@ -21,6 +21,14 @@ impl Position {
         Ok(Position { latitude, longitude: wrap_longitude(longitude) })
     }
 
+    /// The nearest allowed position, longitude wrapped: for the results of computations; NaN becomes 0.
+    #[must_use]
+    pub fn clamped(latitude: f64, longitude: f64) -> Position {
+        let latitude = if latitude.is_nan() { 0.0 } else { latitude.clamp(-90.0, 90.0) };
+        let longitude = if longitude.is_finite() { wrap_longitude(longitude) } else { 0.0 };
+        Position { latitude, longitude }
+    }
+
     /// Degrees north (south negative).
     #[must_use]
     pub fn latitude(self) -> f64 {
