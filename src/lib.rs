@@ -5,6 +5,7 @@
 pub mod advisory;
 pub mod finding;
 pub mod geo;
+pub mod output;
 pub mod plan;
 pub mod port;
 pub mod record;

@@ -1,0 +1,5 @@
+//! What people and programs are shown, from plans built by hand.
+
+mod fixture;
+mod on_one_screen;
+mod read_as_text;
