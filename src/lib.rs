@@ -11,6 +11,7 @@ pub mod port;
 pub mod record;
 pub mod rules;
 pub mod schedule;
+pub mod text;
 pub mod tide;
 pub mod time;
 pub mod units;

@@ -3,3 +3,4 @@
 pub mod fault;
 pub mod render;
 pub mod source;
+pub mod table;

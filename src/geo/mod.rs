@@ -4,3 +4,4 @@ pub mod exposure;
 pub mod daylight;
 pub mod geodesic;
 pub mod position;
+pub mod position_text;
