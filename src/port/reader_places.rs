@@ -125,7 +125,7 @@ fn read_place<'t>(item: &Item<'t>, known: &Known) -> Option<(Place, Option<Item<
 
 fn read_position(item: &Item<'_>) -> Option<Position> {
     let text = item.text()?;
-    let position = position_text::read_position(text);
+    let position = position_text::parse_position(text).ok();
     if position.is_none() {
         item.fault(
             codes::BAD_POSITION,
