@@ -1,6 +1,8 @@
 //! What people and programs get to see: text and JSON, and the words in them.
 
 pub mod arrival_text;
+pub mod arrivals_text;
+pub mod asked;
 pub mod changes_text;
 pub mod clock_text;
 pub mod escape;
@@ -12,4 +14,5 @@ pub mod now_text;
 pub mod plan_text;
 pub mod setting;
 pub mod task_text;
+pub mod wire;
 pub mod words;
