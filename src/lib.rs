@@ -6,6 +6,7 @@ pub mod advisory;
 pub mod arrival;
 pub mod finding;
 pub mod geo;
+pub mod output;
 pub mod plan;
 pub mod port;
 pub mod record;
