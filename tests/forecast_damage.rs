@@ -1,5 +1,5 @@
 //! Damaged forecasts: no bytes bring the reader down, and nothing half-read comes out of it.
-#![allow(clippy::unwrap_used, clippy::panic, reason = "a helper of a test fails the test by panicking")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test fails by panicking, in its own functions too")]
 
 use proptest::prelude::{any, proptest};
 use proptest::test_runner::Config;

@@ -1,5 +1,5 @@
 //! The same forecast texts in other dress: flattened, mirrored, corrected, moved over the ends of months.
-#![allow(clippy::unwrap_used, clippy::panic, reason = "a helper of a test fails the test by panicking")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test fails by panicking, in its own functions too")]
 
 use chrono::{DateTime, Duration, NaiveDate, Utc};
 use snugdown::advisory::forecast::{Advisory, Ending};
@@ -73,6 +73,12 @@ fn the_dress_of_a_text_does_not_change_what_it_says() {
             ("with control characters", format!("\u{1}\r\r\n{}\u{3}", plain.replace('\n', "\r\r\n"))),
             ("in a web page", format!("<!DOCTYPE html><html><body><pre>\n{plain}</pre></body></html>")),
             ("in a web page with line tags", format!("<html><pre>{}</pre>", plain.replace('\n', "<br>\n"))),
+            (
+                "in a news feed",
+                format!(
+                    "<?xml version=\"1.0\"?><rss><item><![CDATA[ <pre> {flattened} </pre> ]]></item></rss>"
+                ),
+            ),
             ("below a mail's head", format!("From: office\nSubject: forecast\n\n{plain}")),
             ("with final stops lost", plain.replace(".\n", "\n")),
         ];
@@ -228,6 +234,19 @@ fn corrections_sort_after_what_they_replace_and_other_storms_apart() {
     assert!(first < corrected && other < first);
     assert_eq!(first, read(&plain.to_lowercase()).key());
     assert_eq!(read(&text("mal0191.001.txt")).key().storm, "ANA 1991");
+}
+
+#[test]
+fn other_words_for_the_centre_are_understood() {
+    let plain = text("ep122024.fstadv.008.txt");
+    let expected = without_places(read(&plain));
+    let free = plain.replace("EP122024\n", "EP122024\nA SQUALL IS DISSIPATING NEAR THE COAST.\n");
+    for words in
+        ["HURRICANE DISSIPATING NEAR", "CENTER LOCATED INLAND NEAR", "REMNANTS OF CENTER LOCATED NEAR"]
+    {
+        let text = free.replacen("HURRICANE CENTER LOCATED NEAR", words, 1);
+        assert_eq!(without_places(read(&text)).points, expected.points, "{words}");
+    }
 }
 
 #[test]

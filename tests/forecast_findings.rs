@@ -1,5 +1,5 @@
 //! What the reader says about texts at fault: every code is provoked here, and other products are named for what they are.
-#![allow(clippy::unwrap_used, clippy::panic, reason = "a helper of a test fails the test by panicking")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test fails by panicking, in its own functions too")]
 
 use snugdown::advisory::codes::CODES;
 use snugdown::advisory::forecast::{Ending, Quadrants, Reach};

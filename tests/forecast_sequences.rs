@@ -1,5 +1,5 @@
 //! Every advisory of three storms, text against numbers: each position, wind and radius.
-#![allow(clippy::unwrap_used, clippy::panic, reason = "a helper of a test fails the test by panicking")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test fails by panicking, in its own functions too")]
 
 use snugdown::advisory::forecast::{Advisory, ForecastPoint, Motion, Reach};
 use snugdown::advisory::read::read_forecast;

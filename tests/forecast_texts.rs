@@ -1,5 +1,5 @@
 //! Real Forecast/Advisory texts, 1991 to 2024, against what was read off them by eye.
-#![allow(clippy::unwrap_used, clippy::panic, reason = "a helper of a test fails the test by panicking")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test fails by panicking, in its own functions too")]
 
 use chrono::{DateTime, Utc};
 use snugdown::advisory::forecast::{Advisory, Ending, Motion, Quadrants, Reach};

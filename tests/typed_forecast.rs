@@ -1,5 +1,5 @@
 //! Forecasts typed in as TOML: what is needed, what is welcome, and what is assumed for the rest.
-#![allow(clippy::unwrap_used, clippy::panic, reason = "a helper of a test fails the test by panicking")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test fails by panicking, in its own functions too")]
 
 use snugdown::advisory::forecast::{Advisory, Motion, Quadrants, Reach};
 use snugdown::advisory::read::read_forecast;

@@ -43,7 +43,12 @@ impl Reader<'_, '_, '_> {
         let from = self.cursor.at();
         while !self.cursor.is_done() {
             let at = self.cursor.at();
-            if self.cursor.take("CENTER LOCATED NEAR") {
+            // "DISSIPATING NEAR" stands in some last advisories; free words may say it too, but without a position.
+            let mut ahead = self.cursor.clone();
+            let is_dissipating = ahead.take("DISSIPATING NEAR") && ahead.position().is_some();
+            if self.cursor.take_any(&["CENTER LOCATED NEAR", "CENTER LOCATED INLAND NEAR"])
+                || (is_dissipating && self.cursor.take("DISSIPATING NEAR"))
+            {
                 let position = self.cursor.position();
                 let valid = if self.cursor.take("AT") { self.cursor.day_time() } else { None };
                 let range = self.cursor.range_since(at);
