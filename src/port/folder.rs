@@ -114,8 +114,13 @@ fn read_ids(pages: &BTreeMap<&str, Page<'_>>) -> Known {
             known.could_not_read(kind);
             continue;
         };
-        // Headings of the wrong form are reported when the things themselves are read.
-        let things = file.optional(heading).filter(Item::is_list).map(|item| item.list()).unwrap_or_default();
+        let heading_item = file.optional(heading);
+        if heading_item.is_some_and(|item| !item.is_list()) {
+            // Its wrong form is reported when the things themselves are read.
+            known.could_not_read(kind);
+            continue;
+        }
+        let things = heading_item.map(|item| item.list()).unwrap_or_default();
         for thing in things.iter().filter(|thing| thing.is_table()) {
             let Some(mut keys) = thing.keys(heading) else { continue };
             if let Some(id) = keys.optional("id") {

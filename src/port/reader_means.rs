@@ -33,7 +33,8 @@ fn read_pool(item: &Item<'_>, clock: Option<&PortClock>) -> Option<Pool> {
     let duty = keys.optional("duty").map(|item| read_duty(&item));
     let source = keys.text_or_empty("source");
     keys.finish();
-    let members = members.into_iter().collect::<Option<Vec<Member>>>()?;
+    let members =
+        members.into_iter().collect::<Option<Vec<Member>>>().filter(|members| !members.is_empty())?;
     let duty = match duty {
         Some(hours) => Some(hours?),
         None => None,

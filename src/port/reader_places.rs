@@ -54,7 +54,7 @@ pub fn read_head(file: &mut Keys<'_>, known: &Known) -> Option<Head> {
     let authority = keys.required("authority").and_then(|item| item.text());
     let official_source = keys.required("official_source").and_then(|item| item.text());
     let reference =
-        keys.required("reference").and_then(|item| known.refer(&item, Kind::Place, codes::unknown));
+        keys.required("reference").and_then(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let invented = keys.text_or_empty("invented");
     let _ = keys.text_or_empty("source");
     keys.finish();
@@ -105,7 +105,7 @@ fn read_place<'t>(item: &Item<'t>, known: &Known) -> Option<(Place, Option<Item<
     let position = keys.required("position").and_then(|item| read_position(&item));
     let exposure = keys.required("exposure").and_then(|item| read_exposure(&item));
     let counts_item = keys.optional("counts_from");
-    let counts_from = counts_item.map(|item| known.refer(&item, Kind::Place, codes::unknown));
+    let counts_from = counts_item.map(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let _ = keys.text_or_empty("source");
     keys.finish();
     let id = id?;
