@@ -1,6 +1,6 @@
 //! The codes of faults in a port's own files; `rules/README.md` explains each.
 
-use crate::finding::table::TableCodes;
+use crate::finding::page::TableCodes;
 
 /// Faults that any table can have.
 pub static TABLE: TableCodes = TableCodes {

@@ -1,7 +1,7 @@
 //! Which ids a port's files hold, faulty or not, so that other files can be checked against them.
 
-use crate::finding::fault::Place;
-use crate::finding::table::{Item, did_you_mean, quoted};
+use crate::finding::fault::{Place, did_you_mean, quoted};
+use crate::finding::table::Item;
 use crate::port::codes;
 use crate::port::kind::Kind;
 use crate::text::quantity;

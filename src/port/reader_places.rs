@@ -1,6 +1,7 @@
 //! Reads port.toml: the port's name and clock, the exercise, and its places.
 
-use crate::finding::table::{Item, Keys, did_you_mean, quoted};
+use crate::finding::fault::{did_you_mean, quoted};
+use crate::finding::table::{Item, Keys};
 use crate::geo::exposure::{Exposure, ExposureClass, ExposureSector};
 use crate::geo::position::Position;
 use crate::geo::position_text::parse_position;
@@ -140,7 +141,7 @@ fn read_exposure(item: &Item<'_>) -> Option<Exposure> {
     }
     let mut keys = item.keys("an exposure")?;
     let otherwise = keys.required("otherwise").and_then(|item| read_class(&item));
-    let sectors: Vec<Option<ExposureSector>> = keys.tables("sectors").iter().map(read_sector).collect();
+    let sectors: Vec<Option<ExposureSector>> = keys.one_or_more("sectors").iter().map(read_sector).collect();
     keys.finish();
     Some(Exposure { otherwise: otherwise?, sectors: sectors.into_iter().collect::<Option<Vec<_>>>()? })
 }

@@ -1,6 +1,6 @@
 //! The codes of faults in a port's rules and tasks; `rules/README.md` explains each.
 
-use crate::finding::table::TableCodes;
+use crate::finding::page::TableCodes;
 use crate::port::kind::Kind;
 
 /// Faults that any table can have.

@@ -1,6 +1,7 @@
 //! Reads what a task holds: people, craft and machines; and the water and channel it needs.
 
-use crate::finding::table::{Item, Keys, did_you_mean, quoted};
+use crate::finding::fault::{did_you_mean, quoted};
+use crate::finding::table::{Item, Keys};
 use crate::port::folder::Draft;
 use crate::port::kind::Kind;
 use crate::port::means::Pool;

@@ -1,6 +1,7 @@
 //! Reads which ships, plant or berths a rule or a template is for.
 
-use crate::finding::table::{Item, Keys, quoted};
+use crate::finding::fault::quoted;
+use crate::finding::table::{Item, Keys};
 use crate::port::fleet::OwnValue;
 use crate::port::folder::Draft;
 use crate::port::kind::Kind;
