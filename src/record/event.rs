@@ -5,6 +5,7 @@ use crate::time::moment::Minutes;
 use crate::units::speed::Knots;
 use crate::units::wind::Averaging;
 use chrono::{DateTime, Utc};
+use std::cmp::Ordering;
 
 /// Something that became known, was ordered, or was done. Never changed: a mistake is mended by a later event.
 #[derive(Clone, Debug, PartialEq)]
@@ -22,7 +23,7 @@ pub struct Event {
 }
 
 /// What an event says.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq, PartialOrd)]
 pub enum What {
     /// An advisory came in; its file within the port's folder.
     AdvisoryTaken {
@@ -111,6 +112,13 @@ pub enum What {
         /// Full task id.
         task: String,
     },
+    /// What was told or ordered about a task is taken back, as if never said; for a fixed start see `TaskFixed`.
+    TaskRetracted {
+        /// Full task id.
+        task: String,
+        /// What of it.
+        kind: Retracted,
+    },
     /// A member of a pool is out of service.
     MeansOut {
         /// The member.
@@ -140,4 +148,27 @@ pub enum What {
     },
     /// The plan made at this time was issued to those concerned.
     PlanIssued,
+}
+
+/// What an event can take back about a task.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Retracted {
+    /// That it started, is done, cannot be done or is not needed: somebody ticked the wrong line.
+    Progress,
+    /// How long it takes: the files count again.
+    Takes,
+    /// The time before which it may not start.
+    NotBefore,
+    /// The order to cut it or to take its substitute.
+    Way,
+}
+
+impl Event {
+    /// Orders events by when they were known, then by what they say; equal are those that say the same, wherever they stand.
+    #[must_use]
+    pub fn compare(&self, other: &Event) -> Ordering {
+        let head = (self.known, &self.by, &self.reason).cmp(&(other.known, &other.by, &other.reason));
+        // No part of an event is ever NaN, so any two can be compared.
+        head.then_with(|| self.what.partial_cmp(&other.what).unwrap_or(Ordering::Equal))
+    }
 }

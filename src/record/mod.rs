@@ -1,3 +1,9 @@
 //! What was known, ordered, told and done, as plain values, and the situation that follows from it.
 
+pub mod codes;
+pub mod doubt;
 pub mod event;
+pub mod mention;
+pub mod reader;
+pub mod situation;
+pub mod telling;
