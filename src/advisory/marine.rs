@@ -141,6 +141,9 @@ fn ending(state: &State, valid: DateTime<Utc>, notes: &mut Notes) -> Option<Endi
 fn point(state: &State, valid: DateTime<Utc>, notes: &mut Notes) -> Option<ForecastPoint> {
     let position = state.position?;
     let Some(wind) = state.wind else {
+        if state.is_damaged {
+            return None;
+        }
         let found = format!("no wind follows \"{}\"", notes.quote(state.range.clone()));
         let to_do = "a line such as \"MAX WIND  45 KT...GUSTS  55 KT.\" is missing: fetch the text again";
         notes.error("advisory-wind", state.range.clone(), found, to_do);
@@ -213,7 +216,8 @@ fn check_length(head: &Head, body: &Body, track: &Track, notes: &mut Notes) {
             notes.error("advisory-cut-too-short", head.title.clone(), found, to_do);
         }
         Some(Ending::CutShort(_)) => {}
-        None if track.points.len() < 2 && !body.is_last => {
+        // Of remnants there may be nothing to forecast.
+        None if track.points.len() < 2 && !body.is_last && !head.storm.class.contains("REMNANT") => {
             let found = "the text gives no forecast, only the present state".to_owned();
             notes.error("advisory-no-forecast", head.title.clone(), found, "fetch the whole text");
         }

@@ -51,15 +51,17 @@ const TROPICAL_SPEED_KT: f64 = 40.0;
 const TURN: (f64, f64) = (60.0, 3.0);
 /// Greatest usual change of wind in kt in 24 h; 1.8 % of the advisories had more, most over land.
 const WIND_CHANGE_KT: f64 = 60.0;
-/// Up to this many hours ahead the texts give 34-kt radii wherever such winds blow.
-const GALE_RADII_HOURS: i64 = 72;
+/// Up to this many hours after issue the texts give the reach of 34, 50 and 64 kt wherever such winds blow; 1 % of the
+/// points up to there lacked it, all of those beyond.
+const REACH_HOURS: [i64; 3] = [72, 72, 40];
 /// Our choice: wind and pressure may differ by this many kt; 1 % of the advisories had more (20 kt: 4 %).
 const WIND_FROM_PRESSURE_KT: f64 = 25.0;
 
 /// Notes what is odd about `advisory`, and gives it back.
 ///
-/// One thing is changed, with a warning: where an office gives a stronger wind a greater reach than a weaker one, the
-/// weaker one's is raised to it, since where 50 kt blow 34 kt blow too.
+/// Two things are changed in an office's text, each with a warning: where a stronger wind reaches farther than a weaker
+/// one, the weaker one's reach is raised to it, since where 50 kt blow 34 kt blow too; and gusts below the mean wind are
+/// dropped (an advisory of September 2017 has gusts of 115 kt with a wind of 135 kt).
 #[must_use]
 pub fn check(mut advisory: Advisory, origin: Origin, notes: &mut Notes) -> Advisory {
     let mut desk = Desk { origin, notes };
@@ -79,7 +81,7 @@ pub fn check(mut advisory: Advisory, origin: Origin, notes: &mut Notes) -> Advis
             desk.turn(a, b, c);
         }
     }
-    desk.missing_gale_reach(&advisory);
+    desk.missing_reaches(&advisory);
     desk.pressure(&advisory);
     desk.hemisphere(&advisory);
     advisory
@@ -124,15 +126,19 @@ impl Desk<'_, '_> {
         }
     }
 
-    fn wind(&mut self, point: &ForecastPoint) {
+    fn wind(&mut self, point: &mut ForecastPoint) {
         if !(WIND_KT.0..=WIND_KT.1).contains(&point.max_wind.get()) {
             let found = format!("a greatest wind of {}", point.max_wind);
             self.error("advisory-wind-range", point, found, "15 to 190 kt");
         }
-        if let Some(gust) = point.gust.filter(|gust| *gust < point.max_wind) {
-            let found = format!("gusts of {gust} below the mean wind of {}", point.max_wind);
-            self.error("advisory-gust-below-wind", point, found, "gusts at or above the mean wind");
-        }
+        let Some(gust) = point.gust.filter(|gust| *gust < point.max_wind) else { return };
+        let found = format!("gusts of {gust} below the mean wind of {}", point.max_wind);
+        let (code, place) = ("advisory-gust-below-wind", point.place.clone());
+        self.notes.add(match self.origin {
+            Origin::Typed => Finding::error(code, place, found, "", "correct one of the two"),
+            Origin::Office => Finding::warning(code, place, found, "", "the gusts are taken as not given"),
+        });
+        point.gust = None;
     }
 
     fn reaches(&mut self, point: &ForecastPoint) {
@@ -184,12 +190,13 @@ impl Desk<'_, '_> {
             self.warning("advisory-speed-tropical", after, found, "mostly at most 40 kt below 25 degrees");
         }
         let change = after.max_wind.get() - before.max_wind.get();
-        if change.abs() * 24.0 / hours > WIND_CHANGE_KT {
+        let is_inland = |point: &ForecastPoint| point.qualifier.contains("INLAND");
+        let falls_over_land = change < 0.0 && (is_inland(before) || is_inland(after));
+        if change.abs() * 24.0 / hours > WIND_CHANGE_KT && !falls_over_land {
             let found =
                 format!("the wind goes from {} to {} in {hours:.0} h", before.max_wind, after.max_wind);
             self.warning("advisory-wind-change", after, found, "mostly at most 60 kt in 24 h");
         }
-        let is_inland = |point: &ForecastPoint| point.qualifier.contains("INLAND");
         if change > 0.0 && is_inland(before) && is_inland(after) {
             let found = format!("inland, but the wind rises from {} to {}", before.max_wind, after.max_wind);
             self.warning("advisory-rising-inland", after, found, "");
@@ -210,23 +217,32 @@ impl Desk<'_, '_> {
         }
     }
 
-    /// Gales that blow but whose reach is not given, within the hours for which it usually is.
-    fn missing_gale_reach(&mut self, advisory: &Advisory) {
-        let mut lacking = advisory.points.iter().filter(|point| {
-            let is_stronger_given = [point.radii.storm, point.radii.hurricane]
-                .iter()
-                .any(|reach| matches!(reach, Reach::Given(given) if *given != Quadrants::NONE));
-            let is_soon = (point.valid - advisory.issued).num_hours() <= GALE_RADII_HOURS;
-            point.radii.gale == Reach::NotGiven && (is_stronger_given || is_soon)
-        });
-        if let Some(first) = lacking.next() {
-            let count = 1 + lacking.count();
-            let times =
-                if count == 1 { String::new() } else { format!(" (and at {} later times)", count - 1) };
-            let found = format!("a wind of {} but no reach of 34 kt{times}", first.max_wind);
-            let place = first.place.clone();
+    /// Winds that blow but whose reach is not given, within the hours for which it usually is.
+    ///
+    /// A forecast typed in need not give more than the reach of 34 kt.
+    fn missing_reaches(&mut self, advisory: &Advisory) {
+        let asked = if self.origin == Origin::Typed { 1 } else { 3 };
+        let speeds = [Knots::GALE, Knots::STORM, Knots::HURRICANE];
+        for (index, (speed, hours)) in speeds.into_iter().zip(REACH_HOURS).enumerate().take(asked) {
+            let lacks = |point: &&ForecastPoint| {
+                let reaches = point.radii.by_speed();
+                let given =
+                    |(_, reach): &(Knots, Reach)| matches!(reach, Reach::Given(q) if *q != Quadrants::NONE);
+                let is_stronger_given = reaches.iter().skip(index + 1).any(given);
+                let is_soon = (point.valid - advisory.issued).num_hours() <= hours;
+                let is_missing = reaches.get(index).is_some_and(|(_, reach)| *reach == Reach::NotGiven);
+                is_missing && (is_stronger_given || is_soon)
+            };
+            let lacking: Vec<&ForecastPoint> = advisory.points.iter().filter(lacks).collect();
+            let Some(first) = lacking.first() else { continue };
+            let times = match lacking.len() {
+                1 => String::new(),
+                2 => " (and once more later)".to_owned(),
+                count => format!(" (and {} times more later)", count - 1),
+            };
+            let found = format!("a wind of {} but no reach of {speed}{times}", first.max_wind);
             let to_do = "the reach is taken as not given, not as none; look for it elsewhere";
-            self.notes.add(Finding::warning("advisory-no-gale-reach", place, found, "", to_do));
+            self.notes.add(Finding::warning("advisory-reach-missing", first.place.clone(), found, "", to_do));
         }
     }
 
