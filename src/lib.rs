@@ -18,3 +18,4 @@ pub mod tide;
 pub mod time;
 pub mod units;
 pub mod wind;
+pub mod work;

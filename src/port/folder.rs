@@ -1,8 +1,9 @@
 //! The files of a port, and the port they describe.
 
 use crate::finding::fault::{Finding, has_error, nearest, sort_findings};
+use crate::finding::page::Page;
 use crate::finding::source::SourceText;
-use crate::finding::table::{Item, Keys, Page};
+use crate::finding::table::{Item, Keys};
 use crate::port::codes;
 use crate::port::fleet::{Berth, Plant, Ship};
 use crate::port::harbour::{Place, Port};
@@ -12,6 +13,7 @@ use crate::port::means::Pool;
 use crate::port::reader_fleet::{read_berths, read_plant, read_ships};
 use crate::port::reader_means::read_pools;
 use crate::port::reader_places::{Head, read_clock, read_exercise, read_head, read_places};
+use crate::port::reader_tide::read_tide;
 use crate::port::reader_water::read_channels;
 use crate::port::water::Channel;
 use crate::tide::heights::Tide;
@@ -109,12 +111,17 @@ fn read_ids(pages: &BTreeMap<&str, Page<'_>>) -> Known {
             }
             continue;
         };
-        let Some(mut file) = page.keys() else {
+        let Some(mut file) = Keys::of_file(page) else {
             known.could_not_read(kind);
             continue;
         };
-        // Headings of the wrong form are reported when the things themselves are read.
-        let things = file.optional(heading).filter(Item::is_list).map(|item| item.list()).unwrap_or_default();
+        let heading_item = file.optional(heading);
+        if heading_item.is_some_and(|item| !item.is_list()) {
+            // Its wrong form is reported when the things themselves are read.
+            known.could_not_read(kind);
+            continue;
+        }
+        let things = heading_item.map(|item| item.list()).unwrap_or_default();
         for thing in things.iter().filter(|thing| thing.is_table()) {
             let Some(mut keys) = thing.keys(heading) else { continue };
             if let Some(id) = keys.optional("id") {
@@ -140,7 +147,7 @@ fn add_member(known: &mut Known, member: &Item<'_>) {
 
 fn read_things(pages: &BTreeMap<&str, Page<'_>>, known: Known) -> Draft {
     let mut files: BTreeMap<&str, Keys<'_>> =
-        pages.iter().filter_map(|(name, page)| Some((*name, page.keys()?))).collect();
+        pages.iter().filter_map(|(name, page)| Some((*name, Keys::of_file(page)?))).collect();
     let clock = files.get_mut("port.toml").and_then(read_clock);
     let clock_now = clock.as_ref();
     let port_file = files.get_mut("port.toml");
@@ -148,7 +155,9 @@ fn read_things(pages: &BTreeMap<&str, Page<'_>>, known: Known) -> Draft {
         (read_head(file, &known), read_exercise(file, clock_now), read_places(file, &known))
     });
     let mut water = files.get_mut("water.toml");
-    let channels = water.as_mut().map(|file| read_channels(file)).unwrap_or_default();
+    let tide = water.as_mut().and_then(|file| read_tide(file, clock_now));
+    let datum = tide.as_ref().and_then(|tide| tide.datum);
+    let channels = water.map(|file| read_channels(file, datum)).unwrap_or_default();
     let berths = files.get_mut("berths.toml").map(|file| read_berths(file, &known, clock_now));
     let ships = files.get_mut("ships.toml").map(|file| read_ships(file, &known, clock_now));
     let plant = files.get_mut("plant.toml").map(|file| read_plant(file, &known, clock_now));
@@ -162,8 +171,8 @@ fn read_things(pages: &BTreeMap<&str, Page<'_>>, known: Known) -> Draft {
         plant: plant.unwrap_or_default(),
         pools: pools.unwrap_or_default(),
         channels,
-        tide: None,
-        has_tide: false,
+        has_tide: tide.is_some(),
+        tide: tide.and_then(|read| read.tide),
         known,
         head,
         exercise,

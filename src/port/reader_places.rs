@@ -1,9 +1,10 @@
 //! Reads port.toml: the port's name and clock, the exercise, and its places.
 
-use crate::finding::table::{Item, Keys, did_you_mean, quoted};
+use crate::finding::fault::{did_you_mean, quoted};
+use crate::finding::table::{Item, Keys};
 use crate::geo::exposure::{Exposure, ExposureClass, ExposureSector};
 use crate::geo::position::Position;
-use crate::geo::position_text;
+use crate::geo::position_text::parse_position;
 use crate::port::codes;
 use crate::port::harbour::Place;
 use crate::port::kind::Kind;
@@ -54,7 +55,7 @@ pub fn read_head(file: &mut Keys<'_>, known: &Known) -> Option<Head> {
     let authority = keys.required("authority").and_then(|item| item.text());
     let official_source = keys.required("official_source").and_then(|item| item.text());
     let reference =
-        keys.required("reference").and_then(|item| known.refer(&item, Kind::Place, codes::unknown));
+        keys.required("reference").and_then(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let invented = keys.text_or_empty("invented");
     let _ = keys.text_or_empty("source");
     keys.finish();
@@ -105,7 +106,7 @@ fn read_place<'t>(item: &Item<'t>, known: &Known) -> Option<(Place, Option<Item<
     let position = keys.required("position").and_then(|item| read_position(&item));
     let exposure = keys.required("exposure").and_then(|item| read_exposure(&item));
     let counts_item = keys.optional("counts_from");
-    let counts_from = counts_item.map(|item| known.refer(&item, Kind::Place, codes::unknown));
+    let counts_from = counts_item.map(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let _ = keys.text_or_empty("source");
     keys.finish();
     let id = id?;
@@ -124,17 +125,14 @@ fn read_place<'t>(item: &Item<'t>, known: &Known) -> Option<(Place, Option<Item<
 }
 
 fn read_position(item: &Item<'_>) -> Option<Position> {
-    let text = item.text()?;
-    let position = position_text::parse_position(text).ok();
-    if position.is_none() {
-        item.fault(
-            codes::BAD_POSITION,
-            format!("\"{text}\" is not a position"),
-            "degrees and minutes, latitude first, such as \"22 18.0 N 040 48.0 W\"",
-            "correct the position",
-        );
+    match parse_position(item.text()?) {
+        Ok(position) => Some(position),
+        Err(error) => {
+            let allowed = "latitude first, such as \"22 18.0 N 040 48.0 W\" or \"22.3 N 40.8 W\"";
+            item.fault(codes::BAD_POSITION, error.to_string(), allowed, "correct the position");
+            None
+        }
     }
-    position
 }
 
 fn read_exposure(item: &Item<'_>) -> Option<Exposure> {
@@ -143,7 +141,7 @@ fn read_exposure(item: &Item<'_>) -> Option<Exposure> {
     }
     let mut keys = item.keys("an exposure")?;
     let otherwise = keys.required("otherwise").and_then(|item| read_class(&item));
-    let sectors: Vec<Option<ExposureSector>> = keys.tables("sectors").iter().map(read_sector).collect();
+    let sectors: Vec<Option<ExposureSector>> = keys.one_or_more("sectors").iter().map(read_sector).collect();
     keys.finish();
     Some(Exposure { otherwise: otherwise?, sectors: sectors.into_iter().collect::<Option<Vec<_>>>()? })
 }

@@ -1,6 +1,8 @@
 //! Reads what a task holds: people, craft and machines; and the water and channel it needs.
 
-use crate::finding::table::{Item, Keys, did_you_mean, quoted};
+use crate::finding::fault::{did_you_mean, quoted};
+use crate::finding::table::{Item, Keys};
+use crate::port::folder::Draft;
 use crate::port::kind::Kind;
 use crate::port::means::Pool;
 use crate::rules::codes;
@@ -9,7 +11,9 @@ use crate::rules::reader_amount::{OwnSort, own_class, own_count, read_amount};
 use crate::rules::reader_pick::Thing;
 use crate::rules::task::{NeedSpec, Passage, TideNeed};
 use crate::text::quantity;
+use crate::tide::under_keel::needed_level;
 use crate::time::moment::Minutes;
+use crate::units::length::Metres;
 
 /// The list `needs`.
 #[must_use]
@@ -26,8 +30,9 @@ pub fn read_needs(
 
 fn read_need(item: &Item<'_>, things: Option<&[Thing<'_>]>, desk: &Desk<'_>) -> Option<NeedSpec> {
     let mut keys = item.keys("a need")?;
-    let pool =
-        keys.required("pool").and_then(|item| desk.draft.known.refer(&item, Kind::Pool, codes::unknown));
+    let pool = keys
+        .required("pool")
+        .and_then(|item| desk.draft.known.refer(&item, Kind::Pool, codes::unknown(Kind::Pool)));
     let count_item = keys.required("count");
     let count = count_item.and_then(|item| read_amount(&item, OwnSort::Count, things, read_count));
     let class_item = keys.optional("class");
@@ -122,11 +127,16 @@ fn classes_of(pool: &Pool) -> Vec<&str> {
 
 /// `tide = { channel = "main", from = "1 h", until = "1 h 20 min" }`, within a task that takes `takes` if it says so.
 #[must_use]
-pub fn read_tide(item: &Item<'_>, takes: Option<Minutes>, desk: &Desk<'_>) -> Option<TideNeed> {
+pub fn read_tide(
+    item: &Item<'_>,
+    takes: Option<Minutes>,
+    things: Option<&[Thing<'_>]>,
+    desk: &Desk<'_>,
+) -> Option<TideNeed> {
     let mut keys = item.keys("a tide")?;
     let channel = keys
         .required("channel")
-        .and_then(|item| desk.draft.known.refer(&item, Kind::Channel, codes::unknown));
+        .and_then(|item| desk.draft.known.refer(&item, Kind::Channel, codes::unknown(Kind::Channel)));
     let (from, until) = read_part(&mut keys, ("from", "until"), takes);
     keys.finish();
     if !desk.draft.has_tide && desk.draft.known.could_read(Kind::Channel) {
@@ -138,7 +148,30 @@ pub fn read_tide(item: &Item<'_>, takes: Option<Minutes>, desk: &Desk<'_>) -> Op
         );
         return None;
     }
-    Some(TideNeed { channel: channel?, from: from?, until: until? })
+    let need = TideNeed { channel: channel?, from: from?, until: until? };
+    warn_of_too_deep(item, &need.channel, things.unwrap_or_default(), desk.draft);
+    Some(need)
+}
+
+fn warn_of_too_deep(item: &Item<'_>, channel: &str, things: &[Thing<'_>], draft: &Draft) {
+    let channel = draft.channels.iter().find(|other| other.id == channel);
+    let (Some(channel), Some(tide)) = (channel, &draft.tide) else { return };
+    let needed = |draught| needed_level(draught, channel.depth, channel.under_keel, Metres::ZERO);
+    let is_too_deep =
+        |thing: &&Thing<'_>| thing.draught.is_some_and(|draught| needed(draught) > tide.ceiling());
+    let too_deep: Vec<&str> = things.iter().filter(is_too_deep).map(|thing| thing.id).collect();
+    if !too_deep.is_empty() {
+        item.warn(
+            codes::NEVER_FLOATS,
+            format!("no tide gives enough water in channel \"{}\" for {}", channel.id, quoted(&too_deep)),
+            format!(
+                "the tide never exceeds {:.2} m, the dredged depth is {}",
+                tide.ceiling().get(),
+                channel.depth
+            ),
+            "check draught, depth and under-keel rule; she cannot sail as she is",
+        );
+    }
 }
 
 /// `passage = { channel = "main", direction = "out", enters = "10 min", leaves = "1 h 20 min" }`.
@@ -147,7 +180,7 @@ pub fn read_passage(item: &Item<'_>, takes: Option<Minutes>, desk: &Desk<'_>) ->
     let mut keys = item.keys("a passage")?;
     let channel = keys
         .required("channel")
-        .and_then(|item| desk.draft.known.refer(&item, Kind::Channel, codes::unknown));
+        .and_then(|item| desk.draft.known.refer(&item, Kind::Channel, codes::unknown(Kind::Channel)));
     let outbound = keys.required("direction").and_then(|item| item.word(&[("out", true), ("in", false)]));
     let (enters, leaves) = read_part(&mut keys, ("enters", "leaves"), takes);
     keys.finish();

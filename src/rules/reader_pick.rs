@@ -1,12 +1,14 @@
 //! Reads which ships, plant or berths a rule or a template is for.
 
-use crate::finding::table::{Item, Keys, quoted};
+use crate::finding::fault::quoted;
+use crate::finding::table::{Item, Keys};
 use crate::port::fleet::OwnValue;
 use crate::port::folder::Draft;
 use crate::port::kind::Kind;
 use crate::rules::codes;
 use crate::rules::pick::{ForEach, Pick};
 use crate::text::quantity;
+use crate::units::length::Metres;
 use std::collections::{BTreeMap, BTreeSet};
 
 /// A ship, a piece of plant or a berth for which a template makes a task.
@@ -16,8 +18,8 @@ pub struct Thing<'a> {
     pub id: &'a str,
     /// Its own values.
     pub own: &'a BTreeMap<String, OwnValue>,
-    /// Its draught in metres if it is a ship.
-    pub draught: Option<f64>,
+    /// Its draught if it is a ship.
+    pub draught: Option<Metres>,
 }
 
 /// `for_each = { ships = { kinds = ["container"] } }`, or plant, or berths; `{}` picks all of them.
@@ -86,7 +88,7 @@ fn read_common(keys: &mut Keys<'_>, draft: &Draft, kind: Kind) -> Option<Pick> {
 fn read_ids(keys: &mut Keys<'_>, key: &'static str, draft: &Draft, kind: Kind) -> Option<Vec<String>> {
     let Some(item) = keys.optional(key) else { return Some(Vec::new()) };
     let ids: Vec<Option<String>> =
-        item.list().iter().map(|item| draft.known.refer(item, kind, codes::unknown)).collect();
+        item.list().iter().map(|item| draft.known.refer(item, kind, codes::unknown(kind))).collect();
     ids.into_iter().collect()
 }
 
@@ -114,7 +116,7 @@ pub fn things<'a>(for_each: &ForEach, draft: &'a Draft) -> Vec<Thing<'a>> {
             .ships
             .iter()
             .filter(|ship| pick.takes_ship(ship))
-            .map(|ship| Thing { id: &ship.id, own: &ship.own, draught: Some(ship.draught.get()) })
+            .map(|ship| Thing { id: &ship.id, own: &ship.own, draught: Some(ship.draught) })
             .collect(),
         ForEach::Plant(pick) => draft
             .plant

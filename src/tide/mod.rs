@@ -1,4 +1,11 @@
-//! Water level: heights and the windows in which there is enough of it.
+//! The tide: water levels above chart datum, and when there is enough of it.
 
+pub mod astronomy;
+pub mod constituent;
+pub mod error;
+pub mod harmonic;
 pub mod heights;
+pub mod simple;
+pub mod table;
+pub mod under_keel;
 pub mod window;

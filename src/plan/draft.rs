@@ -1,0 +1,154 @@
+//! One try at a plan: roles, problem and schedule under given choices.
+
+use crate::plan::adjust::Adjustments;
+use crate::plan::problem::{ProblemInputs, Stated, state};
+use crate::plan::roles::{Role, RoleInputs, roles};
+use crate::plan::sheet::{Clash, Plan, TaskState};
+use crate::port::harbour::Port;
+use crate::record::situation::Situation;
+use crate::schedule::outcome::{Outcome, Schedule, Score};
+use crate::schedule::problem::{Fixed, Problem};
+use crate::schedule::search::{Effort, solve};
+use crate::time::moment::Moment;
+use crate::work::graph::WorkGraph;
+use crate::work::timed::Timed;
+use petgraph::graph::NodeIndex;
+use std::collections::{BTreeMap, BTreeSet};
+
+/// Everything that one try is made from.
+#[derive(Clone, Copy, Debug)]
+pub struct DraftInputs<'a> {
+    /// The port.
+    pub port: &'a Port,
+    /// The graph.
+    pub work: &'a WorkGraph,
+    /// Its times.
+    pub timed: &'a Timed,
+    /// The record.
+    pub situation: &'a Situation,
+    /// The plan before this one.
+    pub before: Option<&'a Plan>,
+    /// Nothing starts before this moment.
+    pub now: Moment,
+    /// When trying a later decision: the plan that is carried out until then.
+    pub carried_out: Option<&'a Plan>,
+    /// The last time that the forecast speaks of.
+    pub forecast_end: Option<Moment>,
+    /// How long to search.
+    pub effort: Effort,
+}
+
+/// A try at a plan.
+#[derive(Clone, Debug)]
+pub struct Draft {
+    /// What each task is.
+    pub roles: BTreeMap<NodeIndex, Role>,
+    /// The problem and what its indices stand for.
+    pub stated: Stated,
+    /// What the engine made of it.
+    pub schedule: Schedule,
+    /// The choices.
+    pub adjustments: Adjustments,
+    /// Orders that clash.
+    pub clashes: Vec<Clash>,
+}
+
+/// Tries a plan under the given choices.
+///
+/// The engine refuses only problems that are not well formed; the work graph never makes one, so such a refusal comes
+/// out as a plan in which nothing is placed and the refusal is named as a clash: shown, not hidden.
+#[must_use]
+pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
+    let DraftInputs { port, work, timed, situation, before, now, carried_out, forecast_end, effort } = inputs;
+    let roles = roles(RoleInputs { work, timed, situation, before, adjustments, now, carried_out });
+    let problem_inputs = ProblemInputs {
+        port,
+        work,
+        timed,
+        situation,
+        before: carried_out.or(before),
+        adjustments,
+        now,
+        forecast_end,
+    };
+    let mut stated = state(problem_inputs, &roles);
+    let mut clashes = Vec::new();
+    let mut schedule = solved(&stated.problem, effort, &mut clashes);
+    // An ordered start that cannot be met stands all the same: the clash is reported, the order is never dropped.
+    let refused = refused_orders(work, &stated, &roles, &schedule);
+    if !refused.is_empty() {
+        for (position, start, id) in refused {
+            fix(&mut stated.problem, position, start);
+            let what =
+                format!("its ordered start {start} cannot be met with what it needs; the order stands");
+            clashes.push(Clash { task: id, what });
+        }
+        schedule = solved(&stated.problem, effort, &mut clashes);
+    }
+    Draft { roles, stated, schedule, adjustments: adjustments.clone(), clashes }
+}
+
+fn solved(problem: &Problem, effort: Effort, clashes: &mut Vec<Clash>) -> Schedule {
+    match solve(problem, effort) {
+        Ok(schedule) => schedule,
+        Err(error) => {
+            clashes.push(Clash { task: String::new(), what: format!("no plan could be made: {error}") });
+            Schedule { outcomes: Vec::new(), score: Score::default(), bound: Score::default(), decodes: 0 }
+        }
+    }
+}
+
+fn refused_orders(
+    work: &WorkGraph,
+    stated: &Stated,
+    roles: &BTreeMap<NodeIndex, Role>,
+    schedule: &Schedule,
+) -> Vec<(usize, Moment, String)> {
+    (0..)
+        .zip(&stated.nodes)
+        .filter_map(|(position, node)| {
+            let Some(Role::Free { ordered: Some(start), .. }) = roles.get(node) else { return None };
+            let is_placed = schedule.placement(position).is_some();
+            let id = work.task_at(*node)?.id.clone();
+            (!is_placed).then_some((position, *start, id))
+        })
+        .collect()
+}
+
+/// Lets a task stand at its ordered start with the first able members.
+fn fix(problem: &mut Problem, position: usize, start: Moment) {
+    let Some(task) = problem.tasks.get_mut(position) else { return };
+    let Some(way) = task.ways.first_mut() else { return };
+    let mut used: BTreeSet<(usize, usize)> = BTreeSet::new();
+    let mut members = Vec::new();
+    for need in &mut way.needs {
+        let chosen: Vec<usize> =
+            need.able.iter().copied().filter(|m| !used.contains(&(need.pool, *m))).take(need.count).collect();
+        used.extend(chosen.iter().map(|member| (need.pool, *member)));
+        need.count = chosen.len();
+        members.push(chosen);
+    }
+    task.fixed = Some(Fixed { way: 0, start, finish: start + way.takes, members });
+}
+
+impl Draft {
+    /// Ids of the tasks that this try does not do in time: given up, or under way past their hard deadline.
+    #[must_use]
+    pub fn misses(&self, work: &WorkGraph) -> BTreeSet<String> {
+        let tasks = self.stated.problem.tasks.iter().zip(&self.schedule.outcomes);
+        self.stated
+            .nodes
+            .iter()
+            .zip(tasks)
+            .filter(|(node, (task, outcome))| match outcome {
+                Outcome::GivenUp(_) => true,
+                Outcome::Placed(placement) => {
+                    let is_done =
+                        matches!(self.roles.get(node), Some(Role::Stands { state: TaskState::Done, .. }));
+                    !is_done && task.deadline.is_some_and(|deadline| placement.finish > deadline)
+                }
+            })
+            .filter_map(|(node, _)| work.task_at(*node).map(|task| task.id.clone()))
+            .collect()
+    }
+}

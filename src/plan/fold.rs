@@ -1,0 +1,158 @@
+//! From the record's first event to now: each plan starts from the one before.
+
+use crate::advisory::forecast::Advisory;
+use crate::arrival::errors::ErrorTables;
+use crate::arrival::odds::{Answers, Draw, ask};
+use crate::plan::make::{Forecast, MakeInputs, make};
+use crate::plan::sheet::Plan;
+use crate::port::harbour::Port;
+use crate::record::event::Event;
+use crate::record::situation::{Situation, situation};
+use crate::rules::stage::Rules;
+use crate::schedule::search::Effort;
+use crate::time::moment::Moment;
+use crate::work::graph::WorkGraph;
+use crate::work::questions::questions;
+use crate::work::reckoned::{AdoptedArrival, ArrivalBook};
+use std::collections::BTreeMap;
+
+/// Everything that plans depend on: what stands in the port's folder.
+#[derive(Clone, Copy, Debug)]
+pub struct Inputs<'a> {
+    /// The port.
+    pub port: &'a Port,
+    /// Its rules.
+    pub rules: &'a Rules,
+    /// The graph of its tasks and stages; see [`crate::work::expand::expand`].
+    pub work: &'a WorkGraph,
+    /// The record.
+    pub events: &'a [Event],
+    /// Forecasts by file name.
+    pub forecasts: &'a BTreeMap<String, Advisory>,
+    /// The error tables of the odds.
+    pub tables: &'a ErrorTables,
+    /// How many scenarios.
+    pub draw: Draw,
+    /// How long to search for each plan.
+    pub effort: Effort,
+}
+
+/// All plans up to a moment.
+#[derive(Clone, Debug)]
+pub struct History {
+    /// One for each time at which something became known, oldest first, and the one for now; never empty.
+    pub plans: Vec<Plan>,
+}
+
+impl History {
+    /// The plan for now.
+    #[must_use]
+    pub fn latest(&self) -> Option<&Plan> {
+        self.plans.last()
+    }
+
+    /// The last plan made at or before a moment.
+    #[must_use]
+    pub fn at(&self, moment: Moment) -> Option<&Plan> {
+        self.plans.iter().rev().find(|plan| plan.now <= moment)
+    }
+}
+
+/// Folds the record up to `now` and makes a plan at each time at which something became known, and one for `now`. The
+/// result depends on the inputs and `now` alone.
+///
+/// Cost: one set of odds for each advisory, one plan for each time at which something became known.
+#[must_use]
+pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
+    let last = situation(inputs.events, now.to_utc());
+    let odds = all_odds(inputs, &last);
+    let mut moments: Vec<Moment> = last.changes.iter().map(|known| Moment::at_or_after(*known)).collect();
+    moments.push(now);
+    moments.dedup();
+    let mut plans: Vec<Plan> = Vec::with_capacity(moments.len());
+    let end = moments.len();
+    for (number, moment) in (1..).zip(moments) {
+        let then = situation(inputs.events, moment.to_utc());
+        let plan = plan_then(inputs, &odds, &then, plans.last(), number == end);
+        plans.push(plan);
+    }
+    History { plans }
+}
+
+fn plan_then(
+    inputs: &Inputs<'_>,
+    odds: &BTreeMap<String, Answers>,
+    then: &Situation,
+    before: Option<&Plan>,
+    with_reliefs: bool,
+) -> Plan {
+    let forecast = forecast_in_force(inputs.forecasts, odds, then);
+    let adopted = then.adopted.iter().map(|(place, adopted)| {
+        let answers = adopted.advisory_file.as_ref().and_then(|file| odds.get(file));
+        let time = Moment::at_or_before(adopted.time);
+        (place.clone(), AdoptedArrival { wind: adopted.wind, time, answers })
+    });
+    let book = ArrivalBook {
+        port: inputs.port,
+        answers: forecast.as_ref().map(|forecast| forecast.answers),
+        adopted: adopted.collect(),
+        usual: inputs.rules.reckoning,
+    };
+    make(MakeInputs {
+        port: inputs.port,
+        rules: inputs.rules,
+        work: inputs.work,
+        situation: then,
+        forecast: forecast.as_ref(),
+        book: &book,
+        before,
+        effort: inputs.effort,
+        with_reliefs,
+    })
+}
+
+/// The newest of the advisories taken: by issue time, a correction after what it corrects, then as they were taken.
+fn forecast_in_force<'a>(
+    forecasts: &'a BTreeMap<String, Advisory>,
+    odds: &'a BTreeMap<String, Answers>,
+    then: &'a Situation,
+) -> Option<Forecast<'a>> {
+    let taken = then.advisories.iter().filter_map(|taken| {
+        let advisory = forecasts.get(&taken.file)?;
+        let answers = odds.get(&taken.file)?;
+        let known = Moment::at_or_after(taken.said.known);
+        Some(Forecast { advisory, answers, file: &taken.file, known })
+    });
+    taken.max_by_key(|forecast| (forecast.advisory.issued, forecast.advisory.is_corrected, forecast.known))
+}
+
+/// The odds of every advisory that was taken; the work is shared among threads, each advisory a piece of its own, so
+/// that their number changes nothing but the time.
+fn all_odds(inputs: &Inputs<'_>, last: &Situation) -> BTreeMap<String, Answers> {
+    let taken: BTreeMap<&str, &Advisory> = last
+        .advisories
+        .iter()
+        .filter_map(|taken| Some((taken.file.as_str(), inputs.forecasts.get(&taken.file)?)))
+        .collect();
+    let jobs: Vec<(&str, &Advisory)> = taken.into_iter().collect();
+    let threads = std::thread::available_parallelism().map_or(1, usize::from).min(jobs.len()).max(1);
+    let answer = |advisory: &Advisory| {
+        let asked = questions(inputs.port, inputs.rules, inputs.work, advisory.averaging);
+        ask(advisory, &inputs.tables.for_advisory(advisory), &asked, inputs.draw)
+    };
+    std::thread::scope(|scope| {
+        let workers: Vec<_> = (0..threads)
+            .map(|first| {
+                let share: Vec<(&str, &Advisory)> =
+                    jobs.iter().copied().skip(first).step_by(threads).collect();
+                scope.spawn(move || {
+                    share
+                        .into_iter()
+                        .map(|(file, advisory)| (file.to_owned(), answer(advisory)))
+                        .collect::<Vec<_>>()
+                })
+            })
+            .collect();
+        workers.into_iter().filter_map(|worker| worker.join().ok()).flatten().collect()
+    })
+}

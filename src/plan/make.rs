@@ -1,0 +1,154 @@
+//! Makes one plan: from rules, record and odds at one moment to a finished sheet that has passed the audit.
+
+use crate::advisory::forecast::Advisory;
+use crate::arrival::odds::Answers;
+use crate::plan::adjust::Adjustments;
+use crate::plan::audit::{AuditInputs, audit};
+use crate::plan::draft::{Draft, DraftInputs, draft};
+use crate::plan::heads;
+use crate::plan::lines::{LineInputs, lines};
+use crate::plan::relief::{permitted, reliefs};
+use crate::plan::sheet::{AdvisoryInForce, Plan};
+use crate::port::harbour::Port;
+use crate::record::situation::Situation;
+use crate::rules::stage::Rules;
+use crate::schedule::search::Effort;
+use crate::time::moment::Moment;
+use crate::units::wind::Averaging;
+use crate::work::graph::WorkGraph;
+use crate::work::reckoned::ArrivalBook;
+use crate::work::timed::timed;
+
+/// An advisory with its answers.
+#[derive(Clone, Debug)]
+pub struct Forecast<'a> {
+    /// What it says.
+    pub advisory: &'a Advisory,
+    /// The odds that follow from it.
+    pub answers: &'a Answers,
+    /// Its file.
+    pub file: &'a str,
+    /// When the port took it.
+    pub known: Moment,
+}
+
+/// Everything that one plan is made from.
+#[derive(Clone, Copy, Debug)]
+pub struct MakeInputs<'a> {
+    /// The port.
+    pub port: &'a Port,
+    /// Its rules.
+    pub rules: &'a Rules,
+    /// The graph of its tasks and stages.
+    pub work: &'a WorkGraph,
+    /// The record as it stands.
+    pub situation: &'a Situation,
+    /// The advisory in force.
+    pub forecast: Option<&'a Forecast<'a>>,
+    /// Working arrivals.
+    pub book: &'a ArrivalBook<'a>,
+    /// The plan before this one.
+    pub before: Option<&'a Plan>,
+    /// How long to search.
+    pub effort: Effort,
+    /// Whether reliefs are searched for: they cost several plans each, and only the last plan of a fold shows them.
+    pub with_reliefs: bool,
+}
+
+/// Makes the plan. Pure: the same inputs give the same plan.
+#[must_use]
+pub fn make(inputs: MakeInputs<'_>) -> Plan {
+    let MakeInputs { port, rules, work, situation, forecast, book, before, effort, with_reliefs } = inputs;
+    let now = Moment::at_or_after(situation.now);
+    let timed = timed(work, rules, book, situation);
+    let forecast_end = forecast.map(|f| Moment::at_or_after(f.advisory.last_valid()));
+    let draft_inputs = DraftInputs {
+        port,
+        work,
+        timed: &timed,
+        situation,
+        before,
+        now,
+        carried_out: None,
+        forecast_end,
+        effort,
+    };
+    let made = draft_with_permitted(draft_inputs);
+    let answers = forecast.map(|f| f.answers);
+    let latest_starts: Vec<Option<Moment>> = Vec::new();
+    let tasks = lines(LineInputs {
+        port,
+        rules,
+        work,
+        timed: &timed,
+        answers,
+        before,
+        draft: &made,
+        latest_starts: &latest_starts,
+        now,
+    });
+    let averaging = forecast.map_or(Averaging::Minute1, |f| f.advisory.averaging);
+    let arrivals = heads::arrivals(port, book, averaging);
+    let mut plan = Plan {
+        now,
+        advisory: forecast.map(|f| in_force(f, situation)),
+        stages: heads::stages(rules, &timed, situation, port),
+        duties: heads::duties(rules, work, &timed, book, &tasks),
+        joint: answers.and_then(|answers| heads::joint_chance(answers, work, &timed, &tasks)),
+        overtaken: heads::overtaken(rules, work, book, &arrivals, &tasks),
+        arrivals,
+        tasks,
+        reliefs: Vec::new(),
+        clashes: made.clashes.clone(),
+        breaches: Vec::new(),
+        notes: Vec::new(),
+    };
+    if with_reliefs {
+        plan.reliefs = reliefs(draft_inputs, &made, &plan);
+    }
+    plan.breaches = audit(AuditInputs { port, rules, work, situation, book }, &plan);
+    plan
+}
+
+/// The plain plan, or the one with the fewest choices that the files permit if the plain one misses something.
+fn draft_with_permitted(inputs: DraftInputs<'_>) -> Draft {
+    let plain = draft(inputs, &Adjustments::default());
+    let chosen = permitted(inputs, &plain);
+    if chosen == plain.adjustments { plain } else { draft(inputs, &chosen) }
+}
+
+fn in_force(forecast: &Forecast<'_>, situation: &Situation) -> AdvisoryInForce {
+    let advisory = forecast.advisory;
+    AdvisoryInForce {
+        file: forecast.file.to_owned(),
+        storm: advisory.storm.name.clone(),
+        issuer: advisory.issuer.clone(),
+        number: advisory.number,
+        is_corrected: advisory.is_corrected,
+        issued: Moment::at_or_before(advisory.issued),
+        known: forecast.known,
+        next_due: advisory.next_due.map(Moment::at_or_before),
+        age: advisory.age_at(situation.now),
+        is_overdue: is_overdue(advisory, situation),
+        is_last: advisory.is_last,
+        assumed: advisory.assumed.iter().map(|assumption| assumption.what.clone()).collect(),
+        forecast_end: Moment::at_or_after(advisory.last_valid()),
+    }
+}
+
+/// How long after the announced time an advisory counts as overdue. Our choice: offices send within minutes of the
+/// hour, and a duty officer wants to be told before the next watch call.
+const GRACE_MINUTES: i64 = 30;
+
+/// How long an advisory that does not announce the next one stays current: the routine interval of six hours (forecast
+/// offices' practice, four a day) and the grace.
+const ROUTINE_MINUTES: i64 = 360;
+
+fn is_overdue(advisory: &Advisory, situation: &Situation) -> bool {
+    let late =
+        |since: chrono::DateTime<chrono::Utc>, minutes: i64| (situation.now - since).num_minutes() > minutes;
+    match advisory.next_due {
+        Some(due) => late(due, GRACE_MINUTES),
+        None => !advisory.is_last && late(advisory.issued, ROUTINE_MINUTES + GRACE_MINUTES),
+    }
+}

@@ -1,0 +1,406 @@
+//! From the timed work graph to the engine's whole-minute problem.
+
+use crate::geo::daylight::{SunLimit, daylight};
+use crate::plan::adjust::Adjustments;
+use crate::plan::roles::Role;
+use crate::plan::sheet::{Plan, TaskState};
+use crate::port::harbour::Port;
+use crate::port::means::{Member as PortMember, Shift};
+use crate::record::situation::Situation;
+use crate::rules::task::{DaylightNeed, IfGivenUp, LinkKind, Stake, TideNeed};
+use crate::schedule::problem as engine;
+use crate::tide::under_keel::needed_level;
+use crate::tide::window::windows_above;
+use crate::time::local::LocalTime;
+use crate::time::moment::{Minutes, Moment};
+use crate::time::span::Span;
+use crate::time::windows::WindowSet;
+use crate::units::length::Metres;
+use crate::work::graph::{Edge, Task, TaskNeed, WorkGraph};
+use crate::work::timed::Timed;
+use chrono::{DateTime, Duration, Utc};
+use petgraph::graph::NodeIndex;
+use petgraph::visit::EdgeRef;
+use std::collections::BTreeMap;
+
+/// Nothing issued moves by less than this: a change that small is not worth a telephone call. Our choice.
+pub const LEAST_MOVE: Minutes = Minutes::new(10);
+
+/// How far past the later of now and the end of the forecast a plan reaches. Our choice: two tides and a night of rest
+/// after the last forecast time, so that re-opening work has room.
+const BEYOND: Minutes = Minutes::hours(48);
+
+/// What the engine's indices stand for.
+#[derive(Clone, Debug)]
+pub struct Stated {
+    /// The problem.
+    pub problem: engine::Problem,
+    /// The node of each task of the problem.
+    pub nodes: Vec<NodeIndex>,
+    /// What each window set is, in words: "the tide in Main channel for 11.8 m".
+    pub window_words: Vec<String>,
+}
+
+/// Everything that a problem is stated from.
+#[derive(Clone, Copy, Debug)]
+pub struct ProblemInputs<'a> {
+    /// The port.
+    pub port: &'a Port,
+    /// The graph.
+    pub work: &'a WorkGraph,
+    /// Its times.
+    pub timed: &'a Timed,
+    /// The record.
+    pub situation: &'a Situation,
+    /// The plan before this one.
+    pub before: Option<&'a Plan>,
+    /// The choices.
+    pub adjustments: &'a Adjustments,
+    /// Nothing starts before this moment.
+    pub now: Moment,
+    /// The last time that the forecast speaks of.
+    pub forecast_end: Option<Moment>,
+}
+
+/// States the problem of placing every task that `roles` calls free among those that stand.
+#[must_use]
+pub fn state(inputs: ProblemInputs<'_>, roles: &BTreeMap<NodeIndex, Role>) -> Stated {
+    let horizon = inputs.forecast_end.unwrap_or(inputs.now).max(inputs.now + Minutes::hours(72)) + BEYOND;
+    let mut stater =
+        Stater { inputs, horizon, windows: Vec::new(), window_words: Vec::new(), keys: BTreeMap::new() };
+    let mut tasks = Vec::new();
+    let mut nodes = Vec::new();
+    for (rank, (index, task)) in (0..).zip(inputs.work.tasks()) {
+        if let Some(role) = roles.get(&index)
+            && let Some(stated) = stater.task(index, task, role, rank)
+        {
+            tasks.push(stated);
+            nodes.push(index);
+        }
+    }
+    let problem = engine::Problem {
+        now: inputs.now,
+        horizon,
+        least_move: LEAST_MOVE,
+        links: links(inputs.work, &nodes),
+        tasks,
+        pools: stater.pools(),
+        lanes: stater.lanes(),
+        windows: stater.windows,
+    };
+    Stated { problem, nodes, window_words: stater.window_words }
+}
+
+struct Stater<'a> {
+    inputs: ProblemInputs<'a>,
+    horizon: Moment,
+    windows: Vec<WindowSet>,
+    window_words: Vec<String>,
+    /// Window sets by what they are, so that tasks share them.
+    keys: BTreeMap<String, usize>,
+}
+
+impl Stater<'_> {
+    fn task(&mut self, index: NodeIndex, task: &Task, role: &Role, rank: u32) -> Option<engine::Task> {
+        let times = self.inputs.timed.tasks.get(&index)?;
+        let base = engine::Task {
+            ways: Vec::new(),
+            release: self.inputs.now,
+            due: times.due.as_ref().map(|bound| bound.at),
+            deadline: times.deadline.as_ref().map(|bound| bound.at),
+            class: class(task.stake),
+            weight: task.weight,
+            fixed: None,
+            issued: None,
+            rank,
+        };
+        match role {
+            Role::Stands { start, finish, members, .. } => {
+                let (needs, named) = self.named_needs(task, members);
+                let way = engine::Way {
+                    takes: *finish - *start,
+                    whole_in: Vec::new(),
+                    start_in: Vec::new(),
+                    needs,
+                    lane: self.lane_use(task),
+                    cost: 0,
+                };
+                let fixed = engine::Fixed { way: 0, start: *start, finish: *finish, members: named };
+                Some(engine::Task { ways: vec![way], fixed: Some(fixed), ..base })
+            }
+            Role::Free { takes, ordered, is_unreported } => {
+                let way = self.way(task, *takes, *ordered);
+                let issued = if *is_unreported || ordered.is_some() { None } else { self.issued(task, &way) };
+                let release = times.release.unwrap_or(self.inputs.now).max(self.inputs.now);
+                Some(engine::Task { ways: vec![way], release, issued, ..base })
+            }
+            Role::Waiting | Role::NotNeeded | Role::Cannot(_) => None,
+        }
+    }
+
+    fn way(&mut self, task: &Task, takes: Minutes, ordered: Option<Moment>) -> engine::Way {
+        let mut start_in = Vec::new();
+        let mut whole_in = Vec::new();
+        if let Some((need, draught)) = &task.tide {
+            start_in.push(self.tide_window(need, *draught));
+        }
+        match task.daylight {
+            Some(DaylightNeed::Start) => start_in.push(self.daylight_window()),
+            Some(DaylightNeed::Whole) => whole_in.push(self.daylight_window()),
+            None => {}
+        }
+        if let Some(start) = ordered {
+            let minute = WindowSet::from_spans(Span::new(start, start + Minutes::new(1)));
+            start_in.push(self.window(
+                format!("order {start}"),
+                format!("its ordered start {start}"),
+                || minute,
+            ));
+        }
+        let needs = task.needs.iter().map(|need| self.need(need)).collect();
+        engine::Way { takes, whole_in, start_in, needs, lane: self.lane_use(task), cost: 0 }
+    }
+
+    fn need(&self, need: &TaskNeed) -> engine::Need {
+        let members = self.inputs.port.pools.get(need.pool).map_or(0, |pool| pool.members.len());
+        let more = self.inputs.adjustments.more.get(&need.pool).copied().unwrap_or(0);
+        // A member that is only supposed can do whatever is asked.
+        let able = need.able.iter().copied().chain(members..members + more).collect();
+        engine::Need { pool: need.pool, count: need.count, able, before: need.before, after: need.after }
+    }
+
+    /// The needs of a standing task for which the record or the plan before names the members.
+    fn named_needs(&self, task: &Task, members: &[String]) -> (Vec<engine::Need>, Vec<Vec<usize>>) {
+        let planned: Vec<String> = self
+            .inputs
+            .before
+            .and_then(|plan| plan.task(&task.id))
+            .map(|line| line.members.iter().flat_map(|(_, names)| names.clone()).collect())
+            .unwrap_or_default();
+        let names = if members.is_empty() { &planned } else { members };
+        let mut needs = Vec::new();
+        let mut named = Vec::new();
+        let mut used: Vec<(usize, usize)> = Vec::new();
+        for need in &task.needs {
+            let chosen: Vec<usize> = self
+                .positions(need.pool, names)
+                .into_iter()
+                .filter(|position| !used.contains(&(need.pool, *position)))
+                .take(need.count)
+                .collect();
+            if chosen.is_empty() {
+                continue;
+            }
+            used.extend(chosen.iter().map(|position| (need.pool, *position)));
+            let able = chosen.clone();
+            let count = chosen.len();
+            needs.push(engine::Need { pool: need.pool, count, able, before: need.before, after: need.after });
+            named.push(chosen);
+        }
+        (needs, named)
+    }
+
+    fn positions(&self, pool: usize, names: &[String]) -> Vec<usize> {
+        let members =
+            self.inputs.port.pools.get(pool).map(|pool| pool.members.as_slice()).unwrap_or_default();
+        names.iter().filter_map(|name| members.iter().position(|member| member.id == *name)).collect()
+    }
+
+    /// Where the plan before has the task, if that is still ahead and its members are still able.
+    fn issued(&self, task: &Task, way: &engine::Way) -> Option<engine::Issued> {
+        let line = self.inputs.before?.task(&task.id)?;
+        let start = line.start.filter(|start| *start >= self.inputs.now)?;
+        if line.state != TaskState::Planned {
+            return None;
+        }
+        let names: Vec<String> = line.members.iter().flat_map(|(_, names)| names.clone()).collect();
+        let mut used: Vec<(usize, usize)> = Vec::new();
+        let mut members = Vec::new();
+        for need in &way.needs {
+            let chosen: Vec<usize> = self
+                .positions(need.pool, &names)
+                .into_iter()
+                .filter(|position| need.able.contains(position) && !used.contains(&(need.pool, *position)))
+                .take(need.count)
+                .collect();
+            if chosen.len() != need.count {
+                return None;
+            }
+            used.extend(chosen.iter().map(|position| (need.pool, *position)));
+            members.push(chosen);
+        }
+        Some(engine::Issued { way: 0, start, members })
+    }
+
+    fn lane_use(&self, task: &Task) -> Option<engine::LaneUse> {
+        let (passage, class) = task.passage.as_ref()?;
+        let lane = self.inputs.port.channels.iter().position(|channel| channel.id == passage.channel)?;
+        let direction = if passage.outbound { engine::Direction::Out } else { engine::Direction::In };
+        Some(engine::LaneUse { lane, enter: passage.enters, leave: passage.leaves, direction, class: *class })
+    }
+
+    /// The minutes in which a ship may start so that there is water enough over the whole of the shallow part.
+    fn tide_window(&mut self, need: &TideNeed, draught: Metres) -> usize {
+        let port = self.inputs.port;
+        let (from, to) = (self.inputs.now - Minutes::hours(1), self.horizon);
+        let words = format!("the tide in {} for {draught}", need.channel);
+        let key = format!("{words} {} {}", need.from.get(), need.until.get());
+        self.window(key, words, || {
+            let (Some(channel), Some(tide)) = (port.channel(&need.channel), port.tide.as_ref()) else {
+                return WindowSet::never();
+            };
+            let level = needed_level(draught, channel.depth, channel.under_keel, Metres::ZERO);
+            let enough = windows_above(tide, level, from + need.from, to + need.until);
+            let starts = enough.spans().iter().filter_map(|span| {
+                // Half-open on both sides: the last minute of the passage may be the last with water enough.
+                Span::new(span.start() - need.from, span.end() - need.until)
+            });
+            WindowSet::from_spans(starts)
+        })
+    }
+
+    fn daylight_window(&mut self) -> usize {
+        let port = self.inputs.port;
+        let (from, to) = (self.inputs.now - Minutes::hours(24), self.horizon);
+        let here = port.place(&port.reference).map(|place| place.position);
+        self.window(String::from("daylight"), String::from("daylight"), || {
+            here.map_or_else(WindowSet::never, |position| daylight(position, from, to, SunLimit::Sunrise))
+        })
+    }
+
+    fn window(&mut self, key: String, words: String, make: impl FnOnce() -> WindowSet) -> usize {
+        if let Some(known) = self.keys.get(&key) {
+            return *known;
+        }
+        let position = self.windows.len();
+        self.windows.push(make());
+        self.window_words.push(words);
+        self.keys.insert(key, position);
+        position
+    }
+
+    fn pools(&self) -> Vec<engine::Pool> {
+        let port = self.inputs.port;
+        (0..)
+            .zip(&port.pools)
+            .map(|(position, pool)| {
+                let duty = pool
+                    .duty
+                    .map(|hours| engine::Duty { at_most: hours.at_most, then_rest: hours.then_rest });
+                let own = pool.members.iter().map(|member| engine::Member {
+                    available: self.available(member),
+                    duty,
+                    worked: worked(member),
+                });
+                let more = self.inputs.adjustments.more.get(&position).copied().unwrap_or(0);
+                let supposed = (0..more).map(|_| engine::Member {
+                    available: WindowSet::always(),
+                    duty,
+                    worked: Vec::new(),
+                });
+                engine::Pool { members: own.chain(supposed).collect() }
+            })
+            .collect()
+    }
+
+    /// When a member is on call and in service.
+    fn available(&self, member: &PortMember) -> WindowSet {
+        let shifts = if member.shifts.is_empty() {
+            WindowSet::always()
+        } else {
+            WindowSet::from_spans(member.shifts.iter().flat_map(|shift| self.shift_spans(shift)))
+        };
+        let outages = self.inputs.situation.means.get(&member.id).map(Vec::as_slice).unwrap_or_default();
+        let out = WindowSet::from_spans(outages.iter().filter_map(|outage| {
+            let until = outage.until.map_or(Moment::LATEST, Moment::at_or_after);
+            Span::new(Moment::at_or_before(outage.from), until)
+        }));
+        shifts.overlap(&out.gaps())
+    }
+
+    fn shift_spans(&self, shift: &Shift) -> Vec<Span> {
+        match shift {
+            Shift::Once { from, to } => {
+                Span::new(Moment::at_or_after(*from), Moment::at_or_before(*to)).into_iter().collect()
+            }
+            Shift::Daily { from, to } => {
+                let clock = &self.inputs.port.clock;
+                let begins = |local| Moment::at_or_after(instant(clock.local_at(local), Side::Late));
+                let ends = |local| Moment::at_or_before(instant(clock.local_at(local), Side::Early));
+                let first = (self.inputs.now - Minutes::hours(72)).to_utc().date_naive();
+                let days = (self.horizon - self.inputs.now).get() / 1440 + 6;
+                (0..days)
+                    .filter_map(|day| {
+                        let date = first.checked_add_signed(Duration::days(day))?;
+                        let end = if to > from { date } else { date.succ_opt()? };
+                        Span::new(begins(date.and_time(*from)), ends(end.and_time(*to)))
+                    })
+                    .collect()
+            }
+        }
+    }
+
+    fn lanes(&self) -> Vec<engine::Lane> {
+        let channels = self.inputs.port.channels.iter();
+        channels
+            .map(|channel| engine::Lane { spacing: channel.spacing.clone(), clearance: channel.clearance })
+            .collect()
+    }
+}
+
+/// Which of two instants to take where clocks are put back.
+enum Side {
+    Early,
+    Late,
+}
+
+/// The instant of a local time; on the day clocks change, the side that makes a shift shorter.
+fn instant(local: LocalTime, side: Side) -> DateTime<Utc> {
+    match (local, side) {
+        (LocalTime::Once(at) | LocalTime::Never { at, .. }, _) => at,
+        (LocalTime::Twice { first, .. }, Side::Early) => first,
+        (LocalTime::Twice { second, .. }, Side::Late) => second,
+    }
+}
+
+fn worked(member: &PortMember) -> Vec<Span> {
+    let spans = member.worked.iter();
+    spans.filter_map(|(from, to)| Span::new(Moment::at_or_before(*from), Moment::at_or_after(*to))).collect()
+}
+
+/// The engine's class of a stake: the gravest first.
+#[must_use]
+pub fn class(stake: Stake) -> u8 {
+    match stake {
+        Stake::Life => 0,
+        Stake::Harm => 1,
+        Stake::Loss => 2,
+        Stake::Order => 3,
+    }
+}
+
+fn links(work: &WorkGraph, nodes: &[NodeIndex]) -> Vec<engine::Link> {
+    let positions: BTreeMap<NodeIndex, usize> =
+        (0..).zip(nodes).map(|(position, index)| (*index, position)).collect();
+    work.graph
+        .edge_references()
+        .filter_map(|edge| {
+            let Edge::Link { kind, lag, if_given_up } = edge.weight() else { return None };
+            Some(engine::Link {
+                before: *positions.get(&edge.source())?,
+                after: *positions.get(&edge.target())?,
+                kind: match kind {
+                    LinkKind::FinishStart => engine::LinkKind::FinishStart,
+                    LinkKind::StartStart => engine::LinkKind::StartStart,
+                    LinkKind::FinishFinish => engine::LinkKind::FinishFinish,
+                    LinkKind::StartFinish => engine::LinkKind::StartFinish,
+                },
+                lag: *lag,
+                if_given_up: match if_given_up {
+                    IfGivenUp::GiveUpToo => engine::IfGivenUp::GiveUpToo,
+                    IfGivenUp::StartAtDecision => engine::IfGivenUp::StartAtDecision,
+                },
+            })
+        })
+        .collect()
+}

@@ -1,0 +1,261 @@
+//! What would make given-up tasks fit: found by planning again with it, with the last minute for deciding it.
+
+use crate::plan::adjust::Adjustments;
+use crate::plan::draft::{Draft, DraftInputs, draft};
+use crate::plan::sheet::{Plan, Relief, ReliefKind, ReliefStep};
+use crate::rules::task::Leave;
+use crate::time::moment::{Minutes, Moment};
+use crate::work::graph::{Edge, Task, WorkGraph};
+use petgraph::Direction;
+use petgraph::graph::NodeIndex;
+use petgraph::visit::EdgeRef;
+use std::collections::BTreeSet;
+
+/// The choices that the files permit and that make something fit which otherwise does not; none if nothing is missed.
+#[must_use]
+pub fn permitted(inputs: DraftInputs<'_>, plain: &Draft) -> Adjustments {
+    let missed = plain.misses(inputs.work);
+    if missed.is_empty() {
+        return plain.adjustments.clone();
+    }
+    let cuts = cuttable(inputs, plain, &missed, Leave::Permitted);
+    let (with_cuts, missed) = fewest(inputs, plain, cuts, &missed);
+    let mut chosen = with_cuts;
+    for id in &missed {
+        let is_permitted = inputs
+            .work
+            .task(id)
+            .and_then(|task| task.or_else.as_ref())
+            .is_some_and(|substitute| substitute.leave == Leave::Permitted);
+        if is_permitted {
+            chosen.substituted.insert(id.clone());
+        }
+    }
+    chosen
+}
+
+/// Every relief that was found for the tasks that `plan` gives up, the one to be decided first before the others.
+#[must_use]
+pub fn reliefs(inputs: DraftInputs<'_>, base: &Draft, plan: &Plan) -> Vec<Relief> {
+    let missed = base.misses(inputs.work);
+    if missed.is_empty() {
+        return Vec::new();
+    }
+    let finder = Finder { inputs, base, plan, missed: &missed };
+    let mut found = Vec::new();
+    let cuts = cuttable(inputs, base, &missed, Leave::ByOrder);
+    let (choice, left) = fewest(inputs, base, cuts, &missed);
+    if left.len() < missed.len() {
+        found.extend(finder.relief(&choice));
+    }
+    for choice in finder.single_choices() {
+        found.extend(finder.relief(&choice));
+    }
+    found.sort_by(|a, b| (a.decide_by, &a.relieves, &a.steps).cmp(&(b.decide_by, &b.relieves, &b.steps)));
+    found.dedup();
+    found
+}
+
+/// Tasks whose shorter way could help the missed ones: everything that is not done yet and may be cut.
+fn cuttable(inputs: DraftInputs<'_>, base: &Draft, missed: &BTreeSet<String>, leave: Leave) -> Vec<String> {
+    // Those that a missed task waits for come last: the filter below drops the others first.
+    let upstream = upstream(inputs.work, missed);
+    let mut cuts: Vec<(bool, String)> = inputs
+        .work
+        .tasks()
+        .filter(|(index, task)| {
+            let is_offered = task.cut.as_ref().is_some_and(|cut| cut.leave == leave);
+            is_offered && base.stated.nodes.contains(index) && !base.adjustments.cut.contains(&task.id)
+        })
+        .map(|(index, task)| (upstream.contains(&index), task.id.clone()))
+        .collect();
+    cuts.sort();
+    cuts.into_iter().map(|(_, id)| id).collect()
+}
+
+/// With all of `cuts`, and then with as few of them as miss no more than all do: the choices and what is missed.
+fn fewest(
+    inputs: DraftInputs<'_>,
+    base: &Draft,
+    cuts: Vec<String>,
+    missed: &BTreeSet<String>,
+) -> (Adjustments, BTreeSet<String>) {
+    let mut choice = base.adjustments.clone();
+    choice.cut.extend(cuts.iter().cloned());
+    let with_all = draft(inputs, &choice).misses(inputs.work);
+    if cuts.is_empty() || with_all.len() >= missed.len() {
+        return (base.adjustments.clone(), missed.clone());
+    }
+    let mut best = with_all;
+    for cut in &cuts {
+        let mut fewer = choice.clone();
+        fewer.cut.remove(cut);
+        let misses = draft(inputs, &fewer).misses(inputs.work);
+        if misses.len() <= best.len() {
+            best = misses;
+            choice = fewer;
+        }
+    }
+    (choice, best)
+}
+
+/// The missed tasks and everything they wait for.
+fn upstream(work: &WorkGraph, missed: &BTreeSet<String>) -> BTreeSet<NodeIndex> {
+    let mut stack: Vec<NodeIndex> = missed.iter().filter_map(|id| work.find(id)).collect();
+    let mut seen: BTreeSet<NodeIndex> = stack.iter().copied().collect();
+    while let Some(node) = stack.pop() {
+        for edge in work.graph.edges_directed(node, Direction::Incoming) {
+            if matches!(edge.weight(), Edge::Link { .. }) && seen.insert(edge.source()) {
+                stack.push(edge.source());
+            }
+        }
+    }
+    seen
+}
+
+struct Finder<'a> {
+    inputs: DraftInputs<'a>,
+    base: &'a Draft,
+    plan: &'a Plan,
+    missed: &'a BTreeSet<String>,
+}
+
+impl Finder<'_> {
+    /// One more member of a pool that the missed tasks need, a stand-in for one of them, or an order lifted.
+    fn single_choices(&self) -> Vec<Adjustments> {
+        let mut choices = Vec::new();
+        let nodes = upstream(self.inputs.work, self.missed);
+        let pools: BTreeSet<usize> = nodes
+            .iter()
+            .filter_map(|node| self.inputs.work.task_at(*node))
+            .flat_map(|task| task.needs.iter().map(|need| need.pool))
+            .collect();
+        for pool in pools {
+            let mut choice = self.base.adjustments.clone();
+            *choice.more.entry(pool).or_insert(0) += 1;
+            choices.push(choice);
+        }
+        for id in self.missed {
+            if self.inputs.work.task(id).is_some_and(|task| task.or_else.is_some()) {
+                let mut choice = self.base.adjustments.clone();
+                choice.substituted.insert(id.clone());
+                choices.push(choice);
+            }
+        }
+        for (task, state) in &self.inputs.situation.tasks {
+            if state.fixed.is_some() {
+                let mut choice = self.base.adjustments.clone();
+                choice.lifted.insert(task.clone());
+                choices.push(choice);
+            }
+        }
+        choices
+    }
+
+    /// The relief that a choice is, if it helps.
+    fn relief(&self, choice: &Adjustments) -> Option<Relief> {
+        let still_missed = self.missed_at(choice, self.inputs.now)?;
+        let relieves: BTreeSet<String> = self.missed.difference(&still_missed).cloned().collect();
+        if relieves.is_empty() || still_missed.iter().any(|id| !self.missed.contains(id)) {
+            return None;
+        }
+        let decide_by = self.decide_by(choice, &relieves);
+        Some(Relief {
+            steps: self.steps(choice),
+            relieves: relieves.into_iter().collect(),
+            leaves: still_missed.into_iter().collect(),
+            decide_by,
+        })
+    }
+
+    /// What is missed when the choice is made at `when`, the plan in hand being carried out until then.
+    fn missed_at(&self, choice: &Adjustments, when: Moment) -> Option<BTreeSet<String>> {
+        let later = when > self.inputs.now;
+        let inputs = DraftInputs {
+            now: when,
+            carried_out: if later { Some(self.plan) } else { self.inputs.carried_out },
+            ..self.inputs
+        };
+        let tried = draft(inputs, choice);
+        let lost_order = tried.clashes.len() > self.base.clashes.len();
+        (!lost_order).then(|| tried.misses(self.inputs.work))
+    }
+
+    fn helps_at(&self, choice: &Adjustments, relieves: &BTreeSet<String>, when: Moment) -> bool {
+        self.missed_at(choice, when).is_some_and(|missed| {
+            relieves.is_disjoint(&missed) && missed.iter().all(|id| self.missed.contains(id))
+        })
+    }
+
+    /// The last minute at which the choice still helps: steps of an hour until it does not, then halving.
+    ///
+    /// Tides and rest can make a later decision help where an earlier one does not; people are told the end of the first
+    /// unbroken stretch, the safe side.
+    fn decide_by(&self, choice: &Adjustments, relieves: &BTreeSet<String>) -> Moment {
+        let start = self.inputs.now;
+        let mut good = start;
+        let mut bad = start + Minutes::hours(72);
+        let mut probe = start + Minutes::hours(1);
+        while probe < bad {
+            if self.helps_at(choice, relieves, probe) {
+                good = probe;
+                probe = probe + Minutes::hours(1);
+            } else {
+                bad = probe;
+            }
+        }
+        while (bad - good).get() > 1 {
+            let middle = good + Minutes::new((bad - good).get() / 2);
+            if self.helps_at(choice, relieves, middle) { good = middle } else { bad = middle }
+        }
+        good
+    }
+
+    fn steps(&self, choice: &Adjustments) -> Vec<ReliefStep> {
+        let work = self.inputs.work;
+        let base = &self.base.adjustments;
+        let task_step = |id: &String, kind: ReliefKind, words: &dyn Fn(&Task) -> (String, String)| {
+            let (what, price) = work.task(id).map(words).unwrap_or_default();
+            ReliefStep { kind, about: id.clone(), what, price }
+        };
+        let cuts = choice.cut.difference(&base.cut).map(|id| {
+            task_step(id, ReliefKind::Cut, &|task| {
+                let cut = task.cut.as_ref();
+                let to = cut.map_or(task.takes, |cut| cut.to);
+                (
+                    format!("cut short to {to} in all: {}", task.name),
+                    cut.map(|c| c.price.clone()).unwrap_or_default(),
+                )
+            })
+        });
+        let stand_ins = choice.substituted.difference(&base.substituted).map(|id| {
+            task_step(id, ReliefKind::Substitute, &|task| {
+                let substitute = task.or_else.as_ref();
+                let names: Vec<&str> = substitute
+                    .map(|s| s.tasks.iter().filter_map(|id| work.task(id)).map(|t| t.name.as_str()).collect())
+                    .unwrap_or_default();
+                (
+                    format!("instead of \"{}\": {}", task.name, names.join(", ")),
+                    substitute.map(|s| s.price.clone()).unwrap_or_default(),
+                )
+            })
+        });
+        let more =
+            choice.more.iter().filter(|(pool, count)| base.more.get(pool) != Some(count)).map(|(pool, _)| {
+                let name = self.inputs.port.pools.get(*pool).map(|pool| (pool.id.clone(), pool.name.clone()));
+                let (about, name) = name.unwrap_or_default();
+                ReliefStep {
+                    kind: ReliefKind::OneMore,
+                    about,
+                    what: format!("one more: {name}"),
+                    price: String::new(),
+                }
+            });
+        let lifted = choice.lifted.difference(&base.lifted).map(|id| {
+            task_step(id, ReliefKind::LiftOrder, &|task| {
+                (format!("lift the order that fixes \"{}\"", task.name), String::new())
+            })
+        });
+        cuts.chain(stand_ins).chain(more).chain(lifted).collect()
+    }
+}

@@ -1,0 +1,8 @@
+//! One graph of tasks and stages, and what times the odds and the record give it.
+
+pub mod circle;
+pub mod expand;
+pub mod graph;
+pub mod questions;
+pub mod reckoned;
+pub mod timed;

@@ -1,0 +1,305 @@
+//! What times the odds and the record give to stages and tasks.
+
+use crate::record::situation::Situation;
+use crate::rules::limit::{Anchor, Binding, Deadline, WindAt};
+use crate::rules::stage::{Rules, Trigger};
+use crate::rules::task::NotBefore;
+use crate::time::moment::Moment;
+use crate::units::chance::Chance;
+use crate::work::graph::{Task, WorkGraph};
+use crate::work::questions::question_key;
+use crate::work::reckoned::{ArrivalBook, moment_of};
+use petgraph::graph::NodeIndex;
+use std::collections::BTreeMap;
+
+/// The graph with its times at one moment of one record.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Timed {
+    /// One for each stage, in the order of the rules.
+    pub stages: Vec<StageTimes>,
+    /// One for each task.
+    pub tasks: BTreeMap<NodeIndex, TaskTimes>,
+}
+
+/// A stage's times.
+#[derive(Clone, Debug, PartialEq)]
+pub struct StageTimes {
+    /// When its triggers make it due; `None` if none does.
+    pub due: Option<Moment>,
+    /// Which trigger that is, by its place in the stage's list.
+    pub trigger: Option<usize>,
+    /// Counted from an adopted arrival.
+    pub is_adopted: bool,
+    /// Since when it is declared.
+    pub declared: Option<Moment>,
+    /// Since when it is lifted.
+    pub lifted: Option<Moment>,
+    /// How it stands.
+    pub standing: Standing,
+}
+
+/// How a stage stands.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Standing {
+    /// Nothing makes it due.
+    NotDue,
+    /// Due later.
+    Later,
+    /// Due now and not declared.
+    DueNow,
+    /// Declared, in force.
+    Declared,
+    /// A later stage of the same direction is declared.
+    Superseded,
+    /// Lifted.
+    Lifted,
+}
+
+/// A task's times.
+#[derive(Clone, Debug, PartialEq)]
+pub struct TaskTimes {
+    /// Before this it may not start; `None` while the stage that gates it is not due.
+    pub release: Option<Moment>,
+    /// The stage that has to be declared first and is not, by its place in the rules.
+    pub if_declared: Option<usize>,
+    /// The earliest hard deadline, and what it counts from.
+    pub deadline: Option<Bound>,
+    /// The earliest soft one.
+    pub due: Option<Bound>,
+    /// Keys of the winds that stop the task or that it has to precede, for its risk.
+    pub risks: Vec<String>,
+}
+
+/// A bound on a task's finish, and where it comes from.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Bound {
+    /// The bound.
+    pub at: Moment,
+    /// What it counts from, in words: "34 kt at Pilot station, less 12 h".
+    pub because: String,
+    /// Counted from an adopted arrival.
+    pub is_adopted: bool,
+}
+
+/// Gives every stage and task its times.
+///
+/// A stage's due time comes from the record and the odds alone, never from the plan.
+#[must_use]
+pub fn timed(work: &WorkGraph, rules: &Rules, book: &ArrivalBook<'_>, situation: &Situation) -> Timed {
+    let now = Moment::at_or_after(situation.now);
+    let stages = stage_times(rules, book, situation, now);
+    let clock = Clockwork { rules, book, situation, stages: &stages, now };
+    let tasks = work.tasks().map(|(index, task)| (index, clock.task_times(task))).collect();
+    Timed { stages, tasks }
+}
+
+fn stage_times(rules: &Rules, book: &ArrivalBook<'_>, situation: &Situation, now: Moment) -> Vec<StageTimes> {
+    let mut stages: Vec<StageTimes> = rules
+        .stages
+        .iter()
+        .map(|stage| {
+            let state = situation.stages.get(&stage.id);
+            let declared =
+                state.and_then(|s| s.declared.as_ref()).map(|told| Moment::at_or_after(told.value));
+            let lifted = state.and_then(|s| s.lifted.as_ref()).map(|told| Moment::at_or_after(told.value));
+            StageTimes {
+                due: None,
+                trigger: None,
+                is_adopted: false,
+                declared: declared.filter(|from| *from <= now),
+                lifted: lifted.filter(|from| *from <= now),
+                standing: Standing::NotDue,
+            }
+        })
+        .collect();
+    // Stages may count from each other, in any order but never in a circle: as many rounds as stages settle all.
+    for _ in 0..rules.stages.len() {
+        let dues: Vec<_> =
+            rules.stages.iter().map(|stage| due_of(&stage.any, rules, book, situation, &stages)).collect();
+        for (times, due) in stages.iter_mut().zip(dues) {
+            times.due = due.map(|(at, _, _)| at);
+            times.trigger = due.map(|(_, trigger, _)| trigger);
+            times.is_adopted = due.is_some_and(|(_, _, adopted)| adopted);
+        }
+    }
+    let standings: Vec<Standing> =
+        (0..stages.len()).map(|position| standing(rules, &stages, position, now)).collect();
+    for (times, standing) in stages.iter_mut().zip(standings) {
+        times.standing = standing;
+    }
+    stages
+}
+
+/// The earliest of a stage's triggers: (when, which, counted from an adopted arrival).
+fn due_of(
+    triggers: &[Trigger],
+    rules: &Rules,
+    book: &ArrivalBook<'_>,
+    situation: &Situation,
+    stages: &[StageTimes],
+) -> Option<(Moment, usize, bool)> {
+    let fires = |trigger: &Trigger| match trigger {
+        Trigger::Forecast { wind, within, reckoning } => book
+            .arrival(wind, reckoning.unwrap_or(rules.reckoning))
+            .map(|arrival| (arrival.at - *within, arrival.is_adopted)),
+        Trigger::Observed { wind } => first_observed(wind, situation).map(|at| (at, false)),
+        Trigger::Stage { stage, after } => {
+            stage_anchor(stage, rules, stages).map(|(at, is_adopted)| (at + *after, is_adopted))
+        }
+        Trigger::WindOver { wind, after } => book
+            .answer(&question_key(wind))
+            .and_then(|answer| moment_of(answer.end_quantile(ninety_percent())))
+            .map(|at| (at + *after, false)),
+    };
+    (0..)
+        .zip(triggers)
+        .filter_map(|(position, trigger)| fires(trigger).map(|(at, is_adopted)| (at, position, is_adopted)))
+        .min()
+}
+
+/// With which chance "the wind is over for good" is said. Our choice: the same 90 % point as "latest".
+fn ninety_percent() -> Chance {
+    Chance::share(9, 10)
+}
+
+/// When a wind was first observed at or above the limit; only observations of the limit's own averaging count, since a
+/// gust says little about a mean.
+fn first_observed(wind: &WindAt, situation: &Situation) -> Option<Moment> {
+    situation
+        .observed
+        .iter()
+        .filter(|seen| seen.place == wind.place && seen.averaging == wind.limit.averaging)
+        .filter(|seen| seen.wind >= wind.limit.speed)
+        .map(|seen| Moment::at_or_before(seen.at))
+        .min()
+}
+
+/// The time that "stage X" stands for: declared if it is, else due; and whether it counts from an adopted arrival.
+fn stage_anchor(stage: &str, rules: &Rules, stages: &[StageTimes]) -> Option<(Moment, bool)> {
+    let position = rules.stages.iter().position(|candidate| candidate.id == stage)?;
+    let times = stages.get(position)?;
+    times.declared.map(|at| (at, false)).or(times.due.map(|at| (at, times.is_adopted)))
+}
+
+fn standing(rules: &Rules, stages: &[StageTimes], position: usize, now: Moment) -> Standing {
+    let (Some(times), Some(stage)) = (stages.get(position), rules.stages.get(position)) else {
+        return Standing::NotDue;
+    };
+    let later_is_declared = stages.iter().zip(&rules.stages).skip(position + 1).any(|(other, rule)| {
+        rule.direction == stage.direction && other.declared.is_some() && other.lifted.is_none()
+    });
+    match (times.declared, times.lifted, times.due) {
+        (Some(declared), Some(lifted), _) if lifted >= declared => Standing::Lifted,
+        (Some(_), _, _) if later_is_declared => Standing::Superseded,
+        (Some(_), _, _) => Standing::Declared,
+        (None, _, _) if later_is_declared => Standing::Superseded,
+        (None, _, Some(due)) if due <= now => Standing::DueNow,
+        (None, _, Some(_)) => Standing::Later,
+        (None, _, None) => Standing::NotDue,
+    }
+}
+
+struct Clockwork<'a> {
+    rules: &'a Rules,
+    book: &'a ArrivalBook<'a>,
+    situation: &'a Situation,
+    stages: &'a [StageTimes],
+    now: Moment,
+}
+
+impl Clockwork<'_> {
+    fn task_times(&self, task: &Task) -> TaskTimes {
+        let bounds = |binding: Binding| -> Option<Bound> {
+            task.done_before
+                .iter()
+                .filter(|deadline| deadline.binds == binding)
+                .filter_map(|deadline| self.bound(deadline))
+                .min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)))
+        };
+        let stop = task.stops_at.iter().filter_map(|wind| self.stop(wind));
+        let deadline = bounds(Binding::Hard)
+            .into_iter()
+            .chain(stop)
+            .min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)));
+        let (gate, if_declared) = self.gate(task);
+        let release = gate.and_then(|gate| self.not_before(task).map(|times| times.max(gate)));
+        TaskTimes { release, if_declared, deadline, due: bounds(Binding::Soft), risks: risks(task) }
+    }
+
+    /// When the gate opens (now, if it stands open), and the stage that is still to be declared.
+    fn gate(&self, task: &Task) -> (Option<Moment>, Option<usize>) {
+        let Some(position) = task.gate else { return (Some(self.now), None) };
+        let Some(times) = self.stages.get(position) else { return (None, None) };
+        match times.standing {
+            Standing::Declared | Standing::Superseded => (Some(self.now), None),
+            Standing::DueNow | Standing::Later => (times.due.map(|due| due.max(self.now)), Some(position)),
+            Standing::NotDue | Standing::Lifted => (None, Some(position)),
+        }
+    }
+
+    /// The latest of the times before which the task may not start; `None` if one of them is not known yet.
+    fn not_before(&self, task: &Task) -> Option<Moment> {
+        let told = self.situation.tasks.get(&task.id).and_then(|state| state.not_before.as_ref());
+        if let Some(told) = told {
+            // A report about this task replaces what the files say: it is the newer knowledge.
+            return Some(Moment::at_or_after(told.value).max(self.now));
+        }
+        task.not_before.iter().try_fold(self.now, |latest, condition| {
+            let time = match condition {
+                NotBefore::After(anchor, offset) => self.anchor(anchor).map(|(at, _, _)| at + *offset),
+                NotBefore::At(time) => Some(Moment::at_or_after(*time)),
+                NotBefore::Own(_) => Some(self.now),
+            };
+            time.map(|time| time.max(latest))
+        })
+    }
+
+    fn bound(&self, deadline: &Deadline) -> Option<Bound> {
+        let (at, words, is_adopted) = self.anchor(&deadline.anchor)?;
+        let lead = deadline.lead;
+        let because = match lead.get() {
+            0 => words,
+            minutes if minutes > 0 => format!("{words}, less {lead}"),
+            _ => format!("{words}, plus {}", -lead),
+        };
+        Some(Bound { at: at - lead, because, is_adopted })
+    }
+
+    fn stop(&self, wind: &WindAt) -> Option<Bound> {
+        let arrival = self.book.usual_arrival(wind)?;
+        Some(Bound { at: arrival.at, because: self.wind_words(wind), is_adopted: arrival.is_adopted })
+    }
+
+    /// The time of an anchor, its words, and whether it counts from an adopted arrival.
+    fn anchor(&self, anchor: &Anchor) -> Option<(Moment, String, bool)> {
+        match anchor {
+            Anchor::Wind(wind) => {
+                let arrival = self.book.usual_arrival(wind)?;
+                Some((arrival.at, self.wind_words(wind), arrival.is_adopted))
+            }
+            Anchor::Stage(stage) => {
+                let (at, is_adopted) = stage_anchor(stage, self.rules, self.stages)?;
+                Some((at, format!("stage {stage}"), is_adopted))
+            }
+            Anchor::Clock(time) => Some((Moment::at_or_before(*time), String::from("a fixed time"), false)),
+        }
+    }
+
+    fn wind_words(&self, wind: &WindAt) -> String {
+        let place =
+            self.book.port.place(&wind.place).map_or(wind.place.as_str(), |place| place.name.as_str());
+        format!("{} at {place}", wind.limit)
+    }
+}
+
+/// Keys of the winds that limit a task, each once.
+fn risks(task: &Task) -> Vec<String> {
+    let winds = task.done_before.iter().filter_map(|deadline| match &deadline.anchor {
+        Anchor::Wind(wind) => Some(wind),
+        Anchor::Stage(_) | Anchor::Clock(_) => None,
+    });
+    let mut keys: Vec<String> = winds.chain(&task.stops_at).map(question_key).collect();
+    keys.sort_unstable();
+    keys.dedup();
+    keys
+}
