@@ -4,6 +4,7 @@
 
 pub mod advisory;
 pub mod arrival;
+pub mod cli;
 pub mod finding;
 pub mod geo;
 pub mod output;
