@@ -1,7 +1,7 @@
 //! From the engine's schedule to the lines of a plan: one for each task.
 
 use crate::arrival::odds::Answers;
-use crate::plan::chain::{chain_to_finish, chain_to_start};
+use crate::plan::chain::ChainWords;
 use crate::plan::draft::Draft;
 use crate::plan::roles::Role;
 use crate::plan::sheet::{GivenUp, Plan, TaskLine, TaskState};
@@ -149,8 +149,7 @@ fn fill(inputs: &LineInputs<'_>, line: &mut TaskLine, position: usize, role: &Ro
             }
             if matches!(role, Role::Free { .. }) {
                 line.latest_start = inputs.latest_starts.get(position).copied().flatten();
-                (line.chain_from, line.chain) =
-                    chain_to_start(inputs.work, inputs.port, inputs.draft, position);
+                (line.chain_from, line.chain) = words(inputs).to_start(position);
             }
         }
         Some(Outcome::GivenUp(given_up)) => {
@@ -177,7 +176,7 @@ fn told(
     given_up: &EngineGivenUp,
     deadline: Option<Moment>,
 ) -> GivenUp {
-    let (chain_from, chain) = chain_to_finish(inputs.work, inputs.port, inputs.draft, position);
+    let (chain_from, chain) = words(inputs).to_finish(position);
     let because = inputs
         .draft
         .stated
@@ -213,6 +212,10 @@ fn told(
         chain,
         chain_from,
     }
+}
+
+fn words<'a>(inputs: &LineInputs<'a>) -> ChainWords<'a> {
+    ChainWords { work: inputs.work, port: inputs.port, draft: inputs.draft }
 }
 
 fn task_id(inputs: &LineInputs<'_>, position: usize) -> String {

@@ -2,7 +2,7 @@
 
 use crate::record::situation::Situation;
 use crate::rules::limit::{Anchor, Binding, Deadline, WindAt};
-use crate::rules::stage::{Rules, Trigger};
+use crate::rules::stage::{Rules, StageDirection, Trigger};
 use crate::rules::task::NotBefore;
 use crate::time::moment::Moment;
 use crate::units::chance::Chance;
@@ -216,14 +216,31 @@ impl Clockwork<'_> {
                 .filter_map(|deadline| self.bound(deadline))
                 .min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)))
         };
-        let stop = task.stops_at.iter().filter_map(|wind| self.stop(wind));
+        // Work on the way up is done after the wind: its limits hold it back instead of cutting it off.
+        let is_after = self.is_reopening(task);
+        let stop = task.stops_at.iter().filter(|_| !is_after).filter_map(|wind| self.stop(wind));
         let deadline = bounds(Binding::Hard)
             .into_iter()
             .chain(stop)
             .min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)));
         let (gate, if_declared) = self.gate(task);
-        let release = gate.and_then(|gate| self.not_before(task).map(|times| times.max(gate)));
-        TaskTimes { release, if_declared, deadline, due: bounds(Binding::Soft), risks: risks(task) }
+        let over = task.stops_at.iter().filter(|_| is_after).filter_map(|wind| self.over(wind));
+        let release = gate
+            .and_then(|gate| self.not_before(task).map(|times| times.max(gate)))
+            .map(|release| over.fold(release, Moment::max));
+        let risks = if is_after { Vec::new() } else { risks(task) };
+        TaskTimes { release, if_declared, deadline, due: bounds(Binding::Soft), risks }
+    }
+
+    fn is_reopening(&self, task: &Task) -> bool {
+        let gate = task.gate.and_then(|position| self.rules.stages.get(position));
+        gate.is_some_and(|stage| stage.direction == StageDirection::Reopening)
+    }
+
+    /// When a wind is over for good with 90 % chance; `None` if it never comes or the forecast ends first.
+    fn over(&self, wind: &WindAt) -> Option<Moment> {
+        let answer = self.book.answer(&question_key(wind))?;
+        moment_of(answer.end_quantile(ninety_percent()))
     }
 
     /// When the gate opens (now, if it stands open), and the stage that is still to be declared.
