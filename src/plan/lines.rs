@@ -104,7 +104,10 @@ fn blank(inputs: &LineInputs<'_>, task: &Task, role: &Role, times: &TaskTimes) -
         },
         late_by: Minutes::ZERO,
         chain: Vec::new(),
-        chain_from: inputs.now,
+        chain_from: match role {
+            Role::Stands { start, .. } => *start,
+            Role::Free { .. } | Role::Waiting | Role::NotNeeded | Role::Cannot(_) => inputs.now,
+        },
         given_up: match role {
             Role::Cannot(why) => Some(GivenUp {
                 why: why.clone(),

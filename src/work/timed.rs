@@ -4,7 +4,7 @@ use crate::record::situation::Situation;
 use crate::rules::limit::{Anchor, Binding, Deadline, WindAt};
 use crate::rules::stage::{Rules, StageDirection, Trigger};
 use crate::rules::task::NotBefore;
-use crate::time::moment::Moment;
+use crate::time::moment::{Minutes, Moment};
 use crate::units::chance::Chance;
 use crate::work::graph::{Task, WorkGraph};
 use crate::work::questions::question_key;
@@ -199,6 +199,10 @@ fn standing(rules: &Rules, stages: &[StageTimes], position: usize, now: Moment) 
     }
 }
 
+/// By how much tasks behind a stage that is due and not declared move on at a time: what people were told should not
+/// change every minute. Our choice, the same as the least move of a plan.
+const STEP: Minutes = Minutes::new(10);
+
 struct Clockwork<'a> {
     rules: &'a Rules,
     book: &'a ArrivalBook<'a>,
@@ -249,7 +253,9 @@ impl Clockwork<'_> {
         let Some(times) = self.stages.get(position) else { return (None, None) };
         match times.standing {
             Standing::Declared | Standing::Superseded => (Some(self.now), None),
-            Standing::DueNow | Standing::Later => (times.due.map(|due| due.max(self.now)), Some(position)),
+            // Waiting for the order, tasks move on with the clock, but only by whole steps.
+            Standing::DueNow => (Some(self.now.ceil_to(STEP)), Some(position)),
+            Standing::Later => (times.due, Some(position)),
             Standing::NotDue | Standing::Lifted => (None, Some(position)),
         }
     }
