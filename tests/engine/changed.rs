@@ -8,7 +8,7 @@ use snugdown::time::span::Span;
 use snugdown::time::windows::WindowSet;
 
 fn solved(problem: &Problem) -> Schedule {
-    solve(problem, Effort { seed: 1, decodes: 3_000 }).unwrap()
+    solve(problem, Effort { seed: 1, decodes: 1_500 }).unwrap()
 }
 
 #[test]
