@@ -14,5 +14,6 @@ fn show() {
     reading.set_events("[[event]]\nat = \"2026-09-16T12:05-03:00\"\nby = \"Duty officer\"\ntook_advisory = { file = \"01.txt\" }\n");
     let history = reading.plans("2026-09-17T06:20-03:00");
     let plan = history.latest().unwrap();
-    println!("{plan:#?}");
+    let setting = snugdown::output::setting::Setting::of(&reading.port, &reading.rules);
+    println!("{}", snugdown::output::plan_text::plan_text(plan, &setting, 120));
 }

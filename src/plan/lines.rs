@@ -97,6 +97,7 @@ fn blank(inputs: &LineInputs<'_>, task: &Task, role: &Role, times: &TaskTimes) -
         },
         is_ordered: matches!(role, Role::Stands { state: TaskState::Planned, .. }),
         is_unreported: is_unreported(inputs, task, role),
+        is_ordered: matches!(role, Role::Free { ordered: Some(_), .. }),
         cut: if is_cut { task.cut.as_ref().map(|cut| cut.price.clone()) } else { None },
         stands_in_for: match role {
             Role::NotNeeded | Role::Cannot(_) => None,
