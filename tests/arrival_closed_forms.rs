@@ -1,4 +1,5 @@
 //! Arrival odds against cases whose answer is known in closed form or from an independent simulation.
+#![allow(clippy::unwrap_used, clippy::panic, reason = "helpers of tests may fail loudly")]
 
 mod storms;
 
