@@ -96,7 +96,8 @@ fn imports_run_down_the_floors_only() {
         let floor = floors.get(room).unwrap_or_else(|| panic!("{room} has no floor"));
         for import in imports_of(&code_of(&path)) {
             let other = room_of(&import);
-            let other_floor = floors.get(other).unwrap_or_else(|| panic!("{name} imports {import}: no such room"));
+            let other_floor =
+                floors.get(other).unwrap_or_else(|| panic!("{name} imports {import}: no such room"));
             if other != room && other_floor >= floor {
                 wrong.push(format!("{name} (floor {floor}) imports {import} (floor {other_floor})"));
             }
@@ -154,7 +155,8 @@ fn nothing_is_imported_whole_or_passed_on() {
         let name = name_of(&path);
         let code = code_of(&path);
         let before_tests = code.split("#[cfg(test)]").next().unwrap_or_default();
-        for (what, pattern) in [("a glob", "::*;"), ("a pub use", "pub use "), ("a super:: path", "super::")] {
+        for (what, pattern) in [("a glob", "::*;"), ("a pub use", "pub use "), ("a super:: path", "super::")]
+        {
             if before_tests.contains(pattern) {
                 wrong.push(format!("{name} has {what}"));
             }

@@ -95,7 +95,6 @@ fn blank(inputs: &LineInputs<'_>, task: &Task, role: &Role, times: &TaskTimes) -
             Role::Free { .. } | Role::Waiting => times.if_declared.and_then(stage_id),
             Role::Stands { .. } | Role::NotNeeded | Role::Cannot(_) => None,
         },
-        is_ordered: matches!(role, Role::Stands { state: TaskState::Planned, .. }),
         is_unreported: is_unreported(inputs, task, role),
         is_ordered: matches!(role, Role::Free { ordered: Some(_), .. }),
         cut: if is_cut { task.cut.as_ref().map(|cut| cut.price.clone()) } else { None },

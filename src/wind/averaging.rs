@@ -1,55 +1,7 @@
 //! From one averaging period of the wind to another, by exposure: gust factors of the WMO guidelines for tropical cyclones.
 
+use crate::geo::exposure::ExposureClass;
 use crate::units::wind::Averaging;
-use std::fmt;
-
-/// How open to the sea the wind at a place is, in the four classes of the guidelines.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
-pub enum ExposureClass {
-    /// Inland, roughly open terrain.
-    InLand,
-    /// At the coast, wind off the land.
-    OffLand,
-    /// At the coast, wind off the sea.
-    OffSea,
-    /// More than 20 km off the coast: where forecast winds apply.
-    AtSea,
-}
-
-impl ExposureClass {
-    /// All classes, roughest first.
-    pub const ALL: [ExposureClass; 4] =
-        [ExposureClass::InLand, ExposureClass::OffLand, ExposureClass::OffSea, ExposureClass::AtSea];
-
-    /// Reads "in-land", "off-land", "off-sea" or "at-sea" (a space does for the hyphen).
-    ///
-    /// ```
-    /// use snugdown::wind::averaging::ExposureClass;
-    /// assert_eq!(ExposureClass::parse("at sea"), Some(ExposureClass::AtSea));
-    /// assert_eq!(ExposureClass::parse("sheltered"), None);
-    /// ```
-    #[must_use]
-    pub fn parse(text: &str) -> Option<ExposureClass> {
-        match text.trim().replace(' ', "-").as_str() {
-            "in-land" | "inland" => Some(ExposureClass::InLand),
-            "off-land" => Some(ExposureClass::OffLand),
-            "off-sea" => Some(ExposureClass::OffSea),
-            "at-sea" => Some(ExposureClass::AtSea),
-            _ => None,
-        }
-    }
-}
-
-impl fmt::Display for ExposureClass {
-    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        f.write_str(match self {
-            ExposureClass::InLand => "in-land",
-            ExposureClass::OffLand => "off-land",
-            ExposureClass::OffSea => "off-sea",
-            ExposureClass::AtSea => "at-sea",
-        })
-    }
-}
 
 /// Reference periods of the rows of a [`Table`]: an hour, 10, 3, 2 minutes, 1 minute.
 const REFERENCES: [u32; 5] = [3600, 600, 180, 120, 60];

@@ -1,7 +1,7 @@
 //! Wind at other heights than 10 m.
 
+use crate::geo::exposure::ExposureClass;
 use crate::units::length::Metres;
-use crate::wind::averaging::ExposureClass;
 
 /// Heights are held within these bounds (m): below, a mean wind profile means little; above, the surface layer ends.
 const HEIGHT_BOUNDS_M: (f64, f64) = (2.0, 200.0);
