@@ -16,3 +16,4 @@ pub mod roster;
 pub mod score;
 pub mod search;
 pub mod seeds;
+pub mod team;
