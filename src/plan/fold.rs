@@ -3,7 +3,8 @@
 use crate::advisory::forecast::Advisory;
 use crate::arrival::errors::ErrorTables;
 use crate::arrival::odds::{Answers, Draw, ask};
-use crate::plan::audit::{AuditInputs, audit};
+use crate::plan::audit::audit;
+use crate::plan::audit_case::AuditInputs;
 use crate::plan::make::{Forecast, MakeInputs, make};
 use crate::plan::sheet::{Breach, Plan};
 use crate::port::harbour::Port;
