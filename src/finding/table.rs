@@ -378,6 +378,11 @@ impl<'t> Keys<'t> {
         self.table.get_key_value(key).map(|(key, value)| Item { page: self.page, key: key.get_ref(), value })
     }
 
+    /// Lets keys stand that cannot be read, because something else that they belong to is faulty.
+    pub fn pass_over(&mut self, keys: &[&'static str]) {
+        self.asked.extend(keys);
+    }
+
     /// The value of a key that must be there.
     #[must_use]
     pub fn required(&mut self, key: &'static str) -> Option<Item<'t>> {

@@ -197,7 +197,9 @@ fn misplaced_files(folder: &Folder) -> Vec<Finding> {
 }
 
 impl Draft {
-    fn into_port(self) -> Option<Port> {
+    /// The port, if its head could be read; ask only if no finding is an error.
+    #[must_use]
+    pub fn into_port(self) -> Option<Port> {
         let head = self.head?;
         Some(Port {
             name: head.name,
