@@ -3,6 +3,7 @@
 //! The rooms stand on floors and import downwards only; `DEVELOPERS.md` draws the house.
 
 pub mod advisory;
+pub mod arrival;
 pub mod finding;
 pub mod geo;
 pub mod plan;
@@ -15,3 +16,4 @@ pub mod tide;
 pub mod time;
 pub mod units;
 pub mod work;
+pub mod wind;

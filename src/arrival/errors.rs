@@ -1,0 +1,429 @@
+//! How wrong forecasts are: standard deviations by lead time, their biases and correlations, and for which seas they hold.
+
+use crate::advisory::forecast::Advisory;
+use crate::geo::position::Position;
+use std::fmt;
+
+/// A sea in which one office's forecast errors are kept apart.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Basin {
+    /// North Atlantic, Caribbean, Gulf of Mexico.
+    Atlantic,
+    /// Eastern North Pacific to 140 W.
+    EastPacific,
+    /// Central North Pacific, 140 W to 180.
+    CentralPacific,
+    /// Western North Pacific.
+    WestPacific,
+    /// North Indian Ocean.
+    NorthIndian,
+    /// All seas south of the equator.
+    Southern,
+}
+
+impl Basin {
+    /// All basins.
+    pub const ALL: [Basin; 6] = [
+        Basin::Atlantic,
+        Basin::EastPacific,
+        Basin::CentralPacific,
+        Basin::WestPacific,
+        Basin::NorthIndian,
+        Basin::Southern,
+    ];
+
+    /// The two letters by which storm numbers name it (AL122024); the Indian Ocean's and the southern seas' other letters are read too.
+    #[must_use]
+    pub fn from_letters(letters: &str) -> Option<Basin> {
+        match letters.to_ascii_uppercase().as_str() {
+            "AL" => Some(Basin::Atlantic),
+            "EP" => Some(Basin::EastPacific),
+            "CP" => Some(Basin::CentralPacific),
+            "WP" => Some(Basin::WestPacific),
+            "IO" | "NI" => Some(Basin::NorthIndian),
+            "SH" | "SP" | "SI" => Some(Basin::Southern),
+            _ => None,
+        }
+    }
+
+    /// The letters used in error tables.
+    #[must_use]
+    pub fn letters(self) -> &'static str {
+        match self {
+            Basin::Atlantic => "AL",
+            Basin::EastPacific => "EP",
+            Basin::CentralPacific => "CP",
+            Basin::WestPacific => "WP",
+            Basin::NorthIndian => "IO",
+            Basin::Southern => "SH",
+        }
+    }
+
+    /// The basin of an advisory: by its storm number, else by where the storm is.
+    #[must_use]
+    pub fn of(advisory: &Advisory) -> Option<Basin> {
+        let by_number = advisory.storm.id.as_deref().and_then(|id| Basin::from_letters(id.trim().get(..2)?));
+        by_number.or_else(|| advisory.points.first().map(|point| Basin::at(point.position)))
+    }
+
+    /// The basin of a position. The line between Atlantic and East Pacific follows Central America in three steps: our reading of the map.
+    #[must_use]
+    pub fn at(position: Position) -> Basin {
+        let (latitude, longitude) = (position.latitude(), position.longitude());
+        if latitude < 0.0 {
+            return Basin::Southern;
+        }
+        let isthmus = match latitude {
+            ..9.0 => -77.0,
+            ..15.0 => -84.5,
+            ..18.0 => -92.0,
+            _ => -100.0,
+        };
+        match longitude {
+            ..-140.0 => Basin::CentralPacific,
+            l if l < isthmus => Basin::EastPacific,
+            ..25.0 => Basin::Atlantic,
+            ..100.0 => Basin::NorthIndian,
+            _ => Basin::WestPacific,
+        }
+    }
+}
+
+impl fmt::Display for Basin {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        f.write_str(match self {
+            Basin::Atlantic => "Atlantic",
+            Basin::EastPacific => "East Pacific",
+            Basin::CentralPacific => "Central Pacific",
+            Basin::WestPacific => "West Pacific",
+            Basin::NorthIndian => "North Indian Ocean",
+            Basin::Southern => "southern hemisphere",
+        })
+    }
+}
+
+/// The errors at one lead time. Arrays hold along, cross (n mi), intensity (kt), size (natural logarithm of the radius), in the order of [`crate::arrival::keyed::Component::ALL`].
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct ErrorRow {
+    /// Hours after the base time of the forecast.
+    pub lead_h: f64,
+    /// Standard deviations.
+    pub deviation: [f64; 4],
+    /// Mean of (what happens - what was forecast): ahead, to the right of the motion in the northern hemisphere and to the left in the southern, stronger, larger.
+    pub bias: [f64; 4],
+    /// Correlation between the error 12 h earlier and the error at this lead; unused at lead 0.
+    pub serial: [f64; 4],
+}
+
+/// A fault in an error table's numbers.
+#[derive(Clone, Debug, PartialEq, thiserror::Error)]
+pub enum TableError {
+    /// No row at all, or the first is not at lead 0.
+    #[error("the first lead must be 0 h")]
+    NoStart,
+    /// A lead is not after the one before.
+    #[error("lead {lead_h} h does not come after the one before")]
+    LeadNotRising {
+        /// The lead.
+        lead_h: f64,
+    },
+    /// A number is not finite or out of its range.
+    #[error("{what} at {lead_h} h is {value}, outside {least} to {most}")]
+    OutOfRange {
+        /// Which number.
+        what: &'static str,
+        /// At which lead.
+        lead_h: f64,
+        /// What it is.
+        value: f64,
+        /// The least allowed.
+        least: f64,
+        /// The most allowed.
+        most: f64,
+    },
+}
+
+/// Forecast errors of one office in one or more seas. Rows start at lead 0 and rise; deviations are not negative; correlations lie within 0..1.
+#[derive(Clone, Debug, PartialEq)]
+pub struct ErrorTable {
+    name: String,
+    sources: Vec<String>,
+    rows: Vec<ErrorRow>,
+    settings: Settings,
+    notes: Vec<String>,
+}
+
+/// The single numbers of an error table.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Settings {
+    /// Correlation of the innovations of intensity and size, -1..1.
+    pub intensity_with_size: f64,
+    /// Hours in which a storm's own size relaxes by the factor e to the mean vortex after the last given radii, 1..1000.
+    pub radii_relaxation_h: f64,
+    /// The stated accuracy of the centre divided by this is the standard deviation of its position along and across, 0.5..5.
+    pub accuracy_divisor: f64,
+}
+
+impl ErrorTable {
+    /// A table from checked numbers.
+    ///
+    /// # Errors
+    /// [`TableError`] for the first number that breaks the table's invariant.
+    pub fn new(
+        name: impl Into<String>,
+        sources: Vec<String>,
+        rows: Vec<ErrorRow>,
+        settings: Settings,
+    ) -> Result<ErrorTable, TableError> {
+        let Some(first) = rows.first() else { return Err(TableError::NoStart) };
+        if first.lead_h.abs() > 0.0 {
+            return Err(TableError::NoStart);
+        }
+        for pair in rows.windows(2) {
+            let [a, b] = pair else { continue };
+            if b.lead_h.is_nan() || b.lead_h <= a.lead_h {
+                return Err(TableError::LeadNotRising { lead_h: b.lead_h });
+            }
+        }
+        for row in &rows {
+            row.check()?;
+        }
+        within("intensity_with_size", 0.0, settings.intensity_with_size, MUTUAL_BOUNDS)?;
+        within("radii_relaxation_h", 0.0, settings.radii_relaxation_h, RELAXATION_BOUNDS)?;
+        within("accuracy_divisor", 0.0, settings.accuracy_divisor, ACCURACY_BOUNDS)?;
+        Ok(ErrorTable { name: name.into(), sources, rows, settings, notes: Vec::new() })
+    }
+
+    /// What it is called.
+    #[must_use]
+    pub fn name(&self) -> &str {
+        &self.name
+    }
+
+    /// Where its numbers come from.
+    #[must_use]
+    pub fn sources(&self) -> &[String] {
+        &self.sources
+    }
+
+    /// What must be printed wherever its odds are.
+    #[must_use]
+    pub fn notes(&self) -> &[String] {
+        &self.notes
+    }
+
+    /// The single numbers.
+    #[must_use]
+    pub fn settings(&self) -> Settings {
+        self.settings
+    }
+
+    /// The errors at a lead: linear between rows, along the last two beyond the end; before lead 0 as at 0.
+    #[must_use]
+    pub fn at(&self, lead_h: f64) -> ErrorRow {
+        let next = self.rows.partition_point(|row| row.lead_h <= lead_h).clamp(1, self.rows.len().max(2) - 1);
+        let (Some(a), Some(b)) = (self.rows.get(next - 1), self.rows.get(next)) else {
+            return ErrorRow { lead_h, ..self.rows.first().copied().unwrap_or(ErrorRow::NONE) };
+        };
+        let share = ((lead_h - a.lead_h) / (b.lead_h - a.lead_h)).max(0.0);
+        let mix = |x: [f64; 4], y: [f64; 4]| {
+            let mut out = x;
+            for (o, to) in out.iter_mut().zip(y) {
+                *o += (to - *o) * share;
+            }
+            out
+        };
+        ErrorRow {
+            lead_h,
+            deviation: mix(a.deviation, b.deviation).map(|d| d.max(0.0)),
+            bias: mix(a.bias, b.bias),
+            serial: if share > 0.0 { b.serial } else { a.serial },
+        }
+    }
+
+    /// The same table with every deviation multiplied by `factor` and one more thing to print.
+    #[must_use]
+    pub fn widened(&self, factor: f64, note: String) -> ErrorTable {
+        let mut table = self.clone();
+        for row in &mut table.rows {
+            row.deviation = row.deviation.map(|d| d * factor.max(1.0));
+        }
+        table.notes.push(note);
+        table
+    }
+}
+
+impl ErrorRow {
+    /// No error at all: what the single track is made with.
+    pub const NONE: ErrorRow =
+        ErrorRow { lead_h: 0.0, deviation: [0.0; 4], bias: [0.0; 4], serial: [0.0; 4] };
+
+    fn check(&self) -> Result<(), TableError> {
+        within("lead_h", self.lead_h, self.lead_h, LEAD_BOUNDS)?;
+        for (columns, values) in COLUMNS.iter().zip([self.deviation, self.bias, self.serial]) {
+            for (column, value) in columns.iter().zip(values) {
+                within(column.name, self.lead_h, value, column.bounds)?;
+            }
+        }
+        Ok(())
+    }
+}
+
+/// Least and most lead in hours.
+pub const LEAD_BOUNDS: (f64, f64) = (0.0, 400.0);
+
+/// A column of numbers in an error table.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Column {
+    /// Its key in the file.
+    pub name: &'static str,
+    /// Least and most allowed value. Wide enough for any real table: a number beyond is a slip of the keyboard.
+    pub bounds: (f64, f64),
+}
+
+/// Columns of deviations, biases and serial correlations, each in the order of [`crate::arrival::keyed::Component::ALL`].
+pub const COLUMNS: [[Column; 4]; 3] = [
+    [
+        Column { name: "along_nmi", bounds: (0.0, 3000.0) },
+        Column { name: "cross_nmi", bounds: (0.0, 3000.0) },
+        Column { name: "intensity_kt", bounds: (0.0, 200.0) },
+        Column { name: "size_log", bounds: (0.0, 3.0) },
+    ],
+    [
+        Column { name: "along_bias_nmi", bounds: (-3000.0, 3000.0) },
+        Column { name: "cross_bias_nmi", bounds: (-3000.0, 3000.0) },
+        Column { name: "intensity_bias_kt", bounds: (-200.0, 200.0) },
+        Column { name: "size_bias_log", bounds: (-3.0, 3.0) },
+    ],
+    [
+        Column { name: "along_serial", bounds: (0.0, 1.0) },
+        Column { name: "cross_serial", bounds: (0.0, 1.0) },
+        Column { name: "intensity_serial", bounds: (0.0, 1.0) },
+        Column { name: "size_serial", bounds: (0.0, 1.0) },
+    ],
+];
+
+/// Bounds of [`Settings::intensity_with_size`].
+pub const MUTUAL_BOUNDS: (f64, f64) = (-1.0, 1.0);
+/// Bounds of [`Settings::radii_relaxation_h`].
+pub const RELAXATION_BOUNDS: (f64, f64) = (1.0, 1000.0);
+/// Bounds of [`Settings::accuracy_divisor`].
+pub const ACCURACY_BOUNDS: (f64, f64) = (0.5, 5.0);
+
+fn within(what: &'static str, lead_h: f64, value: f64, (least, most): (f64, f64)) -> Result<(), TableError> {
+    if is_within(value, (least, most)) {
+        Ok(())
+    } else {
+        Err(TableError::OutOfRange { what, lead_h, value, least, most })
+    }
+}
+
+/// Whether a number is finite and within bounds.
+#[must_use]
+pub fn is_within(value: f64, (least, most): (f64, f64)) -> bool {
+    value.is_finite() && value >= least && value <= most
+}
+
+/// All tables of one file, and what to do in a sea that none was made for.
+#[derive(Clone, Debug, PartialEq)]
+pub struct ErrorTables {
+    tables: Vec<(Vec<Basin>, ErrorTable)>,
+    elsewhere: (ErrorTable, f64),
+}
+
+impl ErrorTables {
+    /// Tables with the basins they hold for, and the table and widening (at least 1) for every other sea.
+    #[must_use]
+    pub fn new(tables: Vec<(Vec<Basin>, ErrorTable)>, elsewhere: (ErrorTable, f64)) -> ErrorTables {
+        ErrorTables { tables, elsewhere }
+    }
+
+    /// The tables with the basins they hold for.
+    #[must_use]
+    pub fn tables(&self) -> &[(Vec<Basin>, ErrorTable)] {
+        &self.tables
+    }
+
+    /// The table for an advisory's sea. Where none was made for it, the one for elsewhere, widened, with a note to print.
+    #[must_use]
+    pub fn for_advisory(&self, advisory: &Advisory) -> ErrorTable {
+        let basin = Basin::of(advisory);
+        let fitting = basin
+            .and_then(|basin| self.tables.iter().find(|(basins, _)| basins.contains(&basin)))
+            .map(|(_, table)| table.clone());
+        fitting.unwrap_or_else(|| {
+            let (table, factor) = &self.elsewhere;
+            let sea = basin.map_or("this sea".to_owned(), |basin| format!("the {basin}"));
+            table.widened(
+                *factor,
+                format!(
+                    "not fitted here: no error table for {sea}; \"{}\" is used with all spreads times {factor}",
+                    table.name
+                ),
+            )
+        })
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::{Basin, ErrorRow, ErrorTable, Settings, TableError};
+    use crate::geo::position::Position;
+    use approx::assert_abs_diff_eq;
+
+    const SETTINGS: Settings =
+        Settings { intensity_with_size: 0.0, radii_relaxation_h: 36.0, accuracy_divisor: 1.5 };
+
+    fn row(lead_h: f64, along: f64) -> ErrorRow {
+        ErrorRow { lead_h, deviation: [along, 1.0, 1.0, 0.1], ..ErrorRow::NONE }
+    }
+
+    #[test]
+    fn errors_between_rows_are_linear_and_go_on_growing_beyond_the_last() {
+        let table = ErrorTable::new(
+            "t",
+            Vec::new(),
+            vec![row(0.0, 10.0), row(12.0, 20.0), row(24.0, 50.0)],
+            SETTINGS,
+        )
+        .unwrap();
+        for (lead, along) in
+            [(-3.0, 10.0), (0.0, 10.0), (6.0, 15.0), (12.0, 20.0), (24.0, 50.0), (36.0, 80.0)]
+        {
+            assert_abs_diff_eq!(table.at(lead).deviation[0], along, epsilon = 1e-12);
+        }
+    }
+
+    #[test]
+    fn a_table_of_one_row_is_constant() {
+        let table = ErrorTable::new("t", Vec::new(), vec![row(0.0, 10.0)], SETTINGS).unwrap();
+        assert_abs_diff_eq!(table.at(72.0).deviation[0], 10.0);
+    }
+
+    #[test]
+    fn a_table_that_does_not_start_at_zero_or_does_not_rise_or_is_not_finite_is_refused() {
+        let refused = |rows| ErrorTable::new("t", Vec::new(), rows, SETTINGS).unwrap_err();
+        assert_eq!(refused(vec![]), TableError::NoStart);
+        assert_eq!(refused(vec![row(12.0, 1.0)]), TableError::NoStart);
+        assert_eq!(refused(vec![row(0.0, 1.0), row(0.0, 1.0)]), TableError::LeadNotRising { lead_h: 0.0 });
+        assert!(matches!(refused(vec![row(0.0, f64::NAN)]), TableError::OutOfRange { .. }));
+        assert!(matches!(refused(vec![row(0.0, -1.0)]), TableError::OutOfRange { .. }));
+    }
+
+    #[test]
+    fn a_position_without_a_storm_number_still_has_a_basin() {
+        let cases = [
+            (25.0, -80.0, Basin::Atlantic),
+            (22.0, -97.0, Basin::Atlantic),
+            (14.0, -95.0, Basin::EastPacific),
+            (16.0, -110.0, Basin::EastPacific),
+            (20.0, -155.0, Basin::CentralPacific),
+            (22.0, 120.0, Basin::WestPacific),
+            (15.0, 88.0, Basin::NorthIndian),
+            (-18.0, 150.0, Basin::Southern),
+        ];
+        for (latitude, longitude, basin) in cases {
+            assert_eq!(Basin::at(Position::new(latitude, longitude).unwrap()), basin);
+        }
+    }
+}

@@ -1,0 +1,10 @@
+//! Arrival: error tables, scenarios, and the chance that a wind reaches a place by a time.
+
+pub mod course;
+pub mod errors;
+pub mod errors_reader;
+pub mod keyed;
+pub mod odds;
+pub mod onset;
+pub mod question;
+pub mod scenario;

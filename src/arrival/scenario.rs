@@ -1,0 +1,130 @@
+//! One way in which the forecast may turn out: a displaced track, another strength, another size.
+//!
+//! Errors are first-order autoregressive on nodes 12 h apart: z0 = e0, zk = phi z(k-1) + sqrt(1 - phi^2) ek, with e from the standard normal distribution, for each of along,
+//! cross, intensity and size; an error is deviation x z + bias.
+
+use crate::arrival::course::{BOUND_CLASSES_KT, Course, Step};
+use crate::arrival::keyed::{BLOCK, Component, Keyed};
+use crate::wind::field::Vortex;
+use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, displaced, dot, plus};
+
+/// The innovations of one block of scenarios: for each node and component, one number for each scenario.
+#[derive(Clone, Debug)]
+pub struct Draws {
+    nodes: Vec<[Vec<f64>; 4]>,
+}
+
+impl Draws {
+    /// Block number `block` (scenarios from `block * BLOCK` on) for a course.
+    #[must_use]
+    pub fn of(course: &Course, keyed: Keyed, block: usize) -> Draws {
+        let nodes = (0..course.serial.len())
+            .map(|node| Component::ALL.map(|component| keyed.normals(component, node, block)))
+            .collect();
+        Draws { nodes }
+    }
+
+    /// Standard errors at the nodes for the scenario `index` (counted over all blocks).
+    fn standard_errors(&self, course: &Course, index: usize, out: &mut Vec<[f64; 4]>) {
+        out.clear();
+        let mut last = [0.0; 4];
+        for (node, (serial, drawn)) in course.serial.iter().zip(&self.nodes).enumerate() {
+            let mut fresh = [0.0; 4];
+            for (e, numbers) in fresh.iter_mut().zip(drawn) {
+                *e = numbers.get(index % BLOCK).copied().unwrap_or(0.0);
+            }
+            let rho = course.intensity_with_size;
+            let [intensity, size] = [Component::Intensity.index(), Component::Size.index()];
+            fresh[size] = rho * fresh[intensity] + libm::sqrt(1.0 - rho * rho) * fresh[size];
+            for ((z, e), phi) in last.iter_mut().zip(fresh).zip(serial) {
+                *z = if node == 0 { e } else { phi * *z + libm::sqrt(1.0 - phi * phi) * e };
+            }
+            out.push(last);
+        }
+    }
+}
+
+/// A realised storm at each step of a course. One value is refilled for every scenario.
+#[derive(Clone, Debug, Default)]
+pub struct Scenario {
+    errors: Vec<[f64; 4]>,
+    centres: Vec<Vector>,
+    winds_kt: Vec<f64>,
+    sizes: Vec<f64>,
+    /// Square of the chord beyond which a place cannot meet 34 kt within the hour after a step.
+    far2: Vec<f64>,
+    vortices: Vec<Option<Vortex>>,
+}
+
+impl Scenario {
+    /// Fills in the scenario `index`.
+    pub fn draw(&mut self, course: &Course, draws: &Draws, index: usize) {
+        let mut errors = std::mem::take(&mut self.errors);
+        draws.standard_errors(course, index, &mut errors);
+        self.fill(course, |step, i| {
+            let (now, next) = step.weights[i];
+            let z = |node: usize| errors.get(node).map_or(0.0, |z| z[i]);
+            step.deviation[i] * (now * z(step.node) + next * z(step.node + 1)) + step.bias[i]
+        });
+        self.errors = errors;
+    }
+
+    /// Fills in the forecast itself, without any error.
+    pub fn single_track(&mut self, course: &Course) {
+        self.fill(course, |_, _| 0.0);
+    }
+
+    fn fill(&mut self, course: &Course, error: impl Fn(&Step, usize) -> f64) {
+        let [along, cross, intensity, size] = Component::ALL.map(Component::index);
+        self.centres.clear();
+        self.winds_kt.clear();
+        self.sizes.clear();
+        let mut bounds = Vec::with_capacity(course.steps.len());
+        for step in &course.steps {
+            let wind = (step.wind_kt + error(step, intensity)).clamp(0.0, 250.0);
+            let scale = libm::exp(error(step, size));
+            self.centres.push(displaced(
+                step.centre,
+                step.along,
+                step.cross,
+                error(step, along),
+                error(step, cross),
+            ));
+            self.winds_kt.push(wind);
+            self.sizes.push(scale);
+            let class = BOUND_CLASSES_KT.iter().filter(|upper| wind > **upper).count();
+            bounds.push(scale * step.bounds.get(class).copied().unwrap_or(f64::INFINITY));
+        }
+        self.far2.clear();
+        for (centres, reach) in self.centres.windows(2).zip(bounds.windows(2)) {
+            let ([from, to], [a, b]) = (centres, reach) else { continue };
+            let moved = plus(*to, -1.0, *from);
+            let far = a.max(*b) / EARTH_RADIUS_NMI + libm::sqrt(dot(moved, moved));
+            self.far2.push(far * far);
+        }
+        let last = bounds.last().copied().unwrap_or(0.0) / EARTH_RADIUS_NMI;
+        self.far2.push(last * last);
+        self.vortices.clear();
+        self.vortices.resize(course.steps.len(), None);
+    }
+
+    /// Whether a wind can reach `place` in the hour after step `k`, when it reaches at most `widening` times as far as 34 kt.
+    #[must_use]
+    pub fn may_reach(&self, k: usize, place: Vector, widening: f64) -> bool {
+        let (Some(centre), Some(far2)) = (self.centres.get(k), self.far2.get(k)) else { return false };
+        let between = plus(place, -1.0, *centre);
+        dot(between, between) <= far2 * widening * widening
+    }
+
+    /// The realised storm at step `k`; `None` beyond the last.
+    pub fn vortex(&mut self, course: &Course, k: usize) -> Option<Vortex> {
+        let kept = self.vortices.get_mut(k)?;
+        if kept.is_none() {
+            let step = course.steps.get(k)?;
+            let (centre, wind, size) = (self.centres.get(k)?, self.winds_kt.get(k)?, self.sizes.get(k)?);
+            *kept =
+                Some(Vortex::realised(*centre, step.latitude, &step.ratios, (step.wind_kt, *wind), *size));
+        }
+        *kept
+    }
+}

@@ -1,0 +1,208 @@
+//! Wind speed and distance from the centre along one bearing: each from the other.
+//!
+//! Between the radii that an advisory gives the wind follows a power law, straight in log-log; inside them it rises to the greatest wind as the mean
+//! vortex does, outside it falls on with the last exponent. [`Profile::reach_nmi`] and [`Profile::speed_kt`] are each other's inverse.
+
+/// The wind speeds whose reach advisories give, in kt, weakest first.
+pub const GIVEN_SPEEDS_KT: [f64; 3] = [34.0, 50.0, 64.0];
+
+/// Bounds of the exponent beyond the gale radius (physics of the modified Rankine vortex: 1 keeps angular momentum, 0.4 is the
+/// flattest outer profile in use; Knaff et al. 2007 find 0.3 to 0.9 within the gale radius). Our choice of bounds.
+const OUTER_EXPONENT: (f64, f64) = (0.4, 1.0);
+
+/// Where a wind of a given speed is not found on a bearing, the wind there stays this much (kt) below that speed.
+const JUST_BELOW_KT: f64 = 0.1;
+
+/// The exponent x of v = c r^-x through (r1, v1) and (r2, v2): x = ln(v2 / v1) / ln(r1 / r2).
+#[must_use]
+pub fn exponent_between(r1_nmi: f64, v1_kt: f64, r2_nmi: f64, v2_kt: f64) -> f64 {
+    libm::log(v2_kt / v1_kt) / libm::log(r1_nmi / r2_nmi)
+}
+
+/// A quantity known at 45, 135, 225 and 315 degrees (the middles of the quadrants), linear in bearing between them.
+#[must_use]
+pub fn around(quadrants: [f64; 4], bearing_degrees: f64) -> f64 {
+    let (from, to, share) = sector(bearing_degrees);
+    quadrants[from] * (1.0 - share) + quadrants[to] * share
+}
+
+/// Between which two quadrants (NE 0, SE 1, SW 2, NW 3) a bearing lies, and how far towards the second, 0..1.
+#[must_use]
+pub fn sector(bearing_degrees: f64) -> (usize, usize, f64) {
+    let turned = (bearing_degrees - 45.0 + 360.0) / 90.0;
+    let whole = libm::floor(turned);
+    // A bearing of 0 to 360 makes 3.5 to 7.5 here; anything else is still brought into the four.
+    let from = (whole as usize) & 3;
+    (from, (from + 1) & 3, turned - whole)
+}
+
+/// The vortex along one bearing.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Profile {
+    /// Greatest wind of the storm in kt.
+    pub max_wind_kt: f64,
+    /// Reach of 34, 50 and 64 kt in n mi, not rising; zero where that wind does not blow.
+    pub reach_nmi: [f64; 3],
+    /// Exponent of the mean vortex for this storm, above zero.
+    pub exponent: f64,
+    /// Radius of greatest wind in n mi, above zero: carries the profile where even 34 kt do not blow.
+    pub core_nmi: f64,
+}
+
+impl Profile {
+    /// How far a wind of `speed_kt` or more reaches on this bearing in n mi; zero if it does not blow. The calm of the eye is not cut out.
+    #[must_use]
+    pub fn reach_nmi(&self, speed_kt: f64) -> f64 {
+        if self.max_wind_kt < speed_kt {
+            return 0.0;
+        }
+        let [gale, storm, hurricane] = self.reach_nmi;
+        if speed_kt < 34.0 {
+            let (radius, speed) = self.outer_start();
+            return radius * libm::exp(libm::log(speed / speed_kt) / self.outer_exponent());
+        }
+        let between = |r1: f64, v1: f64, r2: f64, v2: f64| {
+            if r1 <= 0.0 {
+                0.0
+            } else if r2 > 0.0 {
+                // ln R is linear in ln v between the two given winds.
+                r1 * libm::exp(libm::log(r2 / r1) * (libm::log(speed_kt / v1) / libm::log(v2 / v1)))
+            } else {
+                self.inner_reach(r1, v1, speed_kt)
+            }
+        };
+        if speed_kt <= 34.0 {
+            gale
+        } else if speed_kt < 50.0 {
+            between(gale, 34.0, storm, 50.0)
+        } else if speed_kt <= 50.0 {
+            storm
+        } else if speed_kt < 64.0 {
+            between(storm, 50.0, hurricane, 64.0)
+        } else if hurricane > 0.0 {
+            self.inner_reach(hurricane, 64.0, speed_kt)
+        } else {
+            0.0
+        }
+    }
+
+    /// The wind in kt at `r_nmi` from the centre on this bearing; the calm of the eye is not cut out.
+    #[must_use]
+    pub fn speed_kt(&self, r_nmi: f64) -> f64 {
+        let [gale, storm, hurricane] = self.reach_nmi;
+        if r_nmi > gale {
+            let (radius, speed) = self.outer_start();
+            let cap = self.max_wind_kt.min(34.0 - JUST_BELOW_KT);
+            if r_nmi <= radius {
+                return cap;
+            }
+            return cap.min(speed * libm::exp(libm::log(radius / r_nmi) * self.outer_exponent()));
+        }
+        let between = |r1: f64, v1: f64, r2: f64, v2: f64| {
+            if r2 > 0.0 && r2 < r1 {
+                v1 * libm::exp(libm::log(r1 / r_nmi) / libm::log(r1 / r2) * libm::log(v2 / v1))
+            } else if r2 > 0.0 {
+                v1
+            } else {
+                self.inner_speed(r1, v1, r_nmi).min(v2 - JUST_BELOW_KT)
+            }
+        };
+        if r_nmi > storm {
+            between(gale, 34.0, storm, 50.0)
+        } else if r_nmi > hurricane {
+            between(storm, 50.0, hurricane, 64.0)
+        } else {
+            self.inner_speed(hurricane, 64.0, r_nmi)
+        }
+    }
+
+    /// R = R1 (v1 / v)^(1/x) towards the core, with the mean vortex's x, up to the greatest wind.
+    fn inner_reach(&self, r1_nmi: f64, v1_kt: f64, speed_kt: f64) -> f64 {
+        r1_nmi * libm::exp(libm::log(v1_kt / speed_kt) / self.exponent)
+    }
+
+    /// v = v1 (R1 / r)^x towards the core, at most the greatest wind.
+    fn inner_speed(&self, r1_nmi: f64, v1_kt: f64, r_nmi: f64) -> f64 {
+        if r_nmi <= 0.0 {
+            return self.max_wind_kt;
+        }
+        self.max_wind_kt.min(v1_kt * libm::exp(libm::log(r1_nmi / r_nmi) * self.exponent))
+    }
+
+    /// Radius and speed from which winds below 34 kt fall off: the gale radius, or the core where it is the wider or no gale blows.
+    fn outer_start(&self) -> (f64, f64) {
+        (self.reach_nmi[0].max(self.core_nmi), self.max_wind_kt.min(34.0))
+    }
+
+    /// The last exponent known, within its bounds: between the 34- and 50-kt radii where both are there, else the mean vortex's.
+    fn outer_exponent(&self) -> f64 {
+        let [gale, storm, _] = self.reach_nmi;
+        let last = if storm > 0.0 && gale > storm {
+            exponent_between(gale, 34.0, storm, 50.0)
+        } else {
+            self.exponent
+        };
+        last.clamp(OUTER_EXPONENT.0, OUTER_EXPONENT.1)
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::{Profile, around, exponent_between};
+    use approx::assert_abs_diff_eq;
+    use proptest::prelude::{prop_assert, proptest};
+
+    #[test]
+    fn between_two_radii_the_wind_is_straight_in_log_log() {
+        assert_abs_diff_eq!(exponent_between(120.0, 34.0, 60.0, 50.0), 0.5564, epsilon = 5e-5);
+        let profile =
+            Profile { max_wind_kt: 55.0, reach_nmi: [120.0, 60.0, 0.0], exponent: 0.5, core_nmi: 30.0 };
+        assert_abs_diff_eq!(profile.speed_kt(90.0), 39.90, epsilon = 5e-3);
+        assert_abs_diff_eq!(profile.reach_nmi(40.0), 89.60, epsilon = 5e-3);
+    }
+
+    #[test]
+    fn inside_the_given_radii_it_is_a_modified_rankine_vortex() {
+        // Vm = 100 kt at Rm = 20 n mi, x = 0.6: 51.73 kt at 60 n mi, 34.13 kt at 120 n mi.
+        let r64 = 20.0 * libm::pow(100.0 / 64.0, 1.0 / 0.6);
+        let r50 = 20.0 * libm::pow(100.0 / 50.0, 1.0 / 0.6);
+        let r34 = 20.0 * libm::pow(100.0 / 34.0, 1.0 / 0.6);
+        let profile =
+            Profile { max_wind_kt: 100.0, reach_nmi: [r34, r50, r64], exponent: 0.6, core_nmi: 20.0 };
+        assert_abs_diff_eq!(profile.speed_kt(20.0), 100.0, epsilon = 1e-9);
+        assert_abs_diff_eq!(profile.speed_kt(60.0), 51.73, epsilon = 5e-3);
+        assert_abs_diff_eq!(profile.speed_kt(120.0), 34.13, epsilon = 5e-3);
+        assert_abs_diff_eq!(profile.speed_kt(150.0), 100.0 * libm::pow(20.0 / 150.0, 0.6), epsilon = 1e-9);
+    }
+
+    #[test]
+    fn between_quadrant_middles_the_reach_is_linear_in_bearing() {
+        let quadrants = [120.0, 100.0, 60.0, 0.0];
+        for (bearing, reach) in
+            [(45.0, 120.0), (90.0, 110.0), (0.0, 60.0), (315.0, 0.0), (359.0, 58.666_667), (292.5, 15.0)]
+        {
+            assert_abs_diff_eq!(around(quadrants, bearing), reach, epsilon = 1e-5);
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn speed_and_reach_are_each_others_inverse(
+            gale in 0.0..300.0_f64, storm in 0.0..1.0_f64, hurricane in 0.0..1.0_f64,
+            wind in 10.0..180.0_f64, core in 5.0..60.0_f64, speed in 5.0..180.0_f64,
+        ) {
+            let reach = |u: f64, r: f64| if wind < u || r < 2.0 { 0.0 } else { r };
+            let gale = reach(34.0, gale);
+            let storm = reach(50.0, gale * storm);
+            let hurricane = reach(64.0, storm * hurricane);
+            let profile = Profile {
+                max_wind_kt: wind, reach_nmi: [gale, storm, hurricane], exponent: 0.1147 + 0.0055 * wind, core_nmi: core,
+            };
+            let limit = profile.reach_nmi(speed);
+            if limit > 0.1 {
+                prop_assert!(profile.speed_kt(limit * 0.999) >= speed - 0.11, "inside");
+            }
+            prop_assert!(profile.speed_kt(limit * 1.001 + 0.001) < speed + 1e-9, "outside");
+        }
+    }
+}
