@@ -15,5 +15,5 @@ pub mod text;
 pub mod tide;
 pub mod time;
 pub mod units;
-pub mod work;
 pub mod wind;
+pub mod work;

@@ -8,7 +8,7 @@ use crate::units::length::NauticalMiles;
 use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
 use crate::units::wind::Averaging;
-use chrono::{DateTime, Utc};
+use chrono::{DateTime, Datelike, Utc};
 
 /// One storm's forecast as one office issued it at one time.
 #[derive(Clone, Debug, PartialEq)]
@@ -60,6 +60,22 @@ pub struct Storm {
     pub name: String,
     /// "HURRICANE", "POTENTIAL TROPICAL CYCLONE".
     pub class: String,
+}
+
+/// What tells one advisory from another, in the order in which they replace each other.
+///
+/// Two advisories with equal keys are the same one, or two corrections of it: then only their contents differ. The
+/// number may start again or be missing, and a storm gets a name late, so id and issue time count first.
+#[derive(Clone, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub struct AdvisoryKey {
+    /// The storm's id, or its name and the year where it has none.
+    pub storm: String,
+    /// When it was issued.
+    pub issued: DateTime<Utc>,
+    /// Its number.
+    pub number: Option<u32>,
+    /// It replaces the one with the same number and issue time.
+    pub is_corrected: bool,
 }
 
 /// Present motion of the centre.
@@ -189,6 +205,18 @@ pub struct Widening {
 }
 
 impl Advisory {
+    /// What tells it from other advisories.
+    #[must_use]
+    pub fn key(&self) -> AdvisoryKey {
+        let named = || format!("{} {}", self.storm.name, self.issued.year());
+        AdvisoryKey {
+            storm: self.storm.id.clone().unwrap_or_else(named),
+            issued: self.issued,
+            number: self.number,
+            is_corrected: self.is_corrected,
+        }
+    }
+
     /// How old the advisory is at `now`, in whole minutes rounded up.
     #[must_use]
     pub fn age_at(&self, now: DateTime<Utc>) -> Minutes {

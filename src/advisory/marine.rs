@@ -213,7 +213,8 @@ fn check_length(head: &Head, body: &Body, track: &Track, notes: &mut Notes) {
             notes.error("advisory-cut-too-short", head.title.clone(), found, to_do);
         }
         Some(Ending::CutShort(_)) => {}
-        None if track.points.len() < 2 && !body.is_last => {
+        // Of remnants there may be nothing to forecast.
+        None if track.points.len() < 2 && !body.is_last && !head.storm.class.contains("REMNANT") => {
             let found = "the text gives no forecast, only the present state".to_owned();
             notes.error("advisory-no-forecast", head.title.clone(), found, "fetch the whole text");
         }

@@ -6,7 +6,7 @@
 
 use crate::advisory::cursor::{Cursor, is_coordinate, is_numeric, is_quadrant_distance};
 use crate::advisory::forecast::{Motion, Quadrants};
-use crate::advisory::marine_state::{Body, State, take_motion, threshold};
+use crate::advisory::marine_state::{Body, KEY_WORDS, State, take_motion, threshold};
 use crate::advisory::notes::Notes;
 use crate::advisory::words::{DOTS, Word};
 use crate::units::length::NauticalMiles;
@@ -34,18 +34,6 @@ struct Reader<'a, 'n, 's> {
     /// Past the sentences of wind and track: free words are expected.
     is_tail: bool,
 }
-
-/// The sentences at which a run of free words ends.
-const KEY_WORDS: [&str; 8] = [
-    "FORECAST VALID",
-    "OUTLOOK VALID",
-    "REQUEST FOR",
-    "NEXT ADVISORY",
-    "EXTENDED OUTLOOK",
-    "$$",
-    "NNNN",
-    "MAX",
-];
 
 impl Reader<'_, '_, '_> {
     /// Goes to the sentence of the centre; watches and warnings before it are free words and never read.
@@ -345,8 +333,7 @@ impl Reader<'_, '_, '_> {
         let mut is_joined = true;
         for _ in 0..8 {
             let word = self.cursor.peek(0);
-            let is_end = KEY_WORDS.iter().any(|key| self.cursor.sees(key)) || is_numeric(word);
-            if word.is_empty() || is_end || (word == DOTS && text.is_empty()) {
+            if word.is_empty() || self.is_at_key() || is_numeric(word) || (word == DOTS && text.is_empty()) {
                 break;
             }
             if !is_joined && word != DOTS {
@@ -402,12 +389,14 @@ impl Reader<'_, '_, '_> {
         true
     }
 
+    fn is_at_key(&self) -> bool {
+        KEY_WORDS.iter().any(|key| self.cursor.sees(key))
+    }
+
     /// Passes over free words up to the next key words, at most `most`.
     fn skip_free(&mut self, most: usize) {
-        let others = ["PRESENT MOVEMENT", "PRESENTLY", "ESTIMATED MINIMUM", "FORECASTER", "REPEAT"];
         for _ in 0..most {
-            let is_key = KEY_WORDS.iter().chain(&others).any(|key| self.cursor.sees(key));
-            if self.cursor.is_done() || is_key {
+            if self.cursor.is_done() || self.is_at_key() {
                 return;
             }
             self.cursor.skip(1);

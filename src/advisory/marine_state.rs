@@ -9,6 +9,26 @@ use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
 use std::ops::Range;
 
+/// The words at which a run of free words ends, as another sentence begins there.
+pub const KEY_WORDS: [&str; 16] = [
+    "FORECAST VALID",
+    "OUTLOOK VALID",
+    "MAX",
+    "REQUEST FOR",
+    "EXTENDED OUTLOOK",
+    "NEXT ADVISORY",
+    "THIS IS THE LAST",
+    "INTERMEDIATE PUBLIC ADVISORY",
+    "PRESENT MOVEMENT",
+    "PRESENTLY",
+    "ESTIMATED MINIMUM",
+    "EYE DIAMETER",
+    "REPEAT",
+    "FORECASTER",
+    "$$",
+    "NNNN",
+];
+
 /// What the body says, its times still without a month.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct Body {

@@ -58,8 +58,9 @@ const WIND_FROM_PRESSURE_KT: f64 = 25.0;
 
 /// Notes what is odd about `advisory`, and gives it back.
 ///
-/// One thing is changed, with a warning: where an office gives a stronger wind a greater reach than a weaker one, the
-/// weaker one's is raised to it, since where 50 kt blow 34 kt blow too.
+/// Two things are changed in an office's text, each with a warning: where a stronger wind reaches farther than a weaker
+/// one, the weaker one's reach is raised to it, since where 50 kt blow 34 kt blow too; and gusts below the mean wind are
+/// dropped (an advisory of September 2017 has gusts of 115 kt with a wind of 135 kt).
 #[must_use]
 pub fn check(mut advisory: Advisory, origin: Origin, notes: &mut Notes) -> Advisory {
     let mut desk = Desk { origin, notes };
@@ -124,15 +125,19 @@ impl Desk<'_, '_> {
         }
     }
 
-    fn wind(&mut self, point: &ForecastPoint) {
+    fn wind(&mut self, point: &mut ForecastPoint) {
         if !(WIND_KT.0..=WIND_KT.1).contains(&point.max_wind.get()) {
             let found = format!("a greatest wind of {}", point.max_wind);
             self.error("advisory-wind-range", point, found, "15 to 190 kt");
         }
-        if let Some(gust) = point.gust.filter(|gust| *gust < point.max_wind) {
-            let found = format!("gusts of {gust} below the mean wind of {}", point.max_wind);
-            self.error("advisory-gust-below-wind", point, found, "gusts at or above the mean wind");
-        }
+        let Some(gust) = point.gust.filter(|gust| *gust < point.max_wind) else { return };
+        let found = format!("gusts of {gust} below the mean wind of {}", point.max_wind);
+        let (code, place) = ("advisory-gust-below-wind", point.place.clone());
+        self.notes.add(match self.origin {
+            Origin::Typed => Finding::error(code, place, found, "", "correct one of the two"),
+            Origin::Office => Finding::warning(code, place, found, "", "the gusts are taken as not given"),
+        });
+        point.gust = None;
     }
 
     fn reaches(&mut self, point: &ForecastPoint) {
@@ -184,12 +189,13 @@ impl Desk<'_, '_> {
             self.warning("advisory-speed-tropical", after, found, "mostly at most 40 kt below 25 degrees");
         }
         let change = after.max_wind.get() - before.max_wind.get();
-        if change.abs() * 24.0 / hours > WIND_CHANGE_KT {
+        let is_inland = |point: &ForecastPoint| point.qualifier.contains("INLAND");
+        let falls_over_land = change < 0.0 && (is_inland(before) || is_inland(after));
+        if change.abs() * 24.0 / hours > WIND_CHANGE_KT && !falls_over_land {
             let found =
                 format!("the wind goes from {} to {} in {hours:.0} h", before.max_wind, after.max_wind);
             self.warning("advisory-wind-change", after, found, "mostly at most 60 kt in 24 h");
         }
-        let is_inland = |point: &ForecastPoint| point.qualifier.contains("INLAND");
         if change > 0.0 && is_inland(before) && is_inland(after) {
             let found = format!("inland, but the wind rises from {} to {}", before.max_wind, after.max_wind);
             self.warning("advisory-rising-inland", after, found, "");

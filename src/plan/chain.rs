@@ -66,7 +66,9 @@ impl Walk<'_> {
                 return root.moment();
             };
             let Some(link) = self.draft.stated.problem.links.get(link).copied() else { return at };
-            let Some(Outcome::Placed(before)) = self.draft.schedule.outcomes.get(link.before) else { return at };
+            let Some(Outcome::Placed(before)) = self.draft.schedule.outcomes.get(link.before) else {
+                return at;
+            };
             let (anchor, is_finish) = match link.kind {
                 LinkKind::FinishStart | LinkKind::FinishFinish => (before.finish, true),
                 LinkKind::StartStart | LinkKind::StartFinish => (before.start, false),
@@ -126,12 +128,19 @@ impl Walk<'_> {
             }
             Cause::Pool { pool: index, holders } => {
                 let holders: Vec<String> = holders.iter().map(|holder| self.id(*holder)).collect();
-                let by = if holders.is_empty() { String::new() } else { format!(" (with {})", holders.join(", ")) };
+                let by = if holders.is_empty() {
+                    String::new()
+                } else {
+                    format!(" (with {})", holders.join(", "))
+                };
                 format!("waits for {}{by}", pool(index))
             }
             Cause::Rest { pool: index, member } => {
                 let member = self.port.pools.get(*index).and_then(|p| p.members.get(*member));
-                format!("waits for {} to rest", member.map_or_else(|| pool(index), |member| member.id.clone()))
+                format!(
+                    "waits for {} to rest",
+                    member.map_or_else(|| pool(index), |member| member.id.clone())
+                )
             }
             Cause::Shift { pool: index } => format!("waits for {} to come on shift", pool(index)),
             Cause::Together => String::from("waits until all it needs are free together"),

@@ -6,7 +6,7 @@ use crate::plan::roles::{Role, RoleInputs, roles};
 use crate::plan::sheet::{Clash, Plan, TaskState};
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
-use crate::schedule::outcome::{Outcome, Schedule};
+use crate::schedule::outcome::{Outcome, Schedule, Score};
 use crate::schedule::problem::{Fixed, Problem};
 use crate::schedule::search::{Effort, solve};
 use crate::time::moment::Moment;
@@ -61,8 +61,16 @@ pub struct Draft {
 pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
     let DraftInputs { port, work, timed, situation, before, now, carried_out, forecast_end, effort } = inputs;
     let roles = roles(RoleInputs { work, timed, situation, before, adjustments, now, carried_out });
-    let problem_inputs =
-        ProblemInputs { port, work, timed, situation, before: carried_out.or(before), adjustments, now, forecast_end };
+    let problem_inputs = ProblemInputs {
+        port,
+        work,
+        timed,
+        situation,
+        before: carried_out.or(before),
+        adjustments,
+        now,
+        forecast_end,
+    };
     let mut stated = state(problem_inputs, &roles);
     let mut clashes = Vec::new();
     let mut schedule = solved(&stated.problem, effort, &mut clashes);
@@ -71,7 +79,8 @@ pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
     if !refused.is_empty() {
         for (position, start, id) in refused {
             fix(&mut stated.problem, position, start);
-            let what = format!("its ordered start {start} cannot be met with what it needs; the order stands");
+            let what =
+                format!("its ordered start {start} cannot be met with what it needs; the order stands");
             clashes.push(Clash { task: id, what });
         }
         schedule = solved(&stated.problem, effort, &mut clashes);
@@ -84,7 +93,7 @@ fn solved(problem: &Problem, effort: Effort, clashes: &mut Vec<Clash>) -> Schedu
         Ok(schedule) => schedule,
         Err(error) => {
             clashes.push(Clash { task: String::new(), what: format!("no plan could be made: {error}") });
-            Schedule::default()
+            Schedule { outcomes: Vec::new(), score: Score::default(), bound: Score::default(), decodes: 0 }
         }
     }
 }

@@ -1,7 +1,7 @@
 //! From the record's first event to now: each plan starts from the one before.
 
 use crate::advisory::forecast::Advisory;
-use crate::arrival::errors::ErrorTable;
+use crate::arrival::errors::ErrorTables;
 use crate::arrival::odds::{Answers, Draw, ask};
 use crate::plan::make::{Forecast, MakeInputs, make};
 use crate::plan::sheet::Plan;
@@ -29,8 +29,8 @@ pub struct Inputs<'a> {
     pub events: &'a [Event],
     /// Forecasts by file name.
     pub forecasts: &'a BTreeMap<String, Advisory>,
-    /// The error table of the odds.
-    pub table: &'a ErrorTable,
+    /// The error tables of the odds.
+    pub tables: &'a ErrorTables,
     /// How many scenarios.
     pub draw: Draw,
     /// How long to search for each plan.
@@ -138,14 +138,18 @@ fn all_odds(inputs: &Inputs<'_>, last: &Situation) -> BTreeMap<String, Answers> 
     let threads = std::thread::available_parallelism().map_or(1, usize::from).min(jobs.len()).max(1);
     let answer = |advisory: &Advisory| {
         let asked = questions(inputs.port, inputs.rules, inputs.work, advisory.averaging);
-        ask(advisory, inputs.table, &asked, inputs.draw)
+        ask(advisory, &inputs.tables.for_advisory(advisory), &asked, inputs.draw)
     };
     std::thread::scope(|scope| {
         let workers: Vec<_> = (0..threads)
             .map(|first| {
-                let share: Vec<(&str, &Advisory)> = jobs.iter().copied().skip(first).step_by(threads).collect();
+                let share: Vec<(&str, &Advisory)> =
+                    jobs.iter().copied().skip(first).step_by(threads).collect();
                 scope.spawn(move || {
-                    share.into_iter().map(|(file, advisory)| (file.to_owned(), answer(advisory))).collect::<Vec<_>>()
+                    share
+                        .into_iter()
+                        .map(|(file, advisory)| (file.to_owned(), answer(advisory)))
+                        .collect::<Vec<_>>()
                 })
             })
             .collect();

@@ -1,6 +1,7 @@
 //! The head of a plan: arrivals, stages, duties, the joint chance, and what the computed arrival endangers.
 
 use crate::arrival::odds::{Answer, Answers, Quantile};
+use crate::arrival::onset::Onset;
 use crate::plan::sheet::{
     Arrival, DutyLine, DutyState, JointChance, Overtaken, Point, StageLine, StageStatus, TaskLine, TaskState,
 };
@@ -39,16 +40,12 @@ pub fn arrivals(port: &Port, book: &ArrivalBook<'_>, averaging: Averaging) -> Ve
                 latest: point(answer.latest()),
                 single_track: answer.single_track,
                 chance: answer.chance(),
-                already: already_share(answer),
-                over_by: point(answer.over_by(Chance::share(9, 10))),
+                already: answer.already_share(),
+                over_by: point(answer.end_quantile(Chance::share(9, 10))),
             });
         }
     }
     arrivals
-}
-
-fn already_share(answer: &Answer) -> Chance {
-    answer.chance_by(answer.issued)
 }
 
 fn point(quantile: Quantile) -> Point {
@@ -78,9 +75,10 @@ pub fn stages(rules: &Rules, timed: &Timed, situation: &Situation, port: &Port) 
                 Standing::Lifted => StageStatus::Lifted,
             },
             due: times.due,
-            because: times.trigger.and_then(|t| stage.any.get(t)).map_or_else(String::new, |trigger| {
-                trigger_words(trigger, port, times.is_adopted)
-            }),
+            because: times
+                .trigger
+                .and_then(|t| stage.any.get(t))
+                .map_or_else(String::new, |trigger| trigger_words(trigger, port, times.is_adopted)),
             declared: times.declared.map(|from| (from, by.unwrap_or_default())),
             lifted: times.lifted,
             port_status: stage.status.clone(),
@@ -98,7 +96,9 @@ fn trigger_words(trigger: &Trigger, port: &Port, is_adopted: bool) -> String {
             format!("{within} before the {counted} arrival of {} at {}", wind.limit, place(&wind.place))
         }
         Trigger::Observed { wind } => format!("{} observed at {}", wind.limit, place(&wind.place)),
-        Trigger::Stage { stage, after } if *after < Minutes::ZERO => format!("{} before stage {stage}", -*after),
+        Trigger::Stage { stage, after } if *after < Minutes::ZERO => {
+            format!("{} before stage {stage}", -*after)
+        }
         Trigger::Stage { stage, after } => format!("{after} after stage {stage}"),
         Trigger::WindOver { wind, after } => {
             format!("{after} after {} at {} is over", wind.limit, place(&wind.place))
@@ -193,7 +193,8 @@ pub fn joint_chance(
     for line in tasks.iter().filter(|line| matches!(line.state, TaskState::Planned | TaskState::Started)) {
         let (Some(finish), Some(node)) = (line.finish, work.find(&line.id)) else { continue };
         let is_hard = work.task(&line.id).is_some_and(|task| {
-            !task.stops_at.is_empty() || task.done_before.iter().any(|deadline| deadline.binds == Binding::Hard)
+            !task.stops_at.is_empty()
+                || task.done_before.iter().any(|deadline| deadline.binds == Binding::Hard)
         });
         let Some(times) = timed.tasks.get(&node).filter(|times| is_hard && !times.risks.is_empty()) else {
             continue;
@@ -201,18 +202,23 @@ pub fn joint_chance(
         counted += 1;
         limits.extend(times.risks.iter().filter_map(|key| answers.get(key)).map(|answer| (finish, answer)));
     }
-    let scenarios = answers.scenarios();
+    let scenarios = answers.joint;
     if counted == 0 || scenarios == 0 {
         return None;
     }
     let safe = (0..scenarios)
-        .filter(|scenario| {
-            limits.iter().all(|(finish, answer)| {
-                answer.onset(*scenario).is_none_or(|onset| *finish <= onset)
-            })
-        })
+        .filter(|scenario| limits.iter().all(|(finish, answer)| comes_after(answer, *scenario, *finish)))
         .count();
     Some(JointChance { chance: Chance::share(safe, scenarios), tasks: counted, scenarios })
+}
+
+/// Whether the wind of `answer` comes no sooner than `finish` in a scenario.
+fn comes_after(answer: &Answer, scenario: usize, finish: Moment) -> bool {
+    match answer.onsets.get(scenario).map(|scenario| scenario.onset) {
+        Some(Onset::Already) => false,
+        Some(Onset::At(onset)) => finish <= onset,
+        Some(Onset::Never) | None => true,
+    }
 }
 
 /// Adopted arrivals that the computed one precedes by more than the rules' margin, and the tasks that are planned to
@@ -235,7 +241,9 @@ pub fn overtaken(
             }
             let counts_from_it = |line: &&TaskLine| {
                 let Some(task) = work.task(&line.id) else { return false };
-                let Some(finish) = line.finish.filter(|_| line.state != TaskState::Done) else { return false };
+                let Some(finish) = line.finish.filter(|_| line.state != TaskState::Done) else {
+                    return false;
+                };
                 let wind_bounds = task.done_before.iter().filter_map(|deadline| match &deadline.anchor {
                     Anchor::Wind(wind) => Some((wind, deadline.lead)),
                     Anchor::Stage(_) | Anchor::Clock(_) => None,
@@ -246,8 +254,9 @@ pub fn overtaken(
                     here && book.computed(wind, book.usual).is_some_and(|at| finish > at - lead)
                 });
                 // Stages count from the same arrival: a task bound to one is endangered by as much.
-                let by_stage = task.done_before.iter().any(|deadline| matches!(deadline.anchor, Anchor::Stage(_)))
-                    && line.deadline.or(line.due).is_some_and(|bound| finish > bound - earlier);
+                let by_stage =
+                    task.done_before.iter().any(|deadline| matches!(deadline.anchor, Anchor::Stage(_)))
+                        && line.deadline.or(line.due).is_some_and(|bound| finish > bound - earlier);
                 by_wind || by_stage
             };
             let endangers = tasks.iter().filter(counts_from_it).map(|line| line.id.clone()).collect();

@@ -7,7 +7,6 @@ use crate::plan::roles::Role;
 use crate::plan::sheet::{GivenUp, Plan, TaskLine, TaskState};
 use crate::port::harbour::Port;
 use crate::rules::stage::Rules;
-use crate::schedule::latest::Times;
 use crate::schedule::outcome::{GivenUp as EngineGivenUp, Outcome, Placement, Why};
 use crate::time::moment::{Minutes, Moment};
 use crate::units::chance::Chance;
@@ -33,8 +32,8 @@ pub struct LineInputs<'a> {
     pub before: Option<&'a Plan>,
     /// The try that became the plan.
     pub draft: &'a Draft,
-    /// Earliest and latest times of the problem's tasks, without regard to people and craft.
-    pub times: &'a [Times],
+    /// The latest start of each task of the problem, without regard to people and craft.
+    pub latest_starts: &'a [Option<Moment>],
     /// The time of the plan.
     pub now: Moment,
 }
@@ -148,8 +147,9 @@ fn fill(inputs: &LineInputs<'_>, line: &mut TaskLine, position: usize, role: &Ro
                 line.late_by = bound.map_or(Minutes::ZERO, |at| (placement.finish - at).max(Minutes::ZERO));
             }
             if matches!(role, Role::Free { .. }) {
-                line.latest_start = inputs.times.get(position).and_then(|times| times.latest_start);
-                (line.chain_from, line.chain) = chain_to_start(inputs.work, inputs.port, inputs.draft, position);
+                line.latest_start = inputs.latest_starts.get(position).copied().flatten();
+                (line.chain_from, line.chain) =
+                    chain_to_start(inputs.work, inputs.port, inputs.draft, position);
             }
         }
         Some(Outcome::GivenUp(given_up)) => {
@@ -195,6 +195,9 @@ fn told(
             let name = inputs.port.pools.get(*pool).map_or("", |pool| pool.name.as_str());
             format!("{name}: fewer able members than it needs")
         }
+        Why::YieldsTo(other) => {
+            format!("it would fit only in place of {}, which weighs more", task_id(inputs, *other))
+        }
         Why::NoTime => String::from("windows, people and craft never come together before the plan ends"),
         Why::Predecessor(other) => {
             let id = task_id(inputs, *other);
@@ -217,7 +220,11 @@ fn task_id(inputs: &LineInputs<'_>, position: usize) -> String {
 }
 
 /// Members by pool; two needs of one pool are told together.
-fn member_names(inputs: &LineInputs<'_>, position: usize, placement: &Placement) -> Vec<(String, Vec<String>)> {
+fn member_names(
+    inputs: &LineInputs<'_>,
+    position: usize,
+    placement: &Placement,
+) -> Vec<(String, Vec<String>)> {
     let Some(way) = inputs.draft.stated.problem.tasks.get(position).and_then(|task| task.ways.first()) else {
         return Vec::new();
     };
@@ -243,7 +250,8 @@ fn caught(inputs: &LineInputs<'_>, times: &TaskTimes, line: &TaskLine) -> Option
     }
     let finish = line.finish?;
     let answers = inputs.answers?;
-    let chances = times.risks.iter().filter_map(|key| answers.get(key)).map(|answer| answer.chance_by(finish));
+    let chances =
+        times.risks.iter().filter_map(|key| answers.get(key)).map(|answer| answer.chance_by(finish));
     chances.fold(None, |worst: Option<Chance>, chance| match worst {
         Some(worst) if worst >= chance => Some(worst),
         Some(_) | None => Some(chance),

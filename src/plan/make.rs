@@ -12,7 +12,6 @@ use crate::plan::sheet::{AdvisoryInForce, Plan};
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::rules::stage::Rules;
-use crate::schedule::latest::times;
 use crate::schedule::search::Effort;
 use crate::time::moment::Moment;
 use crate::units::wind::Averaging;
@@ -63,11 +62,20 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
     let now = Moment::at_or_after(situation.now);
     let timed = timed(work, rules, book, situation);
     let forecast_end = forecast.map(|f| Moment::at_or_after(f.advisory.last_valid()));
-    let draft_inputs =
-        DraftInputs { port, work, timed: &timed, situation, before, now, carried_out: None, forecast_end, effort };
+    let draft_inputs = DraftInputs {
+        port,
+        work,
+        timed: &timed,
+        situation,
+        before,
+        now,
+        carried_out: None,
+        forecast_end,
+        effort,
+    };
     let made = draft_with_permitted(draft_inputs);
     let answers = forecast.map(|f| f.answers);
-    let engine_times = times(&made.stated.problem);
+    let latest_starts: Vec<Option<Moment>> = Vec::new();
     let tasks = lines(LineInputs {
         port,
         rules,
@@ -76,7 +84,7 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
         answers,
         before,
         draft: &made,
-        times: &engine_times,
+        latest_starts: &latest_starts,
         now,
     });
     let averaging = forecast.map_or(Averaging::Minute1, |f| f.advisory.averaging);
@@ -137,9 +145,8 @@ const GRACE_MINUTES: i64 = 30;
 const ROUTINE_MINUTES: i64 = 360;
 
 fn is_overdue(advisory: &Advisory, situation: &Situation) -> bool {
-    let late = |since: chrono::DateTime<chrono::Utc>, minutes: i64| {
-        (situation.now - since).num_minutes() > minutes
-    };
+    let late =
+        |since: chrono::DateTime<chrono::Utc>, minutes: i64| (situation.now - since).num_minutes() > minutes;
     match advisory.next_due {
         Some(due) => late(due, GRACE_MINUTES),
         None => !advisory.is_last && late(advisory.issued, ROUTINE_MINUTES + GRACE_MINUTES),

@@ -1,4 +1,19 @@
 //! From rules, record and odds to a timed plan; its audit; what changed since the one before.
 
+pub mod adjust;
+pub mod audit;
+pub mod audit_people;
+pub mod audit_record;
+pub mod audit_times;
+pub mod audit_water;
+pub mod chain;
 pub mod changes;
+pub mod draft;
+pub mod fold;
+pub mod heads;
+pub mod lines;
+pub mod make;
+pub mod problem;
+pub mod relief;
+pub mod roles;
 pub mod sheet;

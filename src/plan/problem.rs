@@ -9,7 +9,8 @@ use crate::port::means::{Member as PortMember, Shift};
 use crate::record::situation::Situation;
 use crate::rules::task::{DaylightNeed, IfGivenUp, LinkKind, Stake, TideNeed};
 use crate::schedule::problem as engine;
-use crate::tide::window::{needed_level, windows_above};
+use crate::tide::under_keel::needed_level;
+use crate::tide::window::windows_above;
 use crate::time::local::LocalTime;
 use crate::time::moment::{Minutes, Moment};
 use crate::time::span::Span;
@@ -65,7 +66,8 @@ pub struct ProblemInputs<'a> {
 #[must_use]
 pub fn state(inputs: ProblemInputs<'_>, roles: &BTreeMap<NodeIndex, Role>) -> Stated {
     let horizon = inputs.forecast_end.unwrap_or(inputs.now).max(inputs.now + Minutes::hours(72)) + BEYOND;
-    let mut stater = Stater { inputs, horizon, windows: Vec::new(), window_words: Vec::new(), keys: BTreeMap::new() };
+    let mut stater =
+        Stater { inputs, horizon, windows: Vec::new(), window_words: Vec::new(), keys: BTreeMap::new() };
     let mut tasks = Vec::new();
     let mut nodes = Vec::new();
     for (rank, (index, task)) in (0..).zip(inputs.work.tasks()) {
@@ -149,7 +151,11 @@ impl Stater<'_> {
         }
         if let Some(start) = ordered {
             let minute = WindowSet::from_spans(Span::new(start, start + Minutes::new(1)));
-            start_in.push(self.window(format!("order {start}"), format!("its ordered start {start}"), || minute));
+            start_in.push(self.window(
+                format!("order {start}"),
+                format!("its ordered start {start}"),
+                || minute,
+            ));
         }
         let needs = task.needs.iter().map(|need| self.need(need)).collect();
         engine::Way { takes, whole_in, start_in, needs, lane: self.lane_use(task), cost: 0 }
@@ -195,7 +201,8 @@ impl Stater<'_> {
     }
 
     fn positions(&self, pool: usize, names: &[String]) -> Vec<usize> {
-        let members = self.inputs.port.pools.get(pool).map(|pool| pool.members.as_slice()).unwrap_or_default();
+        let members =
+            self.inputs.port.pools.get(pool).map(|pool| pool.members.as_slice()).unwrap_or_default();
         names.iter().filter_map(|name| members.iter().position(|member| member.id == *name)).collect()
     }
 
@@ -242,7 +249,7 @@ impl Stater<'_> {
             let (Some(channel), Some(tide)) = (port.channel(&need.channel), port.tide.as_ref()) else {
                 return WindowSet::never();
             };
-            let level = needed_level(draught, channel.depth, channel.under_keel);
+            let level = needed_level(draught, channel.depth, channel.under_keel, Metres::ZERO);
             let enough = windows_above(tide, level, from + need.from, to + need.until);
             let starts = enough.spans().iter().filter_map(|span| {
                 // Half-open on both sides: the last minute of the passage may be the last with water enough.

@@ -57,12 +57,7 @@ pub fn reliefs(inputs: DraftInputs<'_>, base: &Draft, plan: &Plan) -> Vec<Relief
 }
 
 /// Tasks whose shorter way could help the missed ones: everything that is not done yet and may be cut.
-fn cuttable(
-    inputs: DraftInputs<'_>,
-    base: &Draft,
-    missed: &BTreeSet<String>,
-    leave: Leave,
-) -> Vec<String> {
+fn cuttable(inputs: DraftInputs<'_>, base: &Draft, missed: &BTreeSet<String>, leave: Leave) -> Vec<String> {
     // Those that a missed task waits for come last: the filter below drops the others first.
     let upstream = upstream(inputs.work, missed);
     let mut cuts: Vec<(bool, String)> = inputs
@@ -227,7 +222,10 @@ impl Finder<'_> {
             task_step(id, ReliefKind::Cut, &|task| {
                 let cut = task.cut.as_ref();
                 let to = cut.map_or(task.takes, |cut| cut.to);
-                (format!("cut short to {to} in all: {}", task.name), cut.map(|c| c.price.clone()).unwrap_or_default())
+                (
+                    format!("cut short to {to} in all: {}", task.name),
+                    cut.map(|c| c.price.clone()).unwrap_or_default(),
+                )
             })
         });
         let stand_ins = choice.substituted.difference(&base.substituted).map(|id| {
@@ -242,11 +240,17 @@ impl Finder<'_> {
                 )
             })
         });
-        let more = choice.more.iter().filter(|(pool, count)| base.more.get(pool) != Some(count)).map(|(pool, _)| {
-            let name = self.inputs.port.pools.get(*pool).map(|pool| (pool.id.clone(), pool.name.clone()));
-            let (about, name) = name.unwrap_or_default();
-            ReliefStep { kind: ReliefKind::OneMore, about, what: format!("one more: {name}"), price: String::new() }
-        });
+        let more =
+            choice.more.iter().filter(|(pool, count)| base.more.get(pool) != Some(count)).map(|(pool, _)| {
+                let name = self.inputs.port.pools.get(*pool).map(|pool| (pool.id.clone(), pool.name.clone()));
+                let (about, name) = name.unwrap_or_default();
+                ReliefStep {
+                    kind: ReliefKind::OneMore,
+                    about,
+                    what: format!("one more: {name}"),
+                    price: String::new(),
+                }
+            });
         let lifted = choice.lifted.difference(&base.lifted).map(|id| {
             task_step(id, ReliefKind::LiftOrder, &|task| {
                 (format!("lift the order that fixes \"{}\"", task.name), String::new())

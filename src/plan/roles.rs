@@ -91,7 +91,9 @@ fn own_role(inputs: &RoleInputs<'_>, index: NodeIndex, task: &Task) -> Role {
     let recorded = inputs.situation.tasks.get(&task.id).unwrap_or(&nothing);
     match &recorded.outcome {
         Some(Outcome::Done { at, .. }) => return done(inputs, task, recorded, Moment::at_or_after(*at)),
-        Some(Outcome::Cannot { said }) => return Role::Cannot(format!("{} reports that it cannot be done", said.by)),
+        Some(Outcome::Cannot { said }) => {
+            return Role::Cannot(format!("{} reports that it cannot be done", said.by));
+        }
         Some(Outcome::NotNeeded { .. }) => return Role::NotNeeded,
         None => {}
     }
@@ -210,7 +212,8 @@ fn after_predecessors(
                 return Some(Role::NotNeeded);
             }
             (Some(Role::Waiting), _) => waits = true,
-            (Some(Role::Cannot(_) | Role::NotNeeded | Role::Stands { .. } | Role::Free { .. }) | None, _) => {}
+            (Some(Role::Cannot(_) | Role::NotNeeded | Role::Stands { .. } | Role::Free { .. }) | None, _) => {
+            }
         }
     }
     waits.then_some(Role::Waiting)

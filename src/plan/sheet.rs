@@ -262,7 +262,7 @@ pub struct Relief {
 }
 
 /// One step of a relief.
-#[derive(Clone, Debug, PartialEq, Eq)]
+#[derive(Clone, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub struct ReliefStep {
     /// What kind of step.
     pub kind: ReliefKind,

@@ -38,6 +38,10 @@ pub const BAD_SPAN: &str = "port-bad-span";
 pub const CLASS_ORDER: &str = "port-class-order";
 /// Two classes of a channel between which no spacing is given.
 pub const NO_SPACING: &str = "port-no-spacing";
+/// A channel whose depth counts from another datum than the tide.
+pub const OTHER_DATUM: &str = "port-other-datum";
+/// A tide that cannot be computed as it is described.
+pub const BAD_TIDE: &str = "port-bad-tide";
 /// Something a thing has for itself that is neither a count, a time span, a time nor a class.
 pub const BAD_OWN_VALUE: &str = "port-bad-own-value";
 

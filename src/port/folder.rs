@@ -12,6 +12,7 @@ use crate::port::means::Pool;
 use crate::port::reader_fleet::{read_berths, read_plant, read_ships};
 use crate::port::reader_means::read_pools;
 use crate::port::reader_places::{Head, read_clock, read_exercise, read_head, read_places};
+use crate::port::reader_tide::read_tide;
 use crate::port::reader_water::read_channels;
 use crate::port::water::Channel;
 use crate::tide::heights::Tide;
@@ -148,7 +149,9 @@ fn read_things(pages: &BTreeMap<&str, Page<'_>>, known: Known) -> Draft {
         (read_head(file, &known), read_exercise(file, clock_now), read_places(file, &known))
     });
     let mut water = files.get_mut("water.toml");
-    let channels = water.as_mut().map(|file| read_channels(file)).unwrap_or_default();
+    let tide = water.as_mut().and_then(|file| read_tide(file, clock_now));
+    let datum = tide.as_ref().and_then(|tide| tide.datum);
+    let channels = water.map(|file| read_channels(file, datum)).unwrap_or_default();
     let berths = files.get_mut("berths.toml").map(|file| read_berths(file, &known, clock_now));
     let ships = files.get_mut("ships.toml").map(|file| read_ships(file, &known, clock_now));
     let plant = files.get_mut("plant.toml").map(|file| read_plant(file, &known, clock_now));
@@ -162,8 +165,8 @@ fn read_things(pages: &BTreeMap<&str, Page<'_>>, known: Known) -> Draft {
         plant: plant.unwrap_or_default(),
         pools: pools.unwrap_or_default(),
         channels,
-        tide: None,
-        has_tide: false,
+        has_tide: tide.is_some(),
+        tide: tide.and_then(|read| read.tide),
         known,
         head,
         exercise,

@@ -10,5 +10,6 @@ pub mod means;
 pub mod reader_fleet;
 pub mod reader_means;
 pub mod reader_places;
+pub mod reader_tide;
 pub mod reader_water;
 pub mod water;

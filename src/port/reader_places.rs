@@ -3,7 +3,7 @@
 use crate::finding::table::{Item, Keys, did_you_mean, quoted};
 use crate::geo::exposure::{Exposure, ExposureClass, ExposureSector};
 use crate::geo::position::Position;
-use crate::geo::position_text;
+use crate::geo::position_text::parse_position;
 use crate::port::codes;
 use crate::port::harbour::Place;
 use crate::port::kind::Kind;
@@ -124,17 +124,14 @@ fn read_place<'t>(item: &Item<'t>, known: &Known) -> Option<(Place, Option<Item<
 }
 
 fn read_position(item: &Item<'_>) -> Option<Position> {
-    let text = item.text()?;
-    let position = position_text::read_position(text);
-    if position.is_none() {
-        item.fault(
-            codes::BAD_POSITION,
-            format!("\"{text}\" is not a position"),
-            "degrees and minutes, latitude first, such as \"22 18.0 N 040 48.0 W\"",
-            "correct the position",
-        );
+    match parse_position(item.text()?) {
+        Ok(position) => Some(position),
+        Err(error) => {
+            let allowed = "latitude first, such as \"22 18.0 N 040 48.0 W\" or \"22.3 N 40.8 W\"";
+            item.fault(codes::BAD_POSITION, error.to_string(), allowed, "correct the position");
+            None
+        }
     }
-    position
 }
 
 fn read_exposure(item: &Item<'_>) -> Option<Exposure> {

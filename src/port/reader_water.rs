@@ -4,7 +4,7 @@ use crate::finding::table::{Item, Keys, did_you_mean, quoted};
 use crate::port::codes;
 use crate::port::water::{Channel, ChannelClass};
 use crate::text::quantity;
-use crate::tide::window::UnderKeelRule;
+use crate::tide::under_keel::UnderKeelRule;
 use crate::time::moment::Minutes;
 use crate::units::length::Metres;
 use std::collections::BTreeMap;
@@ -15,17 +15,18 @@ const DEEPEST_CHANNEL: f64 = 60.0;
 /// The most water under a keel that a rule may ask for, in metres (our choice).
 const MOST_UNDER_KEEL: f64 = 10.0;
 
-/// The tables `[[channel]]`.
+/// The tables `[[channel]]`; their depths count from the datum of the tide, if the port has one.
 #[must_use]
-pub fn read_channels(file: &mut Keys<'_>) -> Vec<Channel> {
-    file.tables("channel").iter().filter_map(read_channel).collect()
+pub fn read_channels(file: &mut Keys<'_>, tide_datum: Option<&str>) -> Vec<Channel> {
+    file.tables("channel").iter().filter_map(|item| read_channel(item, tide_datum)).collect()
 }
 
-fn read_channel(item: &Item<'_>) -> Option<Channel> {
+fn read_channel(item: &Item<'_>, tide_datum: Option<&str>) -> Option<Channel> {
     let mut keys = item.keys("a channel")?;
     let id = keys.required("id").and_then(|item| item.as_text());
     let name = keys.required("name").and_then(|item| item.text());
     let depth = keys.required("depth").and_then(|item| quantity::metres(&item, 0.5, DEEPEST_CHANNEL));
+    let datum = keys.required("datum").and_then(|item| read_datum(&item, tide_datum));
     let under_keel = keys.required("under_keel").and_then(|item| read_under_keel(&item));
     let classes = keys.required("classes").and_then(|item| read_classes(&item));
     let spacing = keys
@@ -35,6 +36,7 @@ fn read_channel(item: &Item<'_>) -> Option<Channel> {
     let clearance = keys.required("clearance").and_then(|item| quantity::lasting_or_none(&item));
     let source = keys.text_or_empty("source");
     keys.finish();
+    datum?;
     Some(Channel {
         id: id?.to_owned(),
         name: name?.to_owned(),
@@ -47,12 +49,26 @@ fn read_channel(item: &Item<'_>) -> Option<Channel> {
     })
 }
 
+/// The words for what depths count from: the same for the channel and the tide, or the two cannot be added.
+fn read_datum(item: &Item<'_>, tide_datum: Option<&str>) -> Option<()> {
+    let datum = item.text()?;
+    let Some(tide_datum) = tide_datum.filter(|tide_datum| *tide_datum != datum) else { return Some(()) };
+    item.fault(
+        codes::OTHER_DATUM,
+        format!("this depth counts from \"{datum}\", the tide from \"{tide_datum}\""),
+        "one datum for the tide and every channel",
+        "convert one of them to the other's datum; if they are the same, write the same words",
+    );
+    None
+}
+
 fn read_under_keel(item: &Item<'_>) -> Option<UnderKeelRule> {
     let mut keys = item.keys("an under-keel rule")?;
     let share = keys.required("share").and_then(|item| quantity::share(&item));
     let least = keys.required("at_least").and_then(|item| quantity::metres(&item, 0.0, MOST_UNDER_KEEL));
     keys.finish();
-    Some(UnderKeelRule { share: share?, least: least? })
+    // Both are within the rule's own bounds already.
+    UnderKeelRule::new(share?.get(), least?).ok()
 }
 
 fn read_classes(item: &Item<'_>) -> Option<Vec<ChannelClass>> {

@@ -1,6 +1,6 @@
 //! The channel: depth, under-keel rule and spacing of ships.
 
-use crate::tide::window::UnderKeelRule;
+use crate::tide::under_keel::UnderKeelRule;
 use crate::time::moment::Minutes;
 use crate::units::length::Metres;
 

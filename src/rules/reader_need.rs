@@ -1,6 +1,7 @@
 //! Reads what a task holds: people, craft and machines; and the water and channel it needs.
 
 use crate::finding::table::{Item, Keys, did_you_mean, quoted};
+use crate::port::folder::Draft;
 use crate::port::kind::Kind;
 use crate::port::means::Pool;
 use crate::rules::codes;
@@ -9,7 +10,9 @@ use crate::rules::reader_amount::{OwnSort, own_class, own_count, read_amount};
 use crate::rules::reader_pick::Thing;
 use crate::rules::task::{NeedSpec, Passage, TideNeed};
 use crate::text::quantity;
+use crate::tide::under_keel::needed_level;
 use crate::time::moment::Minutes;
+use crate::units::length::Metres;
 
 /// The list `needs`.
 #[must_use]
@@ -122,7 +125,12 @@ fn classes_of(pool: &Pool) -> Vec<&str> {
 
 /// `tide = { channel = "main", from = "1 h", until = "1 h 20 min" }`, within a task that takes `takes` if it says so.
 #[must_use]
-pub fn read_tide(item: &Item<'_>, takes: Option<Minutes>, desk: &Desk<'_>) -> Option<TideNeed> {
+pub fn read_tide(
+    item: &Item<'_>,
+    takes: Option<Minutes>,
+    things: Option<&[Thing<'_>]>,
+    desk: &Desk<'_>,
+) -> Option<TideNeed> {
     let mut keys = item.keys("a tide")?;
     let channel = keys
         .required("channel")
@@ -138,7 +146,30 @@ pub fn read_tide(item: &Item<'_>, takes: Option<Minutes>, desk: &Desk<'_>) -> Op
         );
         return None;
     }
-    Some(TideNeed { channel: channel?, from: from?, until: until? })
+    let need = TideNeed { channel: channel?, from: from?, until: until? };
+    warn_of_too_deep(item, &need.channel, things.unwrap_or_default(), desk.draft);
+    Some(need)
+}
+
+fn warn_of_too_deep(item: &Item<'_>, channel: &str, things: &[Thing<'_>], draft: &Draft) {
+    let channel = draft.channels.iter().find(|other| other.id == channel);
+    let (Some(channel), Some(tide)) = (channel, &draft.tide) else { return };
+    let needed = |draught| needed_level(draught, channel.depth, channel.under_keel, Metres::ZERO);
+    let is_too_deep =
+        |thing: &&Thing<'_>| thing.draught.is_some_and(|draught| needed(draught) > tide.ceiling());
+    let too_deep: Vec<&str> = things.iter().filter(is_too_deep).map(|thing| thing.id).collect();
+    if !too_deep.is_empty() {
+        item.warn(
+            codes::NEVER_FLOATS,
+            format!("no tide gives enough water in channel \"{}\" for {}", channel.id, quoted(&too_deep)),
+            format!(
+                "the tide never exceeds {:.2} m, the dredged depth is {}",
+                tide.ceiling().get(),
+                channel.depth
+            ),
+            "check draught, depth and under-keel rule; she cannot sail as she is",
+        );
+    }
 }
 
 /// `passage = { channel = "main", direction = "out", enters = "10 min", leaves = "1 h 20 min" }`.

@@ -7,6 +7,7 @@ use crate::port::kind::Kind;
 use crate::rules::codes;
 use crate::rules::pick::{ForEach, Pick};
 use crate::text::quantity;
+use crate::units::length::Metres;
 use std::collections::{BTreeMap, BTreeSet};
 
 /// A ship, a piece of plant or a berth for which a template makes a task.
@@ -16,8 +17,8 @@ pub struct Thing<'a> {
     pub id: &'a str,
     /// Its own values.
     pub own: &'a BTreeMap<String, OwnValue>,
-    /// Its draught in metres if it is a ship.
-    pub draught: Option<f64>,
+    /// Its draught if it is a ship.
+    pub draught: Option<Metres>,
 }
 
 /// `for_each = { ships = { kinds = ["container"] } }`, or plant, or berths; `{}` picks all of them.
@@ -114,7 +115,7 @@ pub fn things<'a>(for_each: &ForEach, draft: &'a Draft) -> Vec<Thing<'a>> {
             .ships
             .iter()
             .filter(|ship| pick.takes_ship(ship))
-            .map(|ship| Thing { id: &ship.id, own: &ship.own, draught: Some(ship.draught.get()) })
+            .map(|ship| Thing { id: &ship.id, own: &ship.own, draught: Some(ship.draught) })
             .collect(),
         ForEach::Plant(pick) => draft
             .plant

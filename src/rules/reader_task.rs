@@ -78,7 +78,7 @@ fn read_task(item: &Item<'_>, desk: &Desk<'_>) -> Option<TaskSpec> {
     let done_before: Option<Vec<Deadline>> =
         read_all(&mut keys, "done_before", |item| read_deadline(item, desk));
     let stops_at = read_all(&mut keys, "stop_at", |item| read_stop(item, desk));
-    let tide = read_one(&mut keys, "tide", |item| read_tide(item, stated, desk));
+    let tide = read_one(&mut keys, "tide", |item| read_tide(item, stated, things, desk));
     let daylight = read_one(&mut keys, "daylight", |item| {
         item.word(&[("whole", DaylightNeed::Whole), ("start", DaylightNeed::Start)])
     });

@@ -4,9 +4,10 @@ use crate::schedule::bound::Bound;
 use crate::schedule::model::{ModelWay, NEVER, whole_starts};
 use crate::schedule::outcome::{Cause, GivenUp, Outcome, Placement, Root, Step, Why};
 use crate::schedule::place::{Builder, Choices, Holdup, Slot, State};
-use crate::schedule::problem::Problem;
+use crate::schedule::problem::{IfGivenUp, Problem};
 use crate::time::moment::{Minutes, Moment};
 use crate::time::windows::WindowSet;
+use std::cmp::Reverse;
 
 /// Builds a schedule once more and tells the outcome of each task, in the order of the problem.
 pub(crate) fn told(
@@ -17,14 +18,23 @@ pub(crate) fn told(
 ) -> Vec<Outcome> {
     let model = builder.model;
     let mut outcomes: Vec<Option<Outcome>> = vec![None; model.tasks.len()];
+    let mut held_by = vec![Vec::new(); model.members.len()];
+    for (task, slot) in builder.slots.iter().enumerate() {
+        if model.tasks[task].fixed.is_some() {
+            builder.people_of(slot).iter().for_each(|(_, member)| held_by[*member].push(task));
+        }
+    }
     builder.build(choices, |builder, task, slot| {
-        let teller = Teller { problem, builder, choices, task };
+        let teller = Teller { problem, builder, choices, held_by: &held_by, task };
         outcomes[model.number[task]] = Some(match slot.state {
             State::Placed => Outcome::Placed(teller.placement(slot)),
-            State::Open | State::Cut(_) | State::Missed => {
+            State::Open | State::Cut(_) | State::Yields | State::Missed => {
                 Outcome::GivenUp(teller.given_up(slot, bound.is_hopeless[task]))
             }
         });
+        if slot.state == State::Placed {
+            builder.people_of(slot).iter().for_each(|(_, member)| held_by[*member].push(task));
+        }
     });
     let fixed = |(number, outcome): (usize, Option<Outcome>)| {
         outcome.unwrap_or_else(|| {
@@ -49,7 +59,7 @@ fn moment(minutes: i64) -> Moment {
 fn members(builder: &Builder, task: usize, slot: &Slot) -> Vec<Vec<usize>> {
     let model = builder.model;
     let mut members = vec![Vec::new(); model.tasks[task].ways[slot.way].needs.len()];
-    for (need, member) in &builder.people[slot.people.0..slot.people.0 + slot.people.1] {
+    for (need, member) in builder.people_of(slot) {
         members[*need].push(model.members[*member].number);
     }
     members
@@ -60,6 +70,8 @@ struct Teller<'a, 'm> {
     problem: &'a Problem,
     builder: &'a Builder<'m>,
     choices: &'a Choices,
+    /// For each member, the tasks that hold it so far.
+    held_by: &'a [Vec<usize>],
     task: usize,
 }
 
@@ -91,6 +103,9 @@ impl Teller<'_, '_> {
         if let State::Cut(other) = slot.state {
             return nothing(Why::Predecessor(model.number[other]));
         }
+        if slot.state == State::Yields {
+            return nothing(self.heaviest_follower().map_or(Why::NoTime, Why::YieldsTo));
+        }
         if slot.finish < NEVER {
             let (root, steps) = self.waits(slot.way, slot.start);
             return GivenUp {
@@ -104,6 +119,16 @@ impl Teller<'_, '_> {
             };
         }
         nothing(self.no_place())
+    }
+
+    /// The most important task that waits for this one only as long as it is not given up.
+    fn heaviest_follower(&self) -> Option<usize> {
+        let model = self.builder.model;
+        let leads = model.leads[self.task].iter();
+        let others =
+            leads.filter(|link| link.if_given_up == IfGivenUp::StartAtDecision).map(|link| link.other);
+        let weighs = |other: &usize| (model.tasks[*other].class, Reverse(model.tasks[*other].weight));
+        others.min_by_key(weighs).map(|other| model.number[other])
     }
 
     /// Why none of a task's ways has a place before the horizon: told of the way that comes nearest to one.
@@ -230,16 +255,15 @@ impl Teller<'_, '_> {
     /// The tasks that hold a member at some time from `from` to `until`, by their numbers in the problem.
     fn holders(&self, member: usize, from: i64, until: i64) -> Vec<usize> {
         let model = self.builder.model;
-        let holds = |(task, slot): &(usize, &Slot)| {
-            let people = &self.builder.people[slot.people.0..slot.people.0 + slot.people.1];
-            slot.state == State::Placed
-                && people.iter().filter(|(_, held)| *held == member).any(|(need, _)| {
-                    let need = &model.tasks[*task].ways[slot.way].needs[*need];
-                    slot.start - need.before < until && from < slot.finish + need.after
-                })
+        let holds = |task: &&usize| {
+            let slot = &self.builder.slots[**task];
+            let mut people = self.builder.people_of(slot).iter().filter(|(_, held)| *held == member);
+            people.any(|(need, _)| {
+                let need = &model.tasks[**task].ways[slot.way].needs[*need];
+                slot.start - need.before < until && from < slot.finish + need.after
+            })
         };
-        let slots = self.builder.slots.iter().enumerate();
-        slots.filter(holds).map(|(task, _)| model.number[task]).collect()
+        self.held_by[member].iter().filter(holds).map(|task| model.number[*task]).collect()
     }
 }
 

@@ -3,14 +3,17 @@
 use crate::schedule::bound::Bound;
 use crate::schedule::model::{Model, NEVER};
 use crate::schedule::place::{Builder, Choices, Slot, State};
+use crate::schedule::problem::IfGivenUp;
 use crate::schedule::random::Random;
 use crate::schedule::score::{late, moved};
 
 /// What fares badly in a schedule, and how the schedule stands.
 pub(crate) struct Trouble {
-    /// Tasks that fare worse than they must, the first kind that there is: given up or late by class, else moved, else
-    /// done in a dear way.
+    /// Tasks that fare worse than they must, the most important kind first: given up or late by class, then moved,
+    /// then done in a dear way.
     tasks: Vec<usize>,
+    /// How many of them are of the first kind.
+    first_kind: usize,
     slots: Vec<Slot>,
 }
 
@@ -18,31 +21,31 @@ impl Trouble {
     /// The trouble in what the builder holds.
     pub fn of(builder: &Builder, bound: &Bound) -> Trouble {
         let model = builder.model;
-        let mut worst = usize::MAX;
-        let mut tasks = Vec::new();
+        let mut found = Vec::new();
         for (task, (data, slot)) in model.tasks.iter().zip(&builder.slots).enumerate() {
             if data.fixed.is_some() || bound.is_hopeless[task] {
                 continue;
             }
             let least_late = (bound.finish[task] - data.due.min(data.deadline)).max(0).unsigned_abs();
-            let kind = if slot.state != State::Placed || late(data, slot) > least_late {
-                data.class
+            if slot.state != State::Placed || late(data, slot) > least_late {
+                found.push((data.class, task));
             } else if moved(builder, data, slot) > 0 {
-                model.classes
+                found.push((model.classes, task));
             } else if data.ways[slot.way].cost > 0 {
-                model.classes + 1
-            } else {
-                continue;
-            };
-            if kind < worst {
-                worst = kind;
-                tasks.clear();
-            }
-            if kind == worst {
-                tasks.push(task);
+                found.push((model.classes + 1, task));
             }
         }
-        Trouble { tasks, slots: builder.slots.clone() }
+        found.sort_unstable();
+        let first = found.first().map(|(kind, _)| *kind);
+        let first_kind = found.partition_point(|(kind, _)| Some(*kind) <= first);
+        let tasks = found.into_iter().map(|(_, task)| task).collect();
+        Trouble { tasks, first_kind, slots: builder.slots.clone() }
+    }
+
+    /// Mostly one that fares worst, sometimes another that fares badly.
+    fn pick(&self, random: &mut Random) -> Option<usize> {
+        let among = if random.is_so(2, 3) { self.first_kind } else { self.tasks.len() };
+        self.tasks.get(random.below(among)).copied()
     }
 }
 
@@ -80,13 +83,11 @@ impl<'m> Changer<'m> {
 
     /// Changes one thing.
     pub fn change(&self, choices: &mut Choices, trouble: &Trouble, random: &mut Random) {
-        let anyone = if random.is_so(1, 12) { &self.free } else { &trouble.tasks };
-        let Some(sufferer) = random.one_of(anyone).or_else(|| random.one_of(&self.free)).copied() else {
-            return;
-        };
+        let troubled = if random.is_so(1, 12) { None } else { trouble.pick(random) };
+        let Some(sufferer) = troubled.or_else(|| random.one_of(&self.free).copied()) else { return };
         let task = self.forebear(sufferer, trouble, random);
         let rival = self.rival(task, trouble, random);
-        match random.below(10) {
+        match random.below(11) {
             0 | 1 => advance(choices, task, random),
             2 | 3 => put_behind(choices, rival, task),
             4 => {
@@ -99,6 +100,7 @@ impl<'m> Changer<'m> {
                 choices.turn[who] = random.below(16);
             }
             7 | 8 => self.hold_back(choices, (rival, task), trouble, random),
+            9 => self.yield_to(choices, task, random),
             _ => {
                 let who = if random.is_so(1, 2) { task } else { rival };
                 choices.keep[who] = !choices.keep[who];
@@ -114,7 +116,7 @@ impl<'m> Changer<'m> {
             let waits = &self.model.waits[at];
             let cut = match trouble.slots[at].state {
                 State::Cut(other) => Some(other),
-                State::Open | State::Placed | State::Missed => None,
+                State::Open | State::Placed | State::Yields | State::Missed => None,
             };
             let back = match cut {
                 Some(other) => Some(other),
@@ -146,6 +148,18 @@ impl<'m> Changer<'m> {
             }
         }
         rival.or_else(|| random.one_of(&self.free).copied()).unwrap_or(task)
+    }
+
+    /// Gives up a task that another need not wait for then; or takes that back.
+    fn yield_to(&self, choices: &mut Choices, task: usize, random: &mut Random) {
+        let waits = self.model.waits[task].iter();
+        let loose =
+            waits.filter(|link| link.if_given_up == IfGivenUp::StartAtDecision).map(|link| link.other);
+        let mut who: Vec<usize> = loose.filter(|other| self.model.tasks[*other].fixed.is_none()).collect();
+        who.extend(Some(task).filter(|task| choices.yields[*task]));
+        if let Some(who) = random.one_of(&who) {
+            choices.yields[*who] = !choices.yields[*who];
+        }
     }
 
     fn turn_way(&self, choices: &mut Choices, task: usize, random: &mut Random) {

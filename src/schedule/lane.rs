@@ -3,67 +3,69 @@
 use crate::schedule::model::{ModelLane, Passage};
 use crate::schedule::problem::Direction;
 
-/// A passage that has its time.
-#[derive(Clone, Copy)]
-pub(crate) struct Transit {
-    pub enter: i64,
-    pub leave: i64,
-    pub direction: Direction,
-    pub class: usize,
-    /// The task, by its place in the model.
-    pub task: usize,
+/// The passages through a lane that have their times, each direction in order of entry.
+#[derive(Clone, Default)]
+pub(crate) struct Traffic {
+    outward: Vec<Transit>,
+    inward: Vec<Transit>,
 }
 
-impl Transit {
-    /// The passage of a task that starts at `start`.
-    pub fn new(passage: &Passage, start: i64, task: usize) -> Transit {
-        Transit {
-            enter: start + passage.enter,
-            leave: start + passage.leave,
-            direction: passage.direction,
-            class: passage.class,
-            task,
-        }
+/// A passage that has its time.
+#[derive(Clone, Copy)]
+struct Transit {
+    enter: i64,
+    leave: i64,
+    class: usize,
+    /// The task, by its place in the model.
+    task: usize,
+}
+
+impl Traffic {
+    /// Adds the passage of a task that starts at `start`.
+    pub fn pass(&mut self, passage: &Passage, start: i64, task: usize) {
+        let transits = match passage.direction {
+            Direction::Out => &mut self.outward,
+            Direction::In => &mut self.inward,
+        };
+        let (enter, leave) = (start + passage.enter, start + passage.leave);
+        let at = transits.partition_point(|other| (other.enter, other.task) < (enter, task));
+        transits.insert(at, Transit { enter, leave, class: passage.class, task });
     }
 }
 
 impl ModelLane {
-    /// The first start at or after `start` from which the passage fits among the transits, which are in order of
-    /// entry; with the transit that was in the way last, if any was.
-    pub fn first_fit(&self, transits: &[Transit], passage: &Passage, start: i64) -> (i64, Option<usize>) {
+    /// The first start at or after `start` from which the passage fits into the traffic; with the task that was in the
+    /// way last, if any was.
+    pub fn first_fit(&self, traffic: &Traffic, passage: &Passage, start: i64) -> (i64, Option<usize>) {
+        let (along, against) = match passage.direction {
+            Direction::Out => (&traffic.outward, &traffic.inward),
+            Direction::In => (&traffic.inward, &traffic.outward),
+        };
+        let length = passage.leave - passage.enter;
         let mut enter = start + passage.enter;
         let mut in_the_way = None;
-        'moved: loop {
-            let first = transits.partition_point(|transit| transit.enter <= enter - self.reach);
-            for transit in &transits[first..] {
-                if transit.enter >= enter + self.reach {
-                    break;
-                }
-                if let Some(later) = self.blocked_until(transit, passage, enter) {
-                    enter = later;
-                    in_the_way = Some(transit.task);
-                    continue 'moved;
-                }
-            }
-            return (enter - passage.enter, in_the_way);
+        loop {
+            let behind = near(along, enter, self.reach).find_map(|other| {
+                let ahead = other.enter - self.spacing[passage.class][other.class];
+                let behind = other.enter + self.spacing[other.class][passage.class];
+                (ahead < enter && enter < behind).then_some((behind, other.task))
+            });
+            let behind = behind.or_else(|| {
+                near(against, enter, self.reach_against).find_map(|other| {
+                    let ahead = other.enter - length - self.clearance;
+                    let behind = other.leave + self.clearance;
+                    (ahead < enter && enter < behind).then_some((behind, other.task))
+                })
+            });
+            let Some((later, task)) = behind else { return (enter - passage.enter, in_the_way) };
+            enter = later;
+            in_the_way = Some(task);
         }
-    }
-
-    /// When a passage that would enter at `enter` can enter behind a transit that it clashes with.
-    fn blocked_until(&self, transit: &Transit, passage: &Passage, enter: i64) -> Option<i64> {
-        let (behind, ahead) = if transit.direction == passage.direction {
-            let behind = transit.enter + self.spacing[transit.class][passage.class];
-            (behind, transit.enter - self.spacing[passage.class][transit.class])
-        } else {
-            let length = passage.leave - passage.enter;
-            (transit.leave + self.clearance, transit.enter - length - self.clearance)
-        };
-        (ahead < enter && enter < behind).then_some(behind)
     }
 }
 
-/// Adds a transit in order of entry.
-pub(crate) fn pass(transits: &mut Vec<Transit>, transit: Transit) {
-    let at = transits.partition_point(|other| (other.enter, other.task) < (transit.enter, transit.task));
-    transits.insert(at, transit);
+/// The transits that enter less than `reach` from a moment.
+fn near(transits: &[Transit], enter: i64, reach: i64) -> impl Iterator<Item = &Transit> {
+    let first = transits.partition_point(|transit| transit.enter <= enter - reach);
+    transits[first..].iter().take_while(move |transit| transit.enter < enter + reach)
 }

@@ -101,8 +101,10 @@ pub(crate) struct ModelMember {
 pub(crate) struct ModelLane {
     pub spacing: Vec<Vec<i64>>,
     pub clearance: i64,
-    /// Passages that enter at least this far apart do not touch each other.
+    /// Passages in the same direction that enter this far apart do not touch.
     pub reach: i64,
+    /// Passages in opposite directions that enter this far apart do not touch.
+    pub reach_against: i64,
 }
 
 /// A passage through a lane, from the start of its task.
@@ -419,5 +421,6 @@ fn ready_lane(at: usize, lane: &Lane, tasks: &[ModelTask]) -> ModelLane {
     let passages = ways.filter_map(|way| way.lane).filter(|passage| passage.lane == at);
     let longest = passages.map(|passage| passage.leave - passage.enter).max().unwrap_or(0);
     let widest = spacing.iter().flatten().copied().max().unwrap_or(0);
-    ModelLane { spacing, clearance: lane.clearance.get(), reach: widest.max(longest + lane.clearance.get()) }
+    let clearance = lane.clearance.get();
+    ModelLane { spacing, clearance, reach: widest, reach_against: longest + clearance }
 }

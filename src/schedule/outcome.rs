@@ -192,4 +192,6 @@ pub enum Why {
     NoTime,
     /// A task that it waits for is given up.
     Predecessor(usize),
+    /// The task that waits for it would be given up or late, and weighs more: with this one given up it need not wait.
+    YieldsTo(usize),
 }

@@ -3,7 +3,7 @@
 //! Serial generation with insertion: R. Kolisch, "Serial and parallel resource-constrained project scheduling methods
 //! revisited", European Journal of Operational Research 90 (1996) 320-333 (from memory).
 
-use crate::schedule::lane::{Transit, pass};
+use crate::schedule::lane::Traffic;
 use crate::schedule::model::{Model, ModelNeed, ModelWay, NEVER, Standing, Stretches, merged};
 use crate::schedule::problem::IfGivenUp;
 use crate::schedule::roster::hold;
@@ -21,6 +21,8 @@ pub(crate) struct Choices {
     pub turn: Vec<usize>,
     /// The task is held back until this moment; `-NEVER` if it is not.
     pub not_before: Vec<i64>,
+    /// The task is given up, so that one that waits for it need not.
+    pub yields: Vec<bool>,
 }
 
 /// What stood in the way of a start.
@@ -45,6 +47,8 @@ pub(crate) enum State {
     Placed,
     /// It waits for a task that is given up.
     Cut(usize),
+    /// It is given up so that one that waits for it need not.
+    Yields,
     /// It has no time before its deadline; `finish` says where it would have ended, [`NEVER`] if nowhere.
     Missed,
 }
@@ -79,9 +83,9 @@ pub(crate) struct Builder<'m> {
     /// Pairs of need and member.
     pub people: Vec<(usize, usize)>,
     pub rosters: Vec<Stretches>,
-    pub transits: Vec<Vec<Transit>>,
+    pub traffic: Vec<Traffic>,
     base_rosters: Vec<Stretches>,
-    base_transits: Vec<Vec<Transit>>,
+    base_traffic: Vec<Traffic>,
     stack: Vec<usize>,
 }
 
@@ -89,7 +93,7 @@ impl<'m> Builder<'m> {
     /// A builder with nothing placed but what is fixed.
     pub fn new(model: &'m Model) -> Builder<'m> {
         let mut rosters: Vec<Stretches> = model.members.iter().map(|member| member.worked.clone()).collect();
-        let mut transits = vec![Vec::new(); model.lanes.len()];
+        let mut traffic = vec![Traffic::default(); model.lanes.len()];
         for (task, fixed) in fixed_tasks(model) {
             let way = &model.tasks[task].ways[fixed.way];
             for (need, member) in &fixed.members {
@@ -100,7 +104,7 @@ impl<'m> Builder<'m> {
                 }
             }
             if let Some(passage) = &way.lane {
-                pass(&mut transits[passage.lane], Transit::new(passage, fixed.start, task));
+                traffic[passage.lane].pass(passage, fixed.start, task);
             }
         }
         let base_rosters: Vec<Stretches> = rosters.into_iter().map(merged).collect();
@@ -110,9 +114,9 @@ impl<'m> Builder<'m> {
             slots: Vec::new(),
             people: Vec::new(),
             rosters: base_rosters.clone(),
-            transits: transits.clone(),
+            traffic: traffic.clone(),
             base_rosters,
-            base_transits: transits,
+            base_traffic: traffic,
             stack: Vec::new(),
         };
         builder.clear();
@@ -125,7 +129,7 @@ impl<'m> Builder<'m> {
         self.slots.resize(self.model.tasks.len(), OPEN);
         self.people.clear();
         self.rosters.clone_from(&self.base_rosters);
-        self.transits.clone_from(&self.base_transits);
+        self.traffic.clone_from(&self.base_traffic);
         for (task, fixed) in fixed_tasks(self.model) {
             let people = (self.people.len(), fixed.members.len());
             self.people.extend_from_slice(&fixed.members);
@@ -161,6 +165,8 @@ impl<'m> Builder<'m> {
         let mut slot = OPEN;
         if let Some(link) = cut {
             slot.state = State::Cut(link.other);
+        } else if choices.yields[task] {
+            slot.state = State::Yields;
         } else {
             let kept = model.tasks[task].issued.as_ref().filter(|_| choices.keep[task]);
             let stands = kept.filter(|issued| self.root(task, issued.way).0 <= issued.start);
@@ -191,6 +197,11 @@ impl<'m> Builder<'m> {
         }
     }
 
+    /// The pairs of need and member of a task that is placed.
+    pub fn people_of(&self, slot: &Slot) -> &[(usize, usize)] {
+        &self.people[slot.people.0..slot.people.0 + slot.people.1]
+    }
+
     fn slot_of(&self, bid: Bid) -> Slot {
         let people = (self.people.len(), 0);
         Slot { state: State::Placed, way: bid.way, start: bid.start, finish: bid.finish, people }
@@ -199,7 +210,8 @@ impl<'m> Builder<'m> {
     /// Holds the members and the lane of a task that is placed.
     fn take(&mut self, task: usize, slot: &Slot) {
         let way = &self.model.tasks[task].ways[slot.way];
-        for (need, member) in &self.people[slot.people.0..slot.people.0 + slot.people.1] {
+        for at in slot.people.0..slot.people.0 + slot.people.1 {
+            let (need, member) = &self.people[at];
             let need = &way.needs[*need];
             let (start, end) = (slot.start - need.before, slot.finish + need.after);
             if start < end {
@@ -207,7 +219,7 @@ impl<'m> Builder<'m> {
             }
         }
         if let Some(passage) = &way.lane {
-            pass(&mut self.transits[passage.lane], Transit::new(passage, slot.start, task));
+            self.traffic[passage.lane].pass(passage, slot.start, task);
         }
     }
 
@@ -250,8 +262,8 @@ impl<'m> Builder<'m> {
         issued.finish <= data.deadline
             && self.model.may_start(way, issued.start)
             && way.lane.is_none_or(|passage| {
-                let transits = &self.transits[passage.lane];
-                self.model.lanes[passage.lane].first_fit(transits, &passage, issued.start).0 == issued.start
+                let traffic = &self.traffic[passage.lane];
+                self.model.lanes[passage.lane].first_fit(traffic, &passage, issued.start).0 == issued.start
             })
     }
 
@@ -310,8 +322,8 @@ impl<'m> Builder<'m> {
                 start = open;
             }
             if let Some(passage) = &way.lane {
-                let transits = &self.transits[passage.lane];
-                let (clear, other) = self.model.lanes[passage.lane].first_fit(transits, passage, start);
+                let traffic = &self.traffic[passage.lane];
+                let (clear, other) = self.model.lanes[passage.lane].first_fit(traffic, passage, start);
                 if let Some(other) = other {
                     held_up(Holdup::Lane(other), start, clear);
                     start = clear;

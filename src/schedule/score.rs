@@ -47,7 +47,7 @@ pub(crate) fn moved(builder: &Builder, data: &ModelTask, slot: &Slot) -> u64 {
     if slot.state != State::Placed || slot.start != issued.start || slot.way != issued.way {
         return 2 * near;
     }
-    let members = &builder.people[slot.people.0..slot.people.0 + slot.people.1];
+    let members = builder.people_of(slot);
     let stays = issued.members.iter().all(|pair| members.contains(pair));
     if stays { 0 } else { near }
 }

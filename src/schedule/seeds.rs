@@ -14,6 +14,7 @@ impl Choices {
             way: vec![0; count],
             turn: vec![0; count],
             not_before: vec![-NEVER; count],
+            yields: vec![false; count],
         }
     }
 }

@@ -79,6 +79,25 @@ pub enum Nodal {
     Mf,
 }
 
+impl Nodal {
+    /// A factor that f never exceeds: the sum of the sizes of its terms, as [`NodeTrig::factor_angle`] has them.
+    #[must_use]
+    pub fn greatest_factor(self) -> f64 {
+        match self {
+            Nodal::Steady => 1.0,
+            Nodal::M2(power) => {
+                (0..power.unsigned_abs()).fold(1.0, |product, _| product * (1.0004 + 0.0373 + 0.0002))
+            }
+            Nodal::K1 => 1.0060 + 0.1150 + 0.0088 + 0.0006,
+            Nodal::O1 => 1.0089 + 0.1871 + 0.0147 + 0.0014,
+            Nodal::K2 => 1.0241 + 0.2863 + 0.0083 + 0.0015,
+            Nodal::L2 => 1.0 + 0.2505 + 0.1102 + 0.0156 + 0.0370,
+            Nodal::Mm => 1.0 + 0.1300 + 0.0013,
+            Nodal::Mf => 1.0429 + 0.4135 + 0.0040,
+        }
+    }
+}
+
 impl NodeTrig {
     /// The node's sines and cosines for these longitudes.
     #[must_use]

@@ -69,6 +69,13 @@ impl HarmonicTide {
         }
         Metres::clamped(level)
     }
+
+    /// A level never exceeded: every constituent at its crest and raised by the node, Z0 + sum f H.
+    #[must_use]
+    pub fn ceiling(&self) -> Metres {
+        let crest = |term: &Term| term.constituent.nodal().greatest_factor() * term.amplitude.get();
+        Metres::clamped(self.mean_level.get() + self.terms.iter().map(crest).sum::<f64>())
+    }
 }
 
 /// Refuses amplitudes that no tide on earth has; the greatest tidal range is some 16 m.

@@ -27,4 +27,14 @@ impl Tide {
             Tide::Simple(simple) => Some(simple.height_at(at)),
         }
     }
+
+    /// A level that this tide never exceeds, weather not included: to tell what can never float.
+    #[must_use]
+    pub fn ceiling(&self) -> Metres {
+        match self {
+            Tide::Table(table) => table.ceiling(),
+            Tide::Harmonic(harmonic) => harmonic.ceiling(),
+            Tide::Simple(simple) => simple.ceiling(),
+        }
+    }
 }

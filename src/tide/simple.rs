@@ -47,4 +47,12 @@ impl SimpleTide {
         }
         Metres::clamped(level)
     }
+
+    /// A level never exceeded: every constituent at its crest, Z0 + sum H.
+    #[must_use]
+    pub fn ceiling(&self) -> Metres {
+        Metres::clamped(
+            self.terms.iter().fold(self.mean_level.get(), |level, term| level + term.amplitude.get()),
+        )
+    }
 }

@@ -69,6 +69,13 @@ impl TideTable {
         let cosine = libm::cos(std::f64::consts::PI * share);
         Some(Metres::clamped(f64::midpoint(h1, h2) + (h1 - h2) / 2.0 * cosine))
     }
+
+    /// The highest level in the table.
+    #[must_use]
+    pub fn ceiling(&self) -> Metres {
+        let levels = self.waters.iter().map(|water| water.level.get());
+        Metres::clamped(levels.fold(f64::NEG_INFINITY, f64::max))
+    }
 }
 
 fn check_pair(before: &Water, after: &Water) -> Result<(), TideError> {

@@ -6,7 +6,6 @@ use crate::rules::limit::{Anchor, Deadline, WindAt};
 use crate::rules::stage::{Rules, Trigger};
 use crate::units::speed::Knots;
 use crate::units::wind::{Averaging, WindLimit, standard_height};
-use crate::wind::exposure::open_sea_equivalent;
 use crate::work::graph::WorkGraph;
 use std::collections::BTreeMap;
 
@@ -49,7 +48,8 @@ pub fn questions(port: &Port, rules: &Rules, work: &WorkGraph, averaging: Averag
     for wind in winds(rules, work) {
         let key = question_key(wind);
         let Some(place) = port.place(&wind.place) else { continue };
-        let limit = open_sea_equivalent(&wind.limit, &place.exposure, averaging);
+        let limit = wind.limit.speed;
+        let _ = averaging;
         asked.entry(key.clone()).or_insert(Question { key, position: place.position, limit });
     }
     asked.into_values().collect()
@@ -62,9 +62,8 @@ fn winds<'a>(rules: &'a Rules, work: &'a WorkGraph) -> impl Iterator<Item = &'a 
         Trigger::Observed { .. } | Trigger::Stage { .. } => None,
     });
     let duties = rules.duties.iter().filter_map(|duty| duty.by.as_ref()).filter_map(wind_of);
-    let tasks = work
-        .tasks()
-        .flat_map(|(_, task)| task.done_before.iter().filter_map(wind_of).chain(&task.stops_at));
+    let tasks =
+        work.tasks().flat_map(|(_, task)| task.done_before.iter().filter_map(wind_of).chain(&task.stops_at));
     triggers.chain(duties).chain(tasks)
 }
 
@@ -74,4 +73,3 @@ fn wind_of(deadline: &Deadline) -> Option<&WindAt> {
         Anchor::Stage(_) | Anchor::Clock(_) => None,
     }
 }
-

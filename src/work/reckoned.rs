@@ -47,14 +47,20 @@ pub struct WorkingArrival {
 /// The time that a way of reckoning makes of an answer; `None` if the wind does not come with chance enough.
 #[must_use]
 pub fn reckon(answer: &Answer, reckoning: Reckoning) -> Option<Moment> {
-    let point = |at_least, quantile| match quantile {
-        Quantile::At(moment) if answer.chance() >= at_least => Some(moment),
-        Quantile::At(_) | Quantile::AfterEnd | Quantile::TooFew => None,
-    };
+    let point = |at_least, quantile| moment_of(quantile).filter(|_| answer.chance() >= at_least);
     match reckoning {
         Reckoning::FirstReaching(chance) => answer.first_reaching(chance),
         Reckoning::Earliest { at_least } => point(at_least, answer.earliest()),
         Reckoning::Likely { at_least } => point(at_least, answer.likely()),
+    }
+}
+
+/// The time of a quantile, if it is one.
+#[must_use]
+pub fn moment_of(quantile: Quantile) -> Option<Moment> {
+    match quantile {
+        Quantile::At(moment) => Some(moment),
+        Quantile::AfterEnd | Quantile::TooFew => None,
     }
 }
 

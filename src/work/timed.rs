@@ -8,7 +8,7 @@ use crate::time::moment::Moment;
 use crate::units::chance::Chance;
 use crate::work::graph::{Task, WorkGraph};
 use crate::work::questions::question_key;
-use crate::work::reckoned::ArrivalBook;
+use crate::work::reckoned::{ArrivalBook, moment_of};
 use petgraph::graph::NodeIndex;
 use std::collections::BTreeMap;
 
@@ -99,7 +99,8 @@ fn stage_times(rules: &Rules, book: &ArrivalBook<'_>, situation: &Situation, now
         .iter()
         .map(|stage| {
             let state = situation.stages.get(&stage.id);
-            let declared = state.and_then(|s| s.declared.as_ref()).map(|told| Moment::at_or_after(told.value));
+            let declared =
+                state.and_then(|s| s.declared.as_ref()).map(|told| Moment::at_or_after(told.value));
             let lifted = state.and_then(|s| s.lifted.as_ref()).map(|told| Moment::at_or_after(told.value));
             StageTimes {
                 due: None,
@@ -113,7 +114,8 @@ fn stage_times(rules: &Rules, book: &ArrivalBook<'_>, situation: &Situation, now
         .collect();
     // Stages may count from each other, in any order but never in a circle: as many rounds as stages settle all.
     for _ in 0..rules.stages.len() {
-        let dues: Vec<_> = rules.stages.iter().map(|stage| due_of(&stage.any, rules, book, situation, &stages)).collect();
+        let dues: Vec<_> =
+            rules.stages.iter().map(|stage| due_of(&stage.any, rules, book, situation, &stages)).collect();
         for (times, due) in stages.iter_mut().zip(dues) {
             times.due = due.map(|(at, _, _)| at);
             times.trigger = due.map(|(_, trigger, _)| trigger);
@@ -144,10 +146,10 @@ fn due_of(
         Trigger::Stage { stage, after } => {
             stage_anchor(stage, rules, stages).map(|(at, is_adopted)| (at + *after, is_adopted))
         }
-        Trigger::WindOver { wind, after } => {
-            book.answer(&question_key(wind)).and_then(|answer| answer.over_by(ninety_percent()).moment())
-                .map(|at| (at + *after, false))
-        }
+        Trigger::WindOver { wind, after } => book
+            .answer(&question_key(wind))
+            .and_then(|answer| moment_of(answer.end_quantile(ninety_percent())))
+            .map(|at| (at + *after, false)),
     };
     (0..)
         .zip(triggers)
@@ -215,8 +217,10 @@ impl Clockwork<'_> {
                 .min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)))
         };
         let stop = task.stops_at.iter().filter_map(|wind| self.stop(wind));
-        let deadline =
-            bounds(Binding::Hard).into_iter().chain(stop).min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)));
+        let deadline = bounds(Binding::Hard)
+            .into_iter()
+            .chain(stop)
+            .min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)));
         let (gate, if_declared) = self.gate(task);
         let release = gate.and_then(|gate| self.not_before(task).map(|times| times.max(gate)));
         TaskTimes { release, if_declared, deadline, due: bounds(Binding::Soft), risks: risks(task) }
@@ -282,7 +286,8 @@ impl Clockwork<'_> {
     }
 
     fn wind_words(&self, wind: &WindAt) -> String {
-        let place = self.book.port.place(&wind.place).map_or(wind.place.as_str(), |place| place.name.as_str());
+        let place =
+            self.book.port.place(&wind.place).map_or(wind.place.as_str(), |place| place.name.as_str());
         format!("{} at {place}", wind.limit)
     }
 }

@@ -2,18 +2,17 @@
 
 use crate::checker::{Stand, alone, link_holds, together, unlawful_duty};
 use crate::instances::{GRAIN, SLOTS, slot};
+use snugdown::schedule::outcome::ClassScore;
 use snugdown::schedule::problem::{IfGivenUp, Need, Problem};
+use snugdown::time::moment::Moment;
 
 /// Give up when a search would take longer than this many trials.
 const MOST_TRIALS: u64 = 3_000_000;
 
-/// The least that must be given up: the sum of weights by class. `None` if it would take too long to tell.
-pub fn least_given_up(problem: &Problem) -> Option<Vec<u64>> {
+/// The least that must be given up and late, by class. `None` if it would take too long to tell.
+pub fn best_classes(problem: &Problem) -> Option<Vec<ClassScore>> {
     let classes = problem.tasks.iter().map(|task| usize::from(task.class) + 1).max().unwrap_or(0);
-    let mut all = vec![0; classes];
-    for task in problem.tasks.iter().filter(|task| task.fixed.is_none()) {
-        all[usize::from(task.class)] += u64::from(task.weight.max(1));
-    }
+    let most = ClassScore { given_up: u64::MAX, late: 0 };
     let fixed = problem.tasks.iter().enumerate().filter_map(|(task, data)| {
         let fixed = data.fixed.as_ref()?;
         let (way, start, finish) = (fixed.way, fixed.start, fixed.finish);
@@ -24,8 +23,8 @@ pub fn least_given_up(problem: &Problem) -> Option<Vec<u64>> {
         options: (0..problem.tasks.len()).map(|task| options(problem, task)).collect(),
         placed: fixed.collect(),
         given_up: Vec::new(),
-        weights: vec![0; classes],
-        best: all,
+        so_far: vec![ClassScore::default(); classes],
+        best: vec![most; classes],
         trials: 0,
     };
     search.go(0);
@@ -37,8 +36,8 @@ struct Brute<'a> {
     options: Vec<Vec<Stand>>,
     placed: Vec<Stand>,
     given_up: Vec<usize>,
-    weights: Vec<u64>,
-    best: Vec<u64>,
+    so_far: Vec<ClassScore>,
+    best: Vec<ClassScore>,
     trials: u64,
 }
 
@@ -49,33 +48,45 @@ impl Brute<'_> {
             return;
         }
         if task == self.problem.tasks.len() {
-            if self.weights < self.best {
-                self.best = self.weights.clone();
+            if self.so_far < self.best {
+                self.best = self.so_far.clone();
             }
             return;
         }
-        if self.problem.tasks[task].fixed.is_some() {
+        let class = usize::from(self.problem.tasks[task].class);
+        if let Some(fixed) = &self.problem.tasks[task].fixed {
+            let late = self.late(task, fixed.finish);
+            self.so_far[class].late += late;
             self.go(task + 1);
+            self.so_far[class].late -= late;
             return;
         }
         for at in 0..self.options[task].len() {
             self.trials += 1;
             let option = self.options[task][at].clone();
-            if self.weights < self.best && self.fits(&option) {
+            let late = self.late(task, option.finish);
+            self.so_far[class].late += late;
+            if self.so_far < self.best && self.fits(&option) {
                 self.placed.push(option);
                 self.go(task + 1);
                 self.placed.pop();
             }
+            self.so_far[class].late -= late;
         }
-        let class = usize::from(self.problem.tasks[task].class);
         let weight = u64::from(self.problem.tasks[task].weight.max(1));
-        self.weights[class] += weight;
-        if self.weights < self.best {
+        self.so_far[class].given_up += weight;
+        if self.so_far < self.best {
             self.given_up.push(task);
             self.go(task + 1);
             self.given_up.pop();
         }
-        self.weights[class] -= weight;
+        self.so_far[class].given_up -= weight;
+    }
+
+    fn late(&self, task: usize, finish: Moment) -> u64 {
+        let task = &self.problem.tasks[task];
+        let late = [task.due, task.deadline].iter().flatten().map(|due| (finish - *due).get()).max();
+        u64::try_from(late.unwrap_or(0)).unwrap_or(0)
     }
 
     fn fits(&self, option: &Stand) -> bool {

@@ -240,7 +240,9 @@ fn waits(problem: &Problem, schedule: &Schedule) -> Vec<String> {
         let mut sum = Minutes::ZERO;
         steps.iter().for_each(|step| sum += step.wait);
         if root.map(Root::moment).map(|moment| moment + sum) != start {
-            wrong.push(format!("the waits of task {task} do not sum to its start: {root:?} {steps:?} {start:?}"));
+            wrong.push(format!(
+                "the waits of task {task} do not sum to its start: {root:?} {steps:?} {start:?}"
+            ));
         }
     }
     wrong

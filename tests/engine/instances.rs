@@ -2,7 +2,8 @@
 
 use snugdown::schedule::outcome::{Outcome, Schedule};
 use snugdown::schedule::problem::{
-    Direction, Duty, Fixed, IfGivenUp, Issued, Lane, LaneUse, Link, LinkKind, Member, Need, Pool, Problem, Task, Way,
+    Direction, Duty, Fixed, IfGivenUp, Issued, Lane, LaneUse, Link, LinkKind, Member, Need, Pool, Problem,
+    Task, Way,
 };
 use snugdown::time::moment::{Minutes, Moment};
 use snugdown::time::span::Span;
@@ -225,7 +226,8 @@ fn some_fixed(dice: &mut Dice, problem: &mut Problem) {
 fn some_issued(dice: &mut Dice, problem: &mut Problem) {
     for issued in &mut problem.tasks {
         let members = first_members(&issued.ways[0]);
-        let is_whole = members.iter().zip(&issued.ways[0].needs).all(|(named, need)| named.len() == need.count);
+        let is_whole =
+            members.iter().zip(&issued.ways[0].needs).all(|(named, need)| named.len() == need.count);
         if is_whole && dice.is_so(2, 3) {
             issued.issued = Some(Issued { way: 0, start: slot(dice.from_to(-1, SLOTS - 4)), members });
         }
@@ -237,9 +239,7 @@ pub fn issued(problem: &Problem, schedule: &Schedule) -> Problem {
     let mut next = problem.clone();
     for (task, outcome) in next.tasks.iter_mut().zip(&schedule.outcomes) {
         task.issued = match outcome {
-            Outcome::Placed(at) => {
-                Some(Issued { way: at.way, start: at.start, members: at.members.clone() })
-            }
+            Outcome::Placed(at) => Some(Issued { way: at.way, start: at.start, members: at.members.clone() }),
             Outcome::GivenUp(_) => None,
         };
     }

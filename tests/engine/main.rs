@@ -4,3 +4,4 @@ mod brute;
 mod checker;
 mod instances;
 mod oracle;
+mod port;
