@@ -2,6 +2,8 @@
 //!
 //! `cargo bench --bench placing` prints each for 25 to 500 ships (100 to 2,000 tasks), loose (72 h) and tight (40 h).
 
+#![expect(clippy::print_stdout, reason = "a measuring program shows what it measured")]
+
 #[path = "../tests/engine/instances.rs"]
 #[allow(dead_code, reason = "the tests use the rest")]
 mod instances;

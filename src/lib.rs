@@ -4,8 +4,10 @@
 
 pub mod advisory;
 pub mod arrival;
+pub mod cli;
 pub mod finding;
 pub mod geo;
+pub mod output;
 pub mod plan;
 pub mod port;
 pub mod record;

@@ -1,2 +1,7 @@
 //! The command line's entry: everything else is in the library.
-fn main() {}
+
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    snugdown::cli::run::run(std::env::args_os())
+}

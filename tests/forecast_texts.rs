@@ -1,26 +1,15 @@
-//! Real Forecast/Advisory texts, 1991 to 2024: what was read off them by eye, and the same texts in other dress.
+//! Real Forecast/Advisory texts, 1991 to 2024, against what was read off them by eye.
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test fails by panicking, in its own functions too")]
 
 use chrono::{DateTime, Utc};
 use snugdown::advisory::forecast::{Advisory, Ending, Motion, Quadrants, Reach};
 use snugdown::advisory::read::{Reading, read_forecast};
-use snugdown::finding::fault::Place;
 use std::fs;
 
 const FOLDER: &str = "tests/data/forecast-advisory";
 
 fn text(name: &str) -> String {
     fs::read_to_string(format!("{FOLDER}/{name}")).unwrap()
-}
-
-fn names() -> Vec<String> {
-    let mut names: Vec<String> = fs::read_dir(FOLDER)
-        .unwrap()
-        .map(|entry| entry.unwrap().file_name().into_string().unwrap())
-        .filter(|name| name.ends_with(".txt"))
-        .collect();
-    names.sort();
-    assert_eq!(names.len(), 14);
-    names
 }
 
 fn read(text: &str) -> Advisory {
@@ -34,13 +23,6 @@ fn codes(text: &str) -> Vec<&'static str> {
 
 fn at(text: &str) -> DateTime<Utc> {
     DateTime::parse_from_rfc3339(&format!("{text}:00Z")).unwrap().with_timezone(&Utc)
-}
-
-/// Without the places in the text, which change with its layout.
-fn without_places(mut advisory: Advisory) -> Advisory {
-    let nowhere = Place { file: String::new(), line: 1, column: 1, start: 0, end: 0 };
-    advisory.points.iter_mut().for_each(|point| point.place = nowhere.clone());
-    advisory
 }
 
 fn shown(reach: Reach) -> String {
@@ -312,7 +294,7 @@ fn the_layout_of_1991_reads() {
     assert_eq!(point(&advisory, 0), "07-03T22:00 | 35.8 -71.8 | 35 45 | 50 50 50 50 | none | none | ");
     assert_eq!(point(&advisory, 3), "07-05T06:00 | 38.5 -57.9 | 40 50 | 50 50 50 50 | none | none | ");
     assert_eq!(point(&advisory, 4), "07-05T18:00 | 39.1 -52.2 | 40 50 | not given | none | none | ");
-    assert_eq!(codes(&text("mal0191.001.txt")), ["advisory-no-storm-id", "advisory-no-gale-reach"]);
+    assert_eq!(codes(&text("mal0191.001.txt")), ["advisory-no-storm-id", "advisory-reach-missing"]);
 }
 
 #[test]
@@ -338,205 +320,4 @@ fn a_time_printed_twice_cuts_the_track_there() {
     assert_eq!(point(&advisory, 4), "10-24T18:00 | 12.9 -158.0 | 40 50 | not given | none | none | ");
     assert_eq!(advisory.ends, Some(Ending::CutShort(at("1994-10-24T18:00"))));
     assert!(codes(&text("mcp0394.001.txt")).contains(&"advisory-times-not-rising"));
-}
-
-#[test]
-fn every_point_of_every_text_has_a_place_that_shows_its_line() {
-    for name in names() {
-        let text = text(&name);
-        for point in read(&text).points.iter().skip(1) {
-            let line = &text[point.place.start..point.place.end];
-            assert!(line.contains("VALID"), "{name}: {line}");
-            assert!(line.contains(&point.valid.format("%d/%H%MZ").to_string()), "{name}: {line}");
-        }
-    }
-}
-
-#[test]
-fn the_dress_of_a_text_does_not_change_what_it_says() {
-    for name in names() {
-        let plain = text(&name);
-        let expected = without_places(read(&plain));
-        let flattened = plain.split_whitespace().collect::<Vec<_>>().join(" ");
-        let padded: String = plain.lines().map(|line| format!("{line:<68}\r\n")).collect();
-        let dresses = [
-            ("flattened", flattened.clone()),
-            ("one word a line", flattened.replace(' ', "\n")),
-            ("lower case", plain.to_lowercase()),
-            ("padded, with carriage returns", padded),
-            ("with a byte order mark", format!("\u{feff}{plain}")),
-            ("with no-break spaces", plain.replace(' ', "\u{a0}")),
-            ("with control characters", format!("\u{1}\r\r\n{}\u{3}", plain.replace('\n', "\r\r\n"))),
-            ("in a web page", format!("<!DOCTYPE html><html><body><pre>\n{plain}</pre></body></html>")),
-            ("in a web page with line tags", format!("<html><pre>{}</pre>", plain.replace('\n', "<br>\n"))),
-            ("below a mail's head", format!("From: office\nSubject: forecast\n\n{plain}")),
-            ("with final stops lost", plain.replace(".\n", "\n")),
-        ];
-        for (dress, text) in dresses {
-            assert_eq!(without_places(read(&text)), expected, "{name} {dress}");
-        }
-    }
-}
-
-#[test]
-fn bytes_that_are_no_utf_8_are_read_as_western_text() {
-    let plain = text("ep122024.fstadv.008.txt");
-    let mut bytes = plain.replace("HURRICANE KRISTY", "HURRICANE~KRISTY").into_bytes();
-    bytes.iter_mut().filter(|byte| **byte == b'~').for_each(|byte| *byte = 0xA0);
-    let advisory = read_forecast("text", &bytes).advisory.unwrap();
-    assert_eq!(without_places(advisory), without_places(read(&plain)));
-}
-
-#[test]
-fn a_text_mirrored_to_the_south_reads_mirrored() {
-    for name in names() {
-        let plain = text(&name);
-        let north = read(&plain);
-        let south = read(&each_coordinate(&plain, 'N', |degrees| format!("{degrees:.1}S")));
-        for (a, b) in north.points.iter().zip(&south.points) {
-            assert!((a.position.latitude() + b.position.latitude()).abs() < 1e-9, "{name}");
-            assert!((a.position.longitude() - b.position.longitude()).abs() < 1e-9, "{name}");
-            assert_eq!(a.radii, b.radii, "{name}");
-        }
-        assert_eq!(north.points.len(), south.points.len(), "{name}");
-    }
-}
-
-#[test]
-fn a_track_across_the_date_line_reads_as_one_track() {
-    // Shifted so that the second position lies just past 180 degrees.
-    let plain = text("ep122024.fstadv.008.txt");
-    let shifted = each_coordinate(&plain, 'W', |degrees| {
-        let west = degrees + 65.0;
-        if west > 180.0 { format!("{:.1}E", 360.0 - west) } else { format!("{west:.1}W") }
-    });
-    let advisory = read(&shifted);
-    assert_eq!(codes(&shifted), Vec::<&str>::new());
-    let longitudes: Vec<f64> = advisory.points.iter().map(|point| point.position.longitude()).collect();
-    assert!((longitudes[0] + 178.9).abs() < 1e-9 && (longitudes[1] - 178.6).abs() < 1e-9, "{longitudes:?}");
-}
-
-/// The text with each "14.3N" (of the letter given) put through `change`.
-fn each_coordinate(text: &str, letter: char, change: impl Fn(f64) -> String) -> String {
-    text.split_inclusive([' ', '\n'])
-        .map(|piece| {
-            let word = piece.trim_end();
-            let (coordinate, rest) = match word.find("...") {
-                Some(dots) => word.split_at(dots),
-                None => (word.trim_end_matches('.'), &word[word.trim_end_matches('.').len()..]),
-            };
-            let number = coordinate.strip_suffix(letter).filter(|number| number.contains('.'));
-            match number.and_then(|number| number.parse().ok()) {
-                Some(degrees) => format!("{}{rest}{}", change(degrees), &piece[word.len()..]),
-                None => piece.to_owned(),
-            }
-        })
-        .collect()
-}
-
-#[test]
-fn the_end_of_the_year_and_of_february_are_passed_rightly() {
-    let plain = text("al102017.fstadv.004.txt");
-    let cases = [
-        ("MON AUG 28 2017", "THU DEC 28 2017", "2018-01-02T12:00"),
-        ("MON AUG 28 2017", "WED FEB 28 2024", "2024-03-02T12:00"),
-    ];
-    for (old, new, last) in cases {
-        // February of 2024 has 29 days: the texts for the 30th and 31st become those of 1 and 2 March.
-        let text = plain.replace(old, new);
-        let text = if new.contains("FEB") {
-            text.replace("30/0000Z", "01/0000Z")
-                .replace("30/1200Z", "01/1200Z")
-                .replace("VALID 31/1200Z", "VALID 02/1200Z")
-                .replace("VALID 01/1200Z 46", "VALID 03/1200Z 46")
-                .replace("VALID 02/1200Z 50", "VALID 04/1200Z 50")
-        } else {
-            text
-        };
-        let advisory = read(&text);
-        let last = if new.contains("FEB") { "2024-03-04T12:00" } else { last };
-        assert_eq!(advisory.last_valid(), at(last), "{new}");
-        assert!(advisory.points.windows(2).all(|pair| pair[0].valid < pair[1].valid), "{new}");
-    }
-}
-
-#[test]
-fn all_ways_of_saying_corrected_and_special_are_seen() {
-    let plain = text("ep122024.fstadv.008.txt");
-    let corrected = [
-        plain.replace("KNHC 231441", "KNHC 231441 CCA"),
-        plain.replace("KNHC 231441", "KNHC 231441 COR"),
-        plain.replace("NUMBER   8", "NUMBER   8...CORRECTED"),
-        plain.replace("NUMBER   8", "NUMBER\n8...CORRECTED"),
-        plain.replace("EP122024\n", "EP122024\n...CORRECTION...EP9924 TO EP122024...\n"),
-    ];
-    for text in &corrected {
-        assert!(read(text).is_corrected, "{text}");
-        assert_eq!(read(text).storm.id.as_deref(), Some("EP122024"));
-    }
-    assert!(!read(&plain).is_corrected);
-    for title in [
-        "KRISTY SPECIAL FORECAST/ADVISORY",
-        "KRISTY SP FORECAST/ADVISORY",
-        "KRISTY \nSPECIAL FORECAST/ADVISORY",
-    ] {
-        let advisory = read(&plain.replace("KRISTY FORECAST/ADVISORY", title));
-        assert!(advisory.is_special && advisory.storm.name == "KRISTY", "{title}");
-    }
-}
-
-#[test]
-fn classes_of_all_kinds_leave_the_name_alone() {
-    let plain = text("ep122024.fstadv.008.txt");
-    let classes = [
-        ("TYPHOON MAYSAK", "TYPHOON", "MAYSAK"),
-        ("SUPER TYPHOON MAYSAK", "SUPER TYPHOON", "MAYSAK"),
-        ("TROPICAL CYCLONE FREDDY", "TROPICAL CYCLONE", "FREDDY"),
-        ("REMNANTS OF KRISTY", "REMNANTS OF", "KRISTY"),
-        ("TROPICAL DEPRESSION THIRTEEN-E", "TROPICAL DEPRESSION", "THIRTEEN-E"),
-        ("POST-TROPICAL\nCYCLONE KRISTY", "POST-TROPICAL CYCLONE", "KRISTY"),
-        ("VERY SEVERE STORM KRISTY", "VERY SEVERE STORM", "KRISTY"),
-    ];
-    for (title, class, name) in classes {
-        let storm = read(&plain.replace("HURRICANE KRISTY", title)).storm;
-        assert_eq!((storm.class.as_str(), storm.name.as_str()), (class, name));
-    }
-}
-
-#[test]
-fn seas_are_never_taken_for_wind() {
-    let plain = text("ep122024.fstadv.008.txt");
-    let expected = without_places(read(&plain));
-    for seas in [
-        "4 M SEAS....210NE 120SE  60SW 120NW.",
-        "RADIUS IN NM OF 12 FT SEAS OR HIGHER  210NE 120SE 60SW 120NW.",
-    ] {
-        let text = plain.replace("12 FT SEAS..210NE 120SE  60SW 120NW.", seas);
-        assert_eq!(without_places(read(&text)), expected, "{seas}");
-    }
-}
-
-#[test]
-fn corrections_sort_after_what_they_replace_and_other_storms_apart() {
-    let plain = text("ep122024.fstadv.008.txt");
-    let first = read(&plain).key();
-    let corrected = read(&plain.replace("KNHC 231441", "KNHC 231441 CCA")).key();
-    let other = read(&text("ep102024.fstadv.006.txt")).key();
-    assert!(first < corrected && other < first);
-    assert_eq!(first, read(&plain.to_lowercase()).key());
-    assert_eq!(read(&text("mal0191.001.txt")).key().storm, "ANA 1991");
-}
-
-#[test]
-fn an_absorbed_storm_ends_and_unknown_words_are_kept() {
-    let plain = text("ep122024.fstadv.008.txt");
-    let absorbed = plain.replace(
-        "OUTLOOK VALID 28/1200Z 21.0N 136.5W...POST-TROP/REMNT LOW\nMAX WIND  30 KT...GUSTS  40 KT.\n",
-        "OUTLOOK VALID 28/1200Z...ABSORBED BY EXTRATROPICAL LOW\n",
-    );
-    let advisory = read(&absorbed);
-    assert_eq!(advisory.ends, Some(Ending::Absorbed(at("2024-10-28T12:00"))));
-    assert_eq!(advisory.points.len(), 8);
-    let odd = plain.replace("136.5W...POST-TROP/REMNT LOW", "136.5W...NEARLY A WAVE");
-    assert_eq!(read(&odd).points[8].qualifier, "NEARLY A WAVE");
 }

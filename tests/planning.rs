@@ -12,7 +12,8 @@ fn show() {
     let mut reading = Reading::folder("tests/data/small-port");
     reading.add_forecast("01.txt", STORM);
     reading.set_events("[[event]]\nat = \"2026-09-16T12:05-03:00\"\nby = \"Duty officer\"\ntook_advisory = { file = \"01.txt\" }\n");
-    let history = reading.plans("2026-09-17T06:20-03:00");
+    let history = reading.plans("2026-09-16T12:10-03:00");
     let plan = history.latest().unwrap();
-    println!("{plan:#?}");
+    let setting = snugdown::output::setting::Setting::of(&reading.port, &reading.rules);
+    println!("{}", snugdown::output::plan_text::plan_text(plan, &setting, 120));
 }

@@ -276,6 +276,9 @@ mod tests {
         }
         let words = words("60 NE 50SE  40SW   30NW.");
         let taken = Cursor::new(&words, 0).quadrants().unwrap();
-        assert_eq!(taken.clockwise().map(|reach| reach.get()), [60.0, 50.0, 40.0, 30.0]);
+        assert_eq!(
+            taken.clockwise().map(|reach| reach.to_string()),
+            ["60 n mi", "50 n mi", "40 n mi", "30 n mi"]
+        );
     }
 }

@@ -116,8 +116,10 @@ pub fn recognise(text: &str) -> Kind {
             refuse("advisory-web-page", "a web page", lacks)
         });
     }
-    if trimmed.starts_with("<?xml") || trimmed.starts_with('<') {
-        return refuse("advisory-data-format", "an XML document", "that format is not read");
+    if trimmed.starts_with('<') {
+        // A news feed of an office holds the text as a web page does.
+        return web_page(text)
+            .unwrap_or_else(|| refuse("advisory-data-format", "an XML document", "that format is not read"));
     }
     if is_json(trimmed) {
         return refuse("advisory-data-format", "a JSON document", "that format is not read");
@@ -195,7 +197,7 @@ fn is_web_page(trimmed: &str) -> bool {
             .any(|tag| start.contains(tag))
 }
 
-/// The one "pre" part of a web page that holds one Forecast/Advisory.
+/// The one "pre" part of a web page, or of a news feed, that holds one Forecast/Advisory.
 fn web_page(text: &str) -> Option<Kind> {
     let lower = text.to_ascii_lowercase();
     let mut found = Vec::new();

@@ -141,6 +141,9 @@ fn ending(state: &State, valid: DateTime<Utc>, notes: &mut Notes) -> Option<Endi
 fn point(state: &State, valid: DateTime<Utc>, notes: &mut Notes) -> Option<ForecastPoint> {
     let position = state.position?;
     let Some(wind) = state.wind else {
+        if state.is_damaged {
+            return None;
+        }
         let found = format!("no wind follows \"{}\"", notes.quote(state.range.clone()));
         let to_do = "a line such as \"MAX WIND  45 KT...GUSTS  55 KT.\" is missing: fetch the text again";
         notes.error("advisory-wind", state.range.clone(), found, to_do);

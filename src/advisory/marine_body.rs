@@ -6,7 +6,7 @@
 
 use crate::advisory::cursor::{Cursor, is_coordinate, is_numeric, is_quadrant_distance};
 use crate::advisory::forecast::{Motion, Quadrants};
-use crate::advisory::marine_state::{Body, KEY_WORDS, State, take_motion, threshold};
+use crate::advisory::marine_state::{Body, State, is_at_key, take_motion, take_qualifier, threshold};
 use crate::advisory::notes::Notes;
 use crate::advisory::words::{DOTS, Word};
 use crate::units::length::NauticalMiles;
@@ -26,6 +26,8 @@ pub fn read_body(words: &[Word], from: usize, notes: &mut Notes) -> Body {
     reader.body
 }
 
+const DAMAGED: &str = "fetch the text again: a line is damaged or missing here";
+
 struct Reader<'a, 'n, 's> {
     cursor: Cursor<'a>,
     words: &'a [Word],
@@ -41,7 +43,12 @@ impl Reader<'_, '_, '_> {
         let from = self.cursor.at();
         while !self.cursor.is_done() {
             let at = self.cursor.at();
-            if self.cursor.take("CENTER LOCATED NEAR") {
+            // "DISSIPATING NEAR" stands in some last advisories; free words may say it too, but without a position.
+            let mut ahead = self.cursor.clone();
+            let is_dissipating = ahead.take("DISSIPATING NEAR") && ahead.position().is_some();
+            if self.cursor.take_any(&["CENTER LOCATED NEAR", "CENTER LOCATED INLAND NEAR"])
+                || (is_dissipating && self.cursor.take("DISSIPATING NEAR"))
+            {
                 let position = self.cursor.position();
                 let valid = if self.cursor.take("AT") { self.cursor.day_time() } else { None };
                 let range = self.cursor.range_since(at);
@@ -225,14 +232,17 @@ impl Reader<'_, '_, '_> {
         let range = self.cursor.range_since(at);
         let quote = self.notes.quote(range.clone());
         let Some(state) = self.body.states.last_mut() else { return true };
-        let to_do = "fetch the text again: a line is damaged or missing here";
-        if wind.is_none() || (says_gusts && gust.is_none()) {
-            self.notes.error("advisory-wind", range, format!("no readable wind in \"{quote}\""), to_do);
+        let found = if wind.is_none() || (says_gusts && gust.is_none()) {
+            format!("no readable wind in \"{quote}\"")
         } else if state.wind.is_some() {
-            self.notes.error("advisory-wind", range, format!("a second \"{quote}\" for one time"), to_do);
+            format!("a second \"{quote}\" for one time")
         } else {
             (state.wind, state.gust) = (wind, gust);
-        }
+            return true;
+        };
+        state.is_damaged = true;
+        self.notes.error("advisory-wind", range, found, DAMAGED);
+        self.skip_damaged();
         true
     }
 
@@ -264,6 +274,7 @@ impl Reader<'_, '_, '_> {
                 let found = format!("\"{}\" does not give four radii", self.notes.quote(range.clone()));
                 let to_do = "each of NE, SE, SW and NW must stand there once: fetch the text again";
                 self.notes.error("advisory-radii", range, found, to_do);
+                self.skip_damaged();
             }
             (Some(_), None) => {
                 let found = format!("radii of another wind: \"{}\"", self.notes.quote(range.clone()));
@@ -281,8 +292,7 @@ impl Reader<'_, '_, '_> {
             Some(slot @ None) => *slot = Some((quadrants, range)),
             _ => {
                 let found = format!("\"{}\" stands twice for one time", self.notes.quote(range.clone()));
-                let to_do = "fetch the text again: a line is damaged or missing here";
-                self.notes.error("advisory-radii", range, found, to_do);
+                self.notes.error("advisory-radii", range, found, DAMAGED);
             }
         }
     }
@@ -312,7 +322,7 @@ impl Reader<'_, '_, '_> {
         let starts_like_position = position.is_none() && is_numeric(self.cursor.peek(0));
         let range = self.cursor.range_since(at);
         let quote = self.notes.quote(range.clone());
-        let qualifier = self.qualifier();
+        let qualifier = take_qualifier(&mut self.cursor);
         let to_do = "it must read as \"FORECAST VALID 06/0600Z 30.1N  94.2W\": fetch the text again";
         let Some(valid) = valid else {
             self.notes.error("advisory-valid-time", range, format!("no readable time in \"{quote}\""), to_do);
@@ -324,26 +334,6 @@ impl Reader<'_, '_, '_> {
         }
         self.body.states.push(State { qualifier, ..State::new(valid, range, position) });
         true
-    }
-
-    /// The words between the position and the wind.
-    fn qualifier(&mut self) -> String {
-        self.cursor.take_dots();
-        let mut text = String::new();
-        let mut is_joined = true;
-        for _ in 0..8 {
-            let word = self.cursor.peek(0);
-            if word.is_empty() || self.is_at_key() || is_numeric(word) || (word == DOTS && text.is_empty()) {
-                break;
-            }
-            if !is_joined && word != DOTS {
-                text.push(' ');
-            }
-            is_joined = word == DOTS;
-            text.push_str(word);
-            self.cursor.skip(1);
-        }
-        text
     }
 
     /// "EXTENDED OUTLOOK. NOTE...ERRORS FOR TRACK HAVE AVERAGED NEAR 150 NM ON DAY 4 AND 200 NM ON DAY 5..."
@@ -389,14 +379,26 @@ impl Reader<'_, '_, '_> {
         true
     }
 
-    fn is_at_key(&self) -> bool {
-        KEY_WORDS.iter().any(|key| self.cursor.sees(key))
+    /// Passes over what is left of a damaged line, up to the next sentence or line of radii.
+    fn skip_damaged(&mut self) {
+        for _ in 0..12 {
+            let mut ahead = self.cursor.clone();
+            let is_radii = ahead.quantity("KT").is_some() && {
+                ahead.take_dots();
+                is_quadrant_distance(ahead.peek(0))
+            };
+            let is_seas = self.cursor.peek(2) == "SEAS" || self.cursor.sees("RADIUS IN NM OF");
+            if self.cursor.is_done() || is_at_key(&self.cursor) || is_radii || is_seas {
+                return;
+            }
+            self.cursor.skip(1);
+        }
     }
 
     /// Passes over free words up to the next key words, at most `most`.
     fn skip_free(&mut self, most: usize) {
         for _ in 0..most {
-            if self.cursor.is_done() || self.is_at_key() {
+            if self.cursor.is_done() || is_at_key(&self.cursor) {
                 return;
             }
             self.cursor.skip(1);

@@ -1,7 +1,8 @@
 //! What the sentences of a Forecast/Advisory say, before months and rules are applied.
 
-use crate::advisory::cursor::{Cursor, DayTime};
+use crate::advisory::cursor::{Cursor, DayTime, is_numeric};
 use crate::advisory::forecast::{Motion, Quadrants};
+use crate::advisory::words::DOTS;
 use crate::geo::position::Position;
 use crate::units::bearing::Bearing;
 use crate::units::length::NauticalMiles;
@@ -10,7 +11,7 @@ use crate::units::speed::Knots;
 use std::ops::Range;
 
 /// The words at which a run of free words ends, as another sentence begins there.
-pub const KEY_WORDS: [&str; 16] = [
+const KEY_WORDS: [&str; 16] = [
     "FORECAST VALID",
     "OUTLOOK VALID",
     "MAX",
@@ -65,6 +66,8 @@ pub struct State {
     pub wind: Option<Knots>,
     /// Gusts.
     pub gust: Option<Knots>,
+    /// A finding says already that its wind is damaged.
+    pub is_damaged: bool,
     /// Radii lines of 34, 50 and 64 kt, and their bytes.
     pub radii: [Option<(Quadrants, Range<usize>)>; 3],
 }
@@ -80,9 +83,36 @@ impl State {
             qualifier: String::new(),
             wind: None,
             gust: None,
+            is_damaged: false,
             radii: [const { None }; 3],
         }
     }
+}
+
+/// Whether another sentence begins here.
+#[must_use]
+pub fn is_at_key(cursor: &Cursor) -> bool {
+    KEY_WORDS.iter().any(|key| cursor.sees(key))
+}
+
+/// Takes the words between a position and the wind: "INLAND...DISSIPATING".
+pub fn take_qualifier(cursor: &mut Cursor) -> String {
+    cursor.take_dots();
+    let mut text = String::new();
+    let mut is_joined = true;
+    for _ in 0..8 {
+        let word = cursor.peek(0);
+        if word.is_empty() || is_at_key(cursor) || is_numeric(word) || (word == DOTS && text.is_empty()) {
+            break;
+        }
+        if !is_joined && word != DOTS {
+            text.push(' ');
+        }
+        is_joined = word == DOTS;
+        text.push_str(word);
+        cursor.skip(1);
+    }
+    text
 }
 
 /// Takes "360 DEGREES AT  11 KT".

@@ -1,6 +1,7 @@
 //! Forecasts of one tropical cyclone: the model, one reader per kind of product, plausibility.
 
 pub mod assume;
+pub mod codes;
 pub mod cursor;
 pub mod forecast;
 pub mod kind;

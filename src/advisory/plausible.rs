@@ -51,8 +51,9 @@ const TROPICAL_SPEED_KT: f64 = 40.0;
 const TURN: (f64, f64) = (60.0, 3.0);
 /// Greatest usual change of wind in kt in 24 h; 1.8 % of the advisories had more, most over land.
 const WIND_CHANGE_KT: f64 = 60.0;
-/// Up to this many hours ahead the texts give 34-kt radii wherever such winds blow.
-const GALE_RADII_HOURS: i64 = 72;
+/// Up to this many hours after issue the texts give the reach of 34, 50 and 64 kt wherever such winds blow; 1 % of the
+/// points up to there lacked it, all of those beyond.
+const REACH_HOURS: [i64; 3] = [72, 72, 40];
 /// Our choice: wind and pressure may differ by this many kt; 1 % of the advisories had more (20 kt: 4 %).
 const WIND_FROM_PRESSURE_KT: f64 = 25.0;
 
@@ -80,7 +81,7 @@ pub fn check(mut advisory: Advisory, origin: Origin, notes: &mut Notes) -> Advis
             desk.turn(a, b, c);
         }
     }
-    desk.missing_gale_reach(&advisory);
+    desk.missing_reaches(&advisory);
     desk.pressure(&advisory);
     desk.hemisphere(&advisory);
     advisory
@@ -216,23 +217,32 @@ impl Desk<'_, '_> {
         }
     }
 
-    /// Gales that blow but whose reach is not given, within the hours for which it usually is.
-    fn missing_gale_reach(&mut self, advisory: &Advisory) {
-        let mut lacking = advisory.points.iter().filter(|point| {
-            let is_stronger_given = [point.radii.storm, point.radii.hurricane]
-                .iter()
-                .any(|reach| matches!(reach, Reach::Given(given) if *given != Quadrants::NONE));
-            let is_soon = (point.valid - advisory.issued).num_hours() <= GALE_RADII_HOURS;
-            point.radii.gale == Reach::NotGiven && (is_stronger_given || is_soon)
-        });
-        if let Some(first) = lacking.next() {
-            let count = 1 + lacking.count();
-            let times =
-                if count == 1 { String::new() } else { format!(" (and at {} later times)", count - 1) };
-            let found = format!("a wind of {} but no reach of 34 kt{times}", first.max_wind);
-            let place = first.place.clone();
+    /// Winds that blow but whose reach is not given, within the hours for which it usually is.
+    ///
+    /// A forecast typed in need not give more than the reach of 34 kt.
+    fn missing_reaches(&mut self, advisory: &Advisory) {
+        let asked = if self.origin == Origin::Typed { 1 } else { 3 };
+        let speeds = [Knots::GALE, Knots::STORM, Knots::HURRICANE];
+        for (index, (speed, hours)) in speeds.into_iter().zip(REACH_HOURS).enumerate().take(asked) {
+            let lacks = |point: &&ForecastPoint| {
+                let reaches = point.radii.by_speed();
+                let given =
+                    |(_, reach): &(Knots, Reach)| matches!(reach, Reach::Given(q) if *q != Quadrants::NONE);
+                let is_stronger_given = reaches.iter().skip(index + 1).any(given);
+                let is_soon = (point.valid - advisory.issued).num_hours() <= hours;
+                let is_missing = reaches.get(index).is_some_and(|(_, reach)| *reach == Reach::NotGiven);
+                is_missing && (is_stronger_given || is_soon)
+            };
+            let lacking: Vec<&ForecastPoint> = advisory.points.iter().filter(lacks).collect();
+            let Some(first) = lacking.first() else { continue };
+            let times = match lacking.len() {
+                1 => String::new(),
+                2 => " (and once more later)".to_owned(),
+                count => format!(" (and {} times more later)", count - 1),
+            };
+            let found = format!("a wind of {} but no reach of {speed}{times}", first.max_wind);
             let to_do = "the reach is taken as not given, not as none; look for it elsewhere";
-            self.notes.add(Finding::warning("advisory-no-gale-reach", place, found, "", to_do));
+            self.notes.add(Finding::warning("advisory-reach-missing", first.place.clone(), found, "", to_do));
         }
     }
 

@@ -13,7 +13,7 @@ use toml::de::{DeTable, DeValue};
 #[derive(Clone, Debug)]
 pub struct Section<'t> {
     entries: Option<&'t DeTable<'t>>,
-    /// "[now]", for messages.
+    /// `[now]`, for messages.
     pub title: &'static str,
     /// The bytes of its head.
     pub range: Range<usize>,

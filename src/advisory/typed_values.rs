@@ -157,7 +157,10 @@ mod tests {
     fn a_reach_is_one_distance_or_four() {
         assert!(matches!(reach("120 n mi"), Ok(TypedReach::AllRound(_))));
         let Ok(TypedReach::ByQuadrant(four)) = reach("120NE 90SE 60SW 0NW n mi") else { panic!("not read") };
-        assert_eq!(four.clockwise().map(|miles| miles.get()), [120.0, 90.0, 60.0, 0.0]);
+        assert_eq!(
+            four.clockwise().map(|miles| miles.to_string()),
+            ["120 n mi", "90 n mi", "60 n mi", "0 n mi"]
+        );
         let Ok(TypedReach::ByQuadrant(km)) = reach("185.2NE 0SE 0SW 0NW km") else { panic!("not read") };
         assert!((km.northeast.get() - 100.0).abs() < 1e-9);
         for text in [

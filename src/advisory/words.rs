@@ -16,7 +16,7 @@ pub struct Word {
 
 /// The text that some bytes mean: UTF-8, UTF-16 with its mark, else one byte a character as western offices write.
 ///
-/// Never fails; whether the result is a text at all is for [`crate::advisory::kind`] to say.
+/// Never fails; whether the result is a text at all is for others to say.
 #[must_use]
 pub fn decode(bytes: &[u8]) -> String {
     let wide = |pairs: &[u8], join: fn([u8; 2]) -> u16| {

@@ -52,12 +52,21 @@ pub struct Step {
     pub node: usize,
     /// Weights of that node's standard error and the next one's, for each component; their mix keeps a variance of one.
     pub weights: [(f64, f64); 4],
-    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error) for storms up to 50, 65, 80 kt and any.
-    pub bounds: [f64; 4],
+    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error) for storms of up to 35, 40, ... 90 kt.
+    bounds: [f64; BOUNDS],
 }
 
-/// Upper ends of the classes of greatest wind for [`Step::bounds`].
-pub const BOUND_CLASSES_KT: [f64; 3] = [50.0, 65.0, 80.0];
+const BOUNDS: usize = 12;
+
+impl Step {
+    /// A bound of the reach of 34 kt, or of the core if that is wider, for a storm of `wind_kt` before its size error. A few times cheaper than the
+    /// reach itself, it keeps far places out of the inner loop.
+    #[must_use]
+    pub fn bound_nmi(&self, wind_kt: f64) -> f64 {
+        let class = ((wind_kt - 30.0).max(0.0) / 5.0) as usize;
+        self.bounds[class.min(BOUNDS - 1)]
+    }
+}
 
 /// A forecast ready for scenarios.
 #[derive(Clone, Debug, PartialEq)]
@@ -252,7 +261,7 @@ impl<'a> Errors<'a> {
     }
 
     fn serial(&self, end_h: f64) -> Vec<[f64; 4]> {
-        let last = libm::ceil((end_h + self.lead_at_issue_h) / NODE_H).max(0.0) as usize;
+        let last = f64::ceil((end_h + self.lead_at_issue_h) / NODE_H).max(0.0) as usize;
         (0..=last + 1).map(|node| self.table.at(node as f64 * NODE_H).serial).collect()
     }
 
@@ -261,12 +270,12 @@ impl<'a> Errors<'a> {
     /// z = ((1 - s) z0 + s z1) / sqrt((1 - s)^2 + s^2 + 2 s (1 - s) phi): without the root the variance would dip between nodes.
     fn weights(&self, hour: f64, serial: &[[f64; 4]]) -> (usize, [(f64, f64); 4]) {
         let position = (hour + self.lead_at_issue_h) / NODE_H;
-        let node = libm::floor(position).max(0.0);
+        let node = f64::floor(position).max(0.0);
         let s = position - node;
         let node = node as usize;
         let phi = serial.get(node + 1).copied().unwrap_or([1.0; 4]);
         let weights = phi.map(|phi| {
-            let norm = libm::sqrt((1.0 - s) * (1.0 - s) + s * s + 2.0 * s * (1.0 - s) * phi);
+            let norm = f64::sqrt((1.0 - s) * (1.0 - s) + s * s + 2.0 * s * (1.0 - s) * phi);
             ((1.0 - s) / norm, s / norm)
         });
         (node, weights)
@@ -328,7 +337,7 @@ impl Forecast<'_> {
         };
         let moved = plus(at(hour + 6.0), -1.0, at(hour - 6.0));
         let flat = plus(moved, -dot(moved, centre), centre);
-        let length_nmi = libm::sqrt(dot(flat, flat)) * EARTH_RADIUS_NMI;
+        let length_nmi = f64::sqrt(dot(flat, flat)) * EARTH_RADIUS_NMI;
         let heading = if length_nmi >= LEAST_MOVEMENT_NMI {
             flat
         } else {
@@ -342,12 +351,19 @@ impl Forecast<'_> {
     }
 }
 
-fn bounds(ratios: &Ratios, latitude: f64) -> [f64; 4] {
+fn bounds(ratios: &Ratios, latitude: f64) -> [f64; BOUNDS] {
     let widest = ratios[0].iter().copied().fold(0.0, f64::max);
     let widest = if widest > 0.0 { widest } else { 1.0 };
     let core = radius_of_greatest_wind_nmi(0.0, latitude);
-    let [a, b, c] = BOUND_CLASSES_KT;
-    [a, b, c, 400.0].map(|wind| widest * reach_nmi(34.0, wind, latitude).max(core))
+    let mut bounds = [widest * core; BOUNDS];
+    let mut wind = 30.0;
+    for bound in &mut bounds {
+        wind += 5.0;
+        *bound = bound.max(widest * reach_nmi(34.0, wind, latitude));
+    }
+    // The last one is for every stronger storm.
+    bounds[BOUNDS - 1] = bounds[BOUNDS - 1].max(widest * reach_nmi(34.0, 400.0, latitude));
+    bounds
 }
 
 fn linear_at(values: &[(f64, f64)], hour: f64) -> f64 {

@@ -94,7 +94,7 @@ pub fn normal_quantile(p: f64) -> f64 {
         return q * ratio(&CENTRE, r);
     }
     let tail = if q < 0.0 { p } else { 1.0 - p };
-    let r = libm::sqrt(-libm::log(tail));
+    let r = f64::sqrt(-libm::log(tail));
     let size = if r <= 5.0 { ratio(&MIDDLE, r - 1.6) } else { ratio(&TAIL, r - 5.0) };
     if q < 0.0 { -size } else { size }
 }

@@ -173,7 +173,7 @@ fn tenths(n: usize) -> Chance {
 /// The smallest count that is at least the share `p` of `whole`.
 fn least_count(whole: usize, p: Chance) -> usize {
     // A share such as 0.1 is a little more than a tenth in binary: without the allowance 10 % of 1,000 would be 101.
-    libm::ceil(whole as f64 * p.get() - 1e-9).max(0.0) as usize
+    f64::ceil(whole as f64 * p.get() - 1e-9).max(0.0) as usize
 }
 
 fn at_rank(sorted: &[Moment], p: Chance) -> Option<Moment> {

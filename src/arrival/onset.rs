@@ -11,7 +11,7 @@ use crate::units::bearing::Bearing;
 use crate::units::speed::Knots;
 use crate::wind::field::{Hemisphere, INFLOW_DEGREES, Vortex, wind_from};
 use crate::wind::profile::Profile;
-use crate::wind::sphere::{Vector, bearing_degrees, distance_nmi, dot, plus};
+use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, bearing_degrees, distance_nmi, dot, plus};
 
 /// When the wind comes.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -31,7 +31,7 @@ pub struct ScenarioOnset {
     pub onset: Onset,
     /// When it last falls below the limit, rounded up; `None` if it never comes or still blows at the end of the forecast.
     pub until: Option<Moment>,
-    /// Wind met where the place lies deepest within the lowest limit asked there: the greatest, or very near it. 10 m over open water in the advisory's averaging; zero if the limit is never reached.
+    /// Wind met where the place lies deepest within the gale radius: the greatest, or very near it. 10 m over open water in the advisory's averaging; zero if the limit is never reached.
     pub peak: Knots,
     /// From where the wind blows at the onset (at issue, if already there); north if it never comes.
     pub from: Bearing,
@@ -78,89 +78,90 @@ impl Watch {
         let mut deepest = Deepest::default();
         let mut before: Option<Sight> = None;
         for k in 0..course.end.max(1) {
-            if !scenario.may_reach(k, self.place, self.widening) {
-                before = None;
-                continue;
-            }
-            let Some(mut hour) = Hour::new(course, scenario, k, self.place) else { break };
+            let start = before.take();
+            let Some(mut hour) = self.hour(course, scenario, k) else { continue };
             if course.end == 0 {
                 // A forecast of a single moment: nothing after it belongs to the forecast.
                 hour.stand_still();
             }
-            let start = before.unwrap_or_else(|| hour.look(0.0));
-            let end = hour.look(1.0);
+            let start = start.unwrap_or_else(|| self.seen(hour.look(0.0)));
+            let end = self.seen(hour.look(1.0));
             before = Some(end);
             self.pass(&hour, [start, end], &mut states, &mut deepest);
         }
-        let coming = states.iter().any(|state| !state.is_reached())
-            && course.steps.len() > course.end + 1
-            && !self.limits_kt.is_empty();
         let reached = states.iter().filter(|state| state.is_reached()).count();
-        let cut_off = if coming { self.still_coming(course, scenario, reached) } else { 0 };
+        let cut_off = self.still_coming(course, scenario).max(reached);
         states
             .iter()
             .enumerate()
-            .map(|(i, state)| {
-                let is_cut_off = i >= reached && i < reached + cut_off;
-                state.told(course, &deepest, is_cut_off)
-            })
+            .map(|(i, state)| state.told(course, &deepest, (reached..cut_off).contains(&i)))
             .collect()
     }
 
-    /// One hour for all limits. A limit that is not met means that no higher one is.
-    fn pass(&self, hour: &Hour, [start, end]: [Sight; 2], states: &mut [State], deepest: &mut Deepest) {
+    /// The hour after step `k`, if any limit can be met in it.
+    fn hour<'a>(&self, course: &Course, scenario: &'a mut Scenario, k: usize) -> Option<Hour<'a>> {
+        if !scenario.may_reach(k, self.place, self.widening) {
+            return None;
+        }
+        scenario.prepare(course, k);
+        let hour = Hour::new(course, scenario, k, self.place)?;
+        hour.may_reach(self.widening).then_some(hour)
+    }
+
+    fn seen(&self, mut sight: Sight) -> Sight {
+        sight.met = sight.count_met(&self.limits_kt);
+        sight
+    }
+
+    /// One hour for all limits. They are nested: where a limit is met, every lower one is.
+    fn pass(&self, hour: &Hour<'_>, [start, end]: [Sight; 2], states: &mut [State], deepest: &mut Deepest) {
         let closest = hour.closest();
-        let middle = closest.map(|s| hour.look(s));
-        for (i, (limit, state)) in self.limits_kt.iter().zip(states.iter_mut()).enumerate() {
-            let reach_at_start = start.profile.reach_nmi(*limit);
-            let (starts_in, ends_in) = (start.is_within(reach_at_start), end.is_inside(*limit));
-            let dips = middle.filter(|sight| sight.is_inside(*limit));
-            if !starts_in && !ends_in && dips.is_none() {
-                break;
-            }
-            if i == 0 {
-                for sight in [Some(start), Some(end), middle].into_iter().flatten() {
-                    deepest.note(sight, *limit);
-                }
-            }
-            if starts_in && hour.k == 0 && !state.is_reached() {
+        let middle = closest.map(|s| self.seen(hour.look(s)));
+        let dips = middle.map_or(0, |sight| sight.met);
+        let most = start.met.max(end.met).max(dips);
+        if most == 0 {
+            return;
+        }
+        for sight in [Some(start), Some(end), middle].into_iter().flatten() {
+            deepest.note(sight);
+        }
+        for (i, (limit, state)) in self.limits_kt.iter().zip(states.iter_mut()).take(most).enumerate() {
+            let (starts_in, ends_in) = (i < start.met, i < end.met);
+            if starts_in && hour.k == 0 {
                 state.onset = Some(Found { minute: None, bearing: start.bearing });
             }
             // The stretch over which the wind comes, and the one over which it goes.
-            let touch = closest.filter(|_| dips.is_some());
+            let touch = closest.zip(middle).filter(|_| i < dips);
+            let edges = [(0.0, start), (1.0, end)];
             let (comes, goes) = match (starts_in, ends_in) {
                 (true, true) => (None, None),
-                (false, true) => (Some((0.0, 1.0)), None),
-                (true, false) => (None, Some((touch.unwrap_or(0.0), 1.0))),
-                (false, false) => (touch.map(|s| (0.0, s)), touch.map(|s| (s, 1.0))),
+                (false, true) => (Some([edges[0], touch.unwrap_or(edges[1])]), None),
+                (true, false) => (None, Some([touch.unwrap_or(edges[0]), edges[1]])),
+                (false, false) => (touch.map(|t| [edges[0], t]), touch.map(|t| [t, edges[1]])),
             };
             if let Some(stretch) = comes.filter(|_| !state.is_reached()) {
                 let s = hour.crossing(*limit, stretch);
                 state.onset = Some(Found { minute: Some(hour.minute(s)), bearing: hour.look(s).bearing });
             }
-            state.until = goes.map(|stretch| hour.minute(hour.crossing(*limit, stretch))).or(if ends_in {
-                None
-            } else {
-                state.until
-            });
+            if ends_in {
+                state.until = None;
+            } else if let Some(stretch) = goes {
+                state.until = Some(hour.minute(hour.crossing(*limit, stretch)));
+            }
         }
     }
 
-    /// How many limits beyond the first `reached` would be met in the look-ahead.
-    fn still_coming(&self, course: &Course, scenario: &mut Scenario, reached: usize) -> usize {
-        let limits = self.limits_kt.get(reached..).unwrap_or_default();
+    /// How many limits, the lowest first, would be met in the look-ahead beyond the forecast.
+    fn still_coming(&self, course: &Course, scenario: &mut Scenario) -> usize {
         let mut most = 0;
-        for k in course.end..course.steps.len() - 1 {
-            if most == limits.len() {
+        for k in course.end..course.steps.len().saturating_sub(1) {
+            let Some(hour) = self.hour(course, scenario, k) else { continue };
+            for s in [Some(1.0), hour.closest()].into_iter().flatten() {
+                most = most.max(self.seen(hour.look(s)).met);
+            }
+            if most == self.limits_kt.len() {
                 break;
             }
-            if !scenario.may_reach(k, self.place, self.widening) {
-                continue;
-            }
-            let Some(hour) = Hour::new(course, scenario, k, self.place) else { break };
-            let sights = [Some(hour.look(1.0)), hour.closest().map(|s| hour.look(s))];
-            let met = |limit: &f64| sights.iter().flatten().any(|sight| sight.is_inside(*limit));
-            most = most.max(limits.iter().take_while(|limit| met(limit)).count());
         }
         most
     }
@@ -172,15 +173,37 @@ struct Sight {
     distance: f64,
     bearing: f64,
     profile: Profile,
+    /// How many of the limits are met.
+    met: usize,
 }
 
 impl Sight {
-    fn is_within(&self, reach_nmi: f64) -> bool {
-        reach_nmi > 0.0 && self.distance <= reach_nmi
-    }
-
-    fn is_inside(&self, limit_kt: f64) -> bool {
-        self.is_within(self.profile.reach_nmi(limit_kt))
+    /// How many of the limits, which rise, are met here.
+    fn count_met(&self, limits_kt: &[f64]) -> usize {
+        let [gale, storm, hurricane] = self.profile.reach_nmi;
+        // The given radii decide most cases without the profile's logarithms: below `sure` the limit is met, above `at_most` it is not.
+        let is_within = |reach: f64| reach > 0.0 && self.distance <= reach;
+        let (sure, at_most) = if is_within(hurricane) {
+            (64.0, f64::INFINITY)
+        } else if is_within(storm) {
+            (50.0, 64.0)
+        } else if is_within(gale) {
+            (34.0, 50.0)
+        } else {
+            (0.0, 34.0)
+        };
+        let mut speed = None;
+        limits_kt
+            .iter()
+            .take_while(|limit| {
+                let limit = **limit;
+                let strong_enough = self.profile.max_wind_kt >= limit;
+                strong_enough
+                    && (limit <= sure
+                        || (limit < at_most
+                            && *speed.get_or_insert_with(|| self.profile.speed_kt(self.distance)) >= limit))
+            })
+            .count()
     }
 
     /// Distance less reach in n mi: negative while the wind is there.
@@ -192,17 +215,17 @@ impl Sight {
 }
 
 /// The stretch between two steps of a scenario, seen from a place.
-struct Hour {
+struct Hour<'a> {
     k: usize,
     place: Vector,
-    vortices: [Vortex; 2],
+    vortices: [&'a Vortex; 2],
     minutes: [f64; 2],
 }
 
-impl Hour {
-    fn new(course: &Course, scenario: &mut Scenario, k: usize, place: Vector) -> Option<Hour> {
-        let from = scenario.vortex(course, k)?;
-        let to = scenario.vortex(course, k + 1).unwrap_or(from);
+impl<'a> Hour<'a> {
+    fn new(course: &Course, scenario: &'a Scenario, k: usize, place: Vector) -> Option<Hour<'a>> {
+        let from = scenario.vortex(k)?;
+        let to = scenario.vortex(k + 1).unwrap_or(from);
         let minute = |i: usize| course.steps.get(i).map(|step| step.minute);
         let start = minute(k)?;
         Some(Hour { k, place, vortices: [from, to], minutes: [start, minute(k + 1).unwrap_or(start)] })
@@ -213,23 +236,46 @@ impl Hour {
         self.minutes[1] = self.minutes[0];
     }
 
+    /// Whether the centre comes as near as the furthest reach of its gales (times `widening`; at least that of its core) at either end.
+    fn may_reach(&self, widening: f64) -> bool {
+        let [from, to] = self.vortices;
+        let s = self.closest_share().clamp(0.0, 1.0);
+        let nearest = plus(from.centre, s, plus(to.centre, -1.0, from.centre));
+        let core = if widening > 1.0 { from.core_nmi.max(to.core_nmi) } else { 0.0 };
+        let [a, b] = [from, to].map(|vortex| vortex.widest_nmi.max(core));
+        // One n mi for the bend of the earth within the hour.
+        let reach = (a.max(b) * widening + 1.0) / EARTH_RADIUS_NMI;
+        let between = plus(self.place, -1.0, nearest);
+        dot(between, between) <= reach * reach
+    }
+
     fn look(&self, s: f64) -> Sight {
-        let [from, to] = &self.vortices;
-        let vortex = from.towards(to, s);
+        let [from, to] = self.vortices;
+        let between;
+        let vortex = if s <= 0.0 {
+            from
+        } else if s >= 1.0 {
+            to
+        } else {
+            between = from.towards(to, s);
+            &between
+        };
         let bearing = bearing_degrees(vortex.centre, self.place);
-        Sight { distance: distance_nmi(vortex.centre, self.place), bearing, profile: vortex.profile(bearing) }
+        let distance = distance_nmi(vortex.centre, self.place);
+        Sight { distance, bearing, profile: vortex.profile(bearing), met: 0 }
     }
 
     /// Where between the ends the centre is nearest to the place, if between them.
     fn closest(&self) -> Option<f64> {
-        let [from, to] = &self.vortices;
+        Some(self.closest_share()).filter(|s| *s > 0.0 && *s < 1.0)
+    }
+
+    /// The same on the line drawn on beyond both ends; 0 if the centre stands still.
+    fn closest_share(&self) -> f64 {
+        let [from, to] = self.vortices;
         let moved = plus(to.centre, -1.0, from.centre);
         let length2 = dot(moved, moved);
-        if length2 <= 0.0 {
-            return None;
-        }
-        let s = dot(plus(self.place, -1.0, from.centre), moved) / length2;
-        (s > 0.0 && s < 1.0).then_some(s)
+        if length2 > 0.0 { dot(plus(self.place, -1.0, from.centre), moved) / length2 } else { 0.0 }
     }
 
     fn minute(&self, s: f64) -> f64 {
@@ -238,10 +284,14 @@ impl Hour {
 
     /// Where in the stretch the place passes the limit's edge: regula falsi, halving the value at an end that stays twice (the Illinois method,
     /// Dowell & Jarratt 1971, BIT 11:168-174). The outer end of the last bracket is taken: an onset is never late, an end never early.
-    fn crossing(&self, limit_kt: f64, (mut low, mut high): (f64, f64)) -> f64 {
+    fn crossing(
+        &self,
+        limit_kt: f64,
+        [(mut low, low_sight), (mut high, high_sight)]: [(f64, Sight); 2],
+    ) -> f64 {
         const TWO_SECONDS: f64 = 2.0 / 3600.0;
         let gap = |s: f64| self.look(s).gap(limit_kt);
-        let (mut at_low, mut at_high) = (gap(low), gap(high));
+        let (mut at_low, mut at_high) = (low_sight.gap(limit_kt), high_sight.gap(limit_kt));
         let comes = at_low > 0.0;
         let mut low_moved = None;
         for _ in 0..40 {
@@ -292,8 +342,8 @@ impl State {
         let after = |minutes: f64| course.issued + Minutes::new(minutes as i64);
         let northern = wind_from(Bearing::wrapped(found.bearing), Hemisphere::Northern, INFLOW_DEGREES);
         ScenarioOnset {
-            onset: found.minute.map_or(Onset::Already, |minute| Onset::At(after(libm::floor(minute)))),
-            until: self.until.map(|minute| after(libm::ceil(minute))),
+            onset: found.minute.map_or(Onset::Already, |minute| Onset::At(after(f64::floor(minute)))),
+            until: self.until.map(|minute| after(f64::ceil(minute))),
             peak: deepest.peak(),
             from: match course.hemisphere {
                 Hemisphere::Northern => northern,
@@ -312,9 +362,9 @@ struct Deepest {
 }
 
 impl Deepest {
-    fn note(&mut self, sight: Sight, limit_kt: f64) {
-        let reach = sight.profile.reach_nmi(limit_kt);
-        let depth = if reach > 0.0 { sight.distance / reach } else { f64::INFINITY };
+    fn note(&mut self, sight: Sight) {
+        // How deep, as the share of the gale radius (or the core's) at which the place lies.
+        let depth = sight.distance / sight.profile.reach_nmi[0].max(sight.profile.core_nmi);
         if self.at.is_none_or(|(least, _)| depth < least) {
             self.at = Some((depth, sight));
         }

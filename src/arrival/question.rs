@@ -11,6 +11,6 @@ pub struct Question {
     /// Where.
     pub position: Position,
     /// The wind over the open sea, 10 m above it, in the advisory's own averaging. For a limit that means something else
-    /// (a gust at a crane's height, a place behind the coast) take [`crate::wind::exposure::Exposure::open_sea_limit`].
+    /// (a gust at a crane's height, a place behind the coast) take [`crate::wind::exposure::open_sea_limit`].
     pub limit: Knots,
 }

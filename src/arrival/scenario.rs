@@ -3,7 +3,7 @@
 //! Errors are first-order autoregressive on nodes 12 h apart: z0 = e0, zk = phi z(k-1) + sqrt(1 - phi^2) ek, with e from the standard normal distribution, for each of along,
 //! cross, intensity and size; an error is deviation x z + bias.
 
-use crate::arrival::course::{BOUND_CLASSES_KT, Course, Step};
+use crate::arrival::course::{Course, Step};
 use crate::arrival::keyed::{BLOCK, Component, Keyed};
 use crate::wind::field::Vortex;
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, displaced, dot, plus};
@@ -35,9 +35,9 @@ impl Draws {
             }
             let rho = course.intensity_with_size;
             let [intensity, size] = [Component::Intensity.index(), Component::Size.index()];
-            fresh[size] = rho * fresh[intensity] + libm::sqrt(1.0 - rho * rho) * fresh[size];
+            fresh[size] = rho * fresh[intensity] + f64::sqrt(1.0 - rho * rho) * fresh[size];
             for ((z, e), phi) in last.iter_mut().zip(fresh).zip(serial) {
-                *z = if node == 0 { e } else { phi * *z + libm::sqrt(1.0 - phi * phi) * e };
+                *z = if node == 0 { e } else { phi * *z + f64::sqrt(1.0 - phi * phi) * e };
             }
             out.push(last);
         }
@@ -92,14 +92,13 @@ impl Scenario {
             ));
             self.winds_kt.push(wind);
             self.sizes.push(scale);
-            let class = BOUND_CLASSES_KT.iter().filter(|upper| wind > **upper).count();
-            bounds.push(scale * step.bounds.get(class).copied().unwrap_or(f64::INFINITY));
+            bounds.push(scale * step.bound_nmi(wind));
         }
         self.far2.clear();
         for (centres, reach) in self.centres.windows(2).zip(bounds.windows(2)) {
             let ([from, to], [a, b]) = (centres, reach) else { continue };
             let moved = plus(*to, -1.0, *from);
-            let far = a.max(*b) / EARTH_RADIUS_NMI + libm::sqrt(dot(moved, moved));
+            let far = a.max(*b) / EARTH_RADIUS_NMI + f64::sqrt(dot(moved, moved));
             self.far2.push(far * far);
         }
         let last = bounds.last().copied().unwrap_or(0.0) / EARTH_RADIUS_NMI;
@@ -116,15 +115,28 @@ impl Scenario {
         dot(between, between) <= far2 * widening * widening
     }
 
-    /// The realised storm at step `k`; `None` beyond the last.
-    pub fn vortex(&mut self, course: &Course, k: usize) -> Option<Vortex> {
-        let kept = self.vortices.get_mut(k)?;
-        if kept.is_none() {
-            let step = course.steps.get(k)?;
-            let (centre, wind, size) = (self.centres.get(k)?, self.winds_kt.get(k)?, self.sizes.get(k)?);
-            *kept =
-                Some(Vortex::realised(*centre, step.latitude, &step.ratios, (step.wind_kt, *wind), *size));
+    /// Makes sure that the realised storms at step `k` and at the next are there; they are made when first needed.
+    pub fn prepare(&mut self, course: &Course, k: usize) {
+        for at in [k, k + 1] {
+            let (Some(kept), Some(step)) = (self.vortices.get_mut(at), course.steps.get(at)) else {
+                continue;
+            };
+            let state = (self.centres.get(at), self.winds_kt.get(at), self.sizes.get(at));
+            if let (None, (Some(centre), Some(wind), Some(size))) = (&kept, state) {
+                *kept = Some(Vortex::realised(
+                    *centre,
+                    step.latitude,
+                    &step.ratios,
+                    (step.wind_kt, *wind),
+                    *size,
+                ));
+            }
         }
-        *kept
+    }
+
+    /// The realised storm at step `k`; `None` if it was not prepared.
+    #[must_use]
+    pub fn vortex(&self, k: usize) -> Option<&Vortex> {
+        self.vortices.get(k)?.as_ref()
     }
 }

@@ -137,3 +137,18 @@ pub fn nearest<'a>(wrong: &str, known: impl IntoIterator<Item = &'a str>) -> Opt
         .min()
         .map(|(_, name)| name)
 }
+
+/// "did you mean "pilot"?" if a known name is near the wrong one, else `otherwise`.
+#[must_use]
+pub fn did_you_mean<'a>(wrong: &str, known: impl IntoIterator<Item = &'a str>, otherwise: &str) -> String {
+    nearest(wrong, known).map_or_else(|| otherwise.to_owned(), |name| format!("did you mean \"{name}\"?"))
+}
+
+/// Names in quotation marks, with commas; a long list is cut with its count.
+#[must_use]
+pub fn quoted(names: &[&str]) -> String {
+    const MOST: usize = 20;
+    let shown: Vec<String> = names.iter().take(MOST).map(|name| format!("\"{name}\"")).collect();
+    let more = names.len().saturating_sub(MOST);
+    if more > 0 { format!("{} and {more} more", shown.join(", ")) } else { shown.join(", ") }
+}

@@ -1,131 +1,11 @@
-//! A TOML file walked key by key, so that every fault in it is found, each with its place.
+//! The tables of a TOML file walked key by key, so that every fault in them is found, each with its place.
 
-use crate::finding::fault::{Finding, Place, has_error, nearest, sort_findings};
-use crate::finding::source::SourceText;
-use std::cell::RefCell;
+use crate::finding::fault::{Finding, Place, did_you_mean, quoted};
+use crate::finding::page::Page;
 use std::collections::BTreeSet;
 use std::ops::Range;
 use toml::Spanned;
 use toml::de::{DeTable, DeValue};
-
-/// After so many findings in one file the rest is left out (our choice): nobody mends more in one go, and a file of
-/// garbage must not take minutes.
-const MOST_FINDINGS: usize = 200;
-
-/// After so many faults in the TOML itself the rest is left out: most follow from the first.
-const MOST_SYNTAX_FINDINGS: usize = 10;
-
-/// The codes under which a room reports faults that any table can have.
-#[derive(Debug)]
-pub struct TableCodes {
-    /// The text is not TOML.
-    pub syntax: &'static str,
-    /// A key stands twice in one table.
-    pub duplicate_key: &'static str,
-    /// A key that the table does not have.
-    pub unknown_key: &'static str,
-    /// A key that the table must have.
-    pub missing_key: &'static str,
-    /// A number where a text should be, and the like.
-    pub wrong_type: &'static str,
-    /// A quantity without its unit.
-    pub no_unit: &'static str,
-    /// A value that cannot be read, or is out of range.
-    pub bad_value: &'static str,
-    /// A word that is not one of those allowed.
-    pub unknown_word: &'static str,
-    /// A time that cannot be read.
-    pub bad_time: &'static str,
-    /// A local time that the clock skips.
-    pub time_gap: &'static str,
-    /// A local time that the clock shows twice.
-    pub time_fold: &'static str,
-}
-
-/// One file being read: its text, its tables, and what was found wrong so far.
-#[derive(Debug)]
-pub struct Page<'s> {
-    source: &'s SourceText,
-    codes: &'static TableCodes,
-    table: Option<Spanned<DeTable<'s>>>,
-    findings: RefCell<Vec<Finding>>,
-}
-
-impl<'s> Page<'s> {
-    /// A file as a table; if it is not TOML the page has findings, and no keys.
-    ///
-    /// A key that stands twice is a finding too, but what stands first is read on.
-    #[must_use]
-    pub fn read(source: &'s SourceText, codes: &'static TableCodes) -> Page<'s> {
-        let (table, errors) = DeTable::parse_recoverable(source.text());
-        let mut page = Page { source, codes, table: None, findings: RefCell::new(Vec::new()) };
-        let mut is_readable = true;
-        for error in errors.iter().take(MOST_SYNTAX_FINDINGS) {
-            is_readable &= page.is_only_a_repeated_key(error);
-        }
-        page.table = is_readable.then_some(table);
-        page
-    }
-
-    fn is_only_a_repeated_key(&self, error: &toml::de::Error) -> bool {
-        let place = self.place(error.span().unwrap_or(0..0));
-        let is_repeated = error.message().contains("duplicate key");
-        self.report(if is_repeated {
-            let (found, allowed) = ("this key stands twice in one table", "each key may stand once");
-            Finding::error(self.codes.duplicate_key, place, found, allowed, "remove one of the two")
-        } else {
-            let found = error.message().lines().collect::<Vec<_>>().join("; ");
-            let to_do = "mend this first: the rest of this file was not checked";
-            Finding::error(self.codes.syntax, place, found, "", to_do)
-        });
-        is_repeated
-    }
-
-    /// The keys of the whole file; `None` if it is not TOML.
-    #[must_use]
-    pub fn keys(&self) -> Option<Keys<'_>> {
-        let table = self.table.as_ref()?.get_ref();
-        Some(Keys { page: self, table, span: 0..0, what: "this file", asked: BTreeSet::new() })
-    }
-
-    /// The place of some bytes of the file.
-    #[must_use]
-    pub fn place(&self, span: Range<usize>) -> Place {
-        // Counting columns costs time on a long line; once the page is full nobody sees the place.
-        if self.is_full() { self.source.line(1) } else { self.source.place(span) }
-    }
-
-    /// The codes of the room that reads.
-    #[must_use]
-    pub fn codes(&self) -> &'static TableCodes {
-        self.codes
-    }
-
-    /// Notes a finding.
-    pub fn report(&self, finding: Finding) {
-        if !self.is_full() {
-            self.findings.borrow_mut().push(finding);
-        }
-    }
-
-    /// All findings, in the order of the file.
-    #[must_use]
-    pub fn into_findings(self) -> Vec<Finding> {
-        let mut findings = self.findings.into_inner();
-        sort_findings(&mut findings);
-        findings
-    }
-
-    /// Whether an error was found so far.
-    #[must_use]
-    pub fn has_error(&self) -> bool {
-        has_error(&self.findings.borrow())
-    }
-
-    fn is_full(&self) -> bool {
-        self.findings.borrow().len() >= MOST_FINDINGS
-    }
-}
 
 /// One value of a page, with the key it stands under.
 #[derive(Clone, Copy, Debug)]
@@ -157,7 +37,7 @@ impl<'t> Item<'t> {
     /// The value as it is written, cut short if it is long.
     #[must_use]
     pub fn written(&self) -> String {
-        let text = self.page.source.text().get(self.value.span()).unwrap_or_default();
+        let text = self.page.text(self.value.span());
         let line = text.lines().next().unwrap_or_default();
         let short: String = line.chars().take(40).collect();
         if short.len() < text.len() { format!("{short} ...") } else { short }
@@ -189,7 +69,7 @@ impl<'t> Item<'t> {
     pub fn wrong_type(&self, wanted: &str) {
         let found = format!("{} = {} is {}", self.key, self.written(), self.kind());
         self.fault(
-            self.page.codes.wrong_type,
+            self.page.codes().wrong_type,
             found,
             format!("{} is {wanted}", self.key),
             "write it in this form",
@@ -199,7 +79,7 @@ impl<'t> Item<'t> {
     /// Reports that the value cannot be read or is out of range; `wanted` says what is allowed.
     pub fn bad_value(&self, found: impl Into<String>, wanted: &str) {
         let found = format!("{} = {}: {}", self.key, self.written(), found.into());
-        self.fault(self.page.codes.bad_value, found, wanted, "correct the value");
+        self.fault(self.page.codes().bad_value, found, wanted, "correct the value");
     }
 
     /// Whether it is a table.
@@ -254,7 +134,7 @@ impl<'t> Item<'t> {
     #[must_use]
     pub fn time_text(&self) -> Option<&'t str> {
         if self.value.get_ref().is_datetime() {
-            return self.page.source.text().get(self.value.span());
+            return Some(self.page.text(self.value.span()));
         }
         self.text()
     }
@@ -295,7 +175,7 @@ impl<'t> Item<'t> {
         if known.is_none() {
             let names: Vec<&str> = words.iter().map(|(word, _)| *word).collect();
             self.fault(
-                self.page.codes.unknown_word,
+                self.page.codes().unknown_word,
                 format!("{} = \"{text}\" is not a word used here", self.key),
                 format!("{} is one of {}", self.key, quoted(&names)),
                 did_you_mean(text, names, "use one of these words"),
@@ -359,6 +239,13 @@ pub struct Keys<'t> {
 }
 
 impl<'t> Keys<'t> {
+    /// The keys of a whole file; `None` if it is not TOML.
+    #[must_use]
+    pub fn of_file(page: &'t Page<'t>) -> Option<Keys<'t>> {
+        let table = page.table()?;
+        Some(Keys { page, table, span: 0..0, what: "this file", asked: BTreeSet::new() })
+    }
+
     /// Where the table stands: its heading, or its opening bracket.
     #[must_use]
     pub fn place(&self) -> Place {
@@ -390,7 +277,7 @@ impl<'t> Keys<'t> {
         if item.is_none() {
             let found = format!("{} lacks the key {key}", self.what);
             let to_do = format!("add {key} = ...");
-            self.page.report(Finding::error(self.page.codes.missing_key, self.place(), found, "", to_do));
+            self.page.report(Finding::error(self.page.codes().missing_key, self.place(), found, "", to_do));
         }
         item
     }
@@ -419,6 +306,12 @@ impl<'t> Keys<'t> {
         item.list()
     }
 
+    /// The values of a list under a key that may be left out; a single value may stand without brackets.
+    #[must_use]
+    pub fn one_or_more(&mut self, key: &'static str) -> Vec<Item<'t>> {
+        self.optional(key).map(|item| item.one_or_more()).unwrap_or_default()
+    }
+
     /// Which of some keys is there; a finding if none or more than one is.
     #[must_use]
     pub fn one_of(&mut self, keys: &[&'static str]) -> Option<Item<'t>> {
@@ -426,14 +319,14 @@ impl<'t> Keys<'t> {
         match present.as_slice() {
             [item] => return Some(*item),
             [] => self.page.report(Finding::error(
-                self.page.codes.missing_key,
+                self.page.codes().missing_key,
                 self.place(),
                 format!("{} says none of {}", self.what, keys.join(", ")),
                 "it must say exactly one of them",
                 "add one of these keys",
             )),
             [first, second, ..] => second.fault(
-                self.page.codes.unknown_key,
+                self.page.codes().unknown_key,
                 format!("{} says {} as well as {}", self.what, second.key, first.key),
                 format!("it must say exactly one of {}", keys.join(", ")),
                 "remove one of them",
@@ -469,7 +362,7 @@ impl<'t> Keys<'t> {
             }
             let known: Vec<&str> = self.asked.iter().copied().collect();
             self.page.report(Finding::error(
-                self.page.codes.unknown_key,
+                self.page.codes().unknown_key,
                 self.page.place(key.span()),
                 format!("{} has no key \"{name}\"", self.what),
                 format!("its keys are {}", known.join(", ")),
@@ -477,19 +370,4 @@ impl<'t> Keys<'t> {
             ));
         }
     }
-}
-
-/// "did you mean "pilot"?" if a known name is near the wrong one, else `otherwise`.
-#[must_use]
-pub fn did_you_mean<'a>(wrong: &str, known: impl IntoIterator<Item = &'a str>, otherwise: &str) -> String {
-    nearest(wrong, known).map_or_else(|| otherwise.to_owned(), |name| format!("did you mean \"{name}\"?"))
-}
-
-/// Names in quotation marks, with commas; a long list is cut with its count.
-#[must_use]
-pub fn quoted(names: &[&str]) -> String {
-    const MOST: usize = 20;
-    let shown: Vec<String> = names.iter().take(MOST).map(|name| format!("\"{name}\"")).collect();
-    let more = names.len().saturating_sub(MOST);
-    if more > 0 { format!("{} and {more} more", shown.join(", ")) } else { shown.join(", ") }
 }

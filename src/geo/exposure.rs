@@ -1,6 +1,7 @@
 //! How open a place lies to the wind, by direction.
 
 use crate::units::bearing::Bearing;
+use std::fmt;
 
 /// The four exposure classes for which WMO/TD-No. 1555 (Harper, Kepert and Ginger 2010) tabulates gust factors.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -35,6 +36,12 @@ impl ExposureClass {
             ExposureClass::OffSea => "off-sea",
             ExposureClass::AtSea => "at-sea",
         }
+    }
+}
+
+impl fmt::Display for ExposureClass {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        f.write_str(self.word())
     }
 }
 

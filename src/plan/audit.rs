@@ -7,6 +7,7 @@ use crate::plan::audit_people::people;
 use crate::plan::audit_record::record;
 use crate::plan::audit_times::times;
 use crate::plan::audit_water::water;
+use crate::plan::roles::GRACE;
 use crate::plan::sheet::{Breach, Plan, TaskLine, TaskState};
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
@@ -101,7 +102,7 @@ fn shape(line: &TaskLine, now: Moment, breaches: &mut Vec<Breach>) {
                     format!("from start to finish it takes {}, not {}", finish - start, line.takes),
                 );
             }
-            if line.state == TaskState::Planned && start < now {
+            if line.state == TaskState::Planned && start + GRACE < now {
                 say(
                     "audit-in-the-past",
                     format!("it is planned to start at {start}, before the plan's own time"),

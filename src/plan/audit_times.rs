@@ -4,7 +4,7 @@ use crate::plan::audit::{AuditInputs, breach};
 use crate::plan::sheet::{Breach, Plan, StageStatus, TaskLine, TaskState};
 use crate::record::situation::{Situation, Way};
 use crate::rules::limit::{Anchor, Binding};
-use crate::rules::stage::{Rules, Stage, Trigger};
+use crate::rules::stage::{Rules, Stage, StageDirection, Trigger};
 use crate::rules::task::{Leave, NotBefore};
 use crate::time::moment::{Minutes, Moment};
 use crate::units::chance::Chance;
@@ -169,7 +169,13 @@ fn releases(inputs: AuditInputs<'_>, task: &Task, line: &TaskLine, breaches: &mu
             })
             .collect(),
     };
-    if let Some(late) = times.into_iter().filter(|time| start < *time).max() {
+    // Work on the way up is done after the winds that stop it.
+    let winds = task.stops_at.iter().filter(|_| is_reopening(inputs, task));
+    let over = winds.filter_map(|wind| {
+        let answer = inputs.book.answer(&question_key(wind))?;
+        moment_of(answer.end_quantile(Chance::share(9, 10)))
+    });
+    if let Some(late) = times.into_iter().chain(over).filter(|time| start < *time).max() {
         let what = format!("it starts {} before it may", late - start);
         breaches.push(breach("audit-released-later", &line.id, what));
     }
@@ -182,7 +188,13 @@ fn deadlines(inputs: AuditInputs<'_>, task: &Task, line: &TaskLine, breaches: &m
     let hard = task.done_before.iter().filter(|deadline| deadline.binds == Binding::Hard);
     let bounds =
         hard.filter_map(|deadline| anchor_time(inputs, &deadline.anchor).map(|at| at - deadline.lead));
-    let stops = task.stops_at.iter().filter_map(|wind| inputs.book.usual_arrival(wind)).map(|a| a.at);
+    let is_after = is_reopening(inputs, task);
+    let stops = task
+        .stops_at
+        .iter()
+        .filter(|_| !is_after)
+        .filter_map(|wind| inputs.book.usual_arrival(wind))
+        .map(|a| a.at);
     if let Some(bound) = bounds.chain(stops).min() {
         if finish > bound && !is_ordered {
             let what = format!("it is finished {} after its hard deadline", finish - bound);
@@ -201,6 +213,11 @@ fn deadlines(inputs: AuditInputs<'_>, task: &Task, line: &TaskLine, breaches: &m
         let what = format!("it starts {} after its latest start", start - latest);
         breaches.push(breach("audit-after-latest-start", &line.id, what));
     }
+}
+
+fn is_reopening(inputs: AuditInputs<'_>, task: &Task) -> bool {
+    let gate = task.gate.and_then(|position| inputs.rules.stages.get(position));
+    gate.is_some_and(|stage| stage.direction == StageDirection::Reopening)
 }
 
 /// The chance that a line shows is that of the odds.

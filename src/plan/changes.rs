@@ -1,7 +1,11 @@
 //! What changed between two plans, and why.
 
-use crate::plan::sheet::StageStatus;
+use crate::plan::news::news_words;
+use crate::plan::sheet::{Arrival, Plan, StageLine, StageStatus, TaskLine, TaskState};
+use crate::record::event::Event;
+use crate::record::mention::{MentionKind, mentions};
 use crate::time::moment::{Minutes, Moment};
+use std::collections::BTreeMap;
 
 /// Everything that differs between an earlier plan and a later one.
 #[derive(Clone, Debug, PartialEq)]
@@ -113,4 +117,194 @@ pub enum Turn {
     Started,
     /// It was done.
     Done,
+}
+
+/// What differs between two plans of one port, and why; `events` is the port's whole record.
+#[must_use]
+pub fn changes_between(earlier: &Plan, later: &Plan, events: &[Event]) -> Changes {
+    let mut between: Vec<&Event> = events
+        .iter()
+        .filter(|event| {
+            let known = Moment::at_or_after(event.known);
+            earlier.now < known && known <= later.now
+        })
+        .collect();
+    between.sort_by_key(|event| event.known);
+    let teller = Teller { earlier, later, between };
+    let before: BTreeMap<&str, &TaskLine> =
+        earlier.tasks.iter().map(|line| (line.id.as_str(), line)).collect();
+    let pairs = || later.tasks.iter().filter_map(|line| before.get(line.id.as_str()).map(|old| (*old, line)));
+    let mut turned: Vec<TaskTurned> = pairs().filter_map(|(old, new)| teller.turned(old, new)).collect();
+    turned.sort_by(|a, b| (a.turn, &a.id).cmp(&(b.turn, &b.id)));
+    Changes {
+        from: earlier.now,
+        to: later.now,
+        news: teller.between.iter().map(|event| news_words(event)).collect(),
+        arrivals: teller.arrivals(),
+        stages: teller.stages(),
+        moved: pairs().filter_map(|(old, new)| teller.moved(old, new)).collect(),
+        turned,
+    }
+}
+
+struct Teller<'a> {
+    earlier: &'a Plan,
+    later: &'a Plan,
+    between: Vec<&'a Event>,
+}
+
+impl Teller<'_> {
+    fn arrivals(&self) -> Vec<ArrivalMoved> {
+        let mut moved = Vec::new();
+        let same = |a: &&Arrival, b: &Arrival| {
+            a.place == b.place && (a.wind.speed.get() - b.wind.speed.get()).abs() < 0.05
+        };
+        for new in &self.later.arrivals {
+            let old = self.earlier.arrivals.iter().find(|old| same(old, new));
+            let mut say = |is_adopted, from: Option<Moment>, to: Option<Moment>, cause: String| {
+                if from != to {
+                    let (place, wind) = (new.place_name.clone(), new.wind.to_string());
+                    moved.push(ArrivalMoved { place, wind, is_adopted, from, to, cause });
+                }
+            };
+            let ordered = self.said_about(MentionKind::Place, &new.place);
+            say(true, old.and_then(|old| old.adopted), new.adopted, ordered.unwrap_or_default());
+            say(false, old.and_then(|old| old.computed), new.computed, self.advisory_words());
+        }
+        moved
+    }
+
+    /// "advisory 12": what made the computed arrivals move.
+    fn advisory_words(&self) -> String {
+        let number = self.later.advisory.as_ref().map(|advisory| match advisory.number {
+            Some(number) => format!("advisory {number}"),
+            None => advisory.file.clone(),
+        });
+        number.unwrap_or_else(|| String::from("no advisory"))
+    }
+
+    fn stages(&self) -> Vec<StageMoved> {
+        let changed = |(old, new): (&StageLine, &StageLine)| {
+            if old.due == new.due && old.status == new.status {
+                return None;
+            }
+            let ordered = self.said_about(MentionKind::Stage, &new.id);
+            let cause = ordered.unwrap_or_else(|| {
+                if old.due == new.due { String::from("the clock") } else { self.arrival_cause() }
+            });
+            Some(StageMoved {
+                id: new.id.clone(),
+                name: new.name.clone(),
+                from: old.due,
+                to: new.due,
+                was: old.status,
+                is: new.status,
+                cause,
+            })
+        };
+        let old = |new: &StageLine| self.earlier.stages.iter().find(|old| old.id == new.id);
+        self.later
+            .stages
+            .iter()
+            .filter_map(|new| old(new).map(|old| (old, new)))
+            .filter_map(changed)
+            .collect()
+    }
+
+    /// What moved the times that count from a wind: an order that adopted an arrival, else the advisory.
+    fn arrival_cause(&self) -> String {
+        let adopted = self
+            .later
+            .arrivals
+            .iter()
+            .zip(&self.earlier.arrivals)
+            .find(|(new, old)| new.place == old.place && new.adopted != old.adopted);
+        let by_order = adopted.and_then(|(new, _)| self.said_about(MentionKind::Place, &new.place));
+        by_order.unwrap_or_else(|| self.advisory_words())
+    }
+
+    fn moved(&self, old: &TaskLine, new: &TaskLine) -> Option<TaskMoved> {
+        let (from, to) = (old.start?, new.start?);
+        if from == to || new.state == TaskState::Done || new.state == TaskState::Started {
+            return None;
+        }
+        Some(TaskMoved { id: new.id.clone(), name: new.name.clone(), from, to, cause: self.cause(old, new) })
+    }
+
+    fn turned(&self, old: &TaskLine, new: &TaskLine) -> Option<TaskTurned> {
+        let turn = match (old.state, new.state) {
+            (was, TaskState::GivenUp) if was != TaskState::GivenUp => Turn::GivenUp,
+            (TaskState::GivenUp, TaskState::Planned | TaskState::Waiting) => Turn::Relieved,
+            (was, TaskState::Done) if was != TaskState::Done => Turn::Done,
+            (was, TaskState::Started) if was != TaskState::Started => Turn::Started,
+            (TaskState::Waiting | TaskState::NotNeeded, TaskState::Planned) => Turn::Added,
+            (TaskState::Planned | TaskState::GivenUp, TaskState::NotNeeded) => Turn::Dropped,
+            (TaskState::Planned, TaskState::Waiting) => Turn::Dropped,
+            _ if new.is_unreported && !old.is_unreported => Turn::Unreported,
+            _ if new.late_by > Minutes::ZERO && old.late_by <= Minutes::ZERO => Turn::Late,
+            _ => return None,
+        };
+        let cause = match turn {
+            Turn::GivenUp => {
+                new.given_up.as_ref().map(|g| g.why.clone()).unwrap_or_default() + &self.because_of(old, new)
+            }
+            Turn::Relieved
+            | Turn::Late
+            | Turn::Unreported
+            | Turn::Added
+            | Turn::Dropped
+            | Turn::Started
+            | Turn::Done => self.cause(old, new),
+        };
+        Some(TaskTurned { id: new.id.clone(), name: new.name.clone(), turn, cause })
+    }
+
+    /// What moved the deadline that a newly given-up task misses.
+    fn because_of(&self, old: &TaskLine, new: &TaskLine) -> String {
+        match (old.deadline, new.deadline) {
+            (was, Some(is)) if was != Some(is) => format!("; {} moved its deadline", self.arrival_cause()),
+            _ => String::new(),
+        }
+    }
+
+    /// Why a task is not where it was: what was said of it or its members first, then its stage, its deadline, and what
+    /// it waits for now.
+    fn cause(&self, old: &TaskLine, new: &TaskLine) -> String {
+        if let Some(said) = self.said_about(MentionKind::Task, &new.id) {
+            return said;
+        }
+        if new.is_unreported {
+            return String::from("its time passed without a report, so it is placed again");
+        }
+        let members = old.members.iter().flat_map(|(_, members)| members);
+        if let Some(said) =
+            members.into_iter().find_map(|member| self.said_about(MentionKind::Member, member))
+        {
+            return said;
+        }
+        let stage = old.if_declared.as_ref().or(new.if_declared.as_ref());
+        if let Some(stage) = stage
+            && let Some(moved) = self.stages().into_iter().find(|moved| moved.id == *stage)
+        {
+            return format!("stage {stage}: {}", moved.cause);
+        }
+        if let Some(last) = new.chain.last() {
+            return last.what.clone();
+        }
+        if old.deadline != new.deadline {
+            return self.arrival_cause();
+        }
+        match (old.start, new.start) {
+            (Some(was), Some(is)) if is < was => {
+                String::from("it can go earlier now, and must for what waits for it")
+            }
+            _ => self.between.last().map_or_else(|| String::from("the clock"), |event| news_words(event)),
+        }
+    }
+
+    /// The last thing that was said of something between the two plans.
+    fn said_about(&self, kind: MentionKind, id: &str) -> Option<String> {
+        let about = |event: &&&Event| mentions(event).iter().any(|m| m.kind == kind && m.id == id);
+        self.between.iter().rev().find(about).map(|event| news_words(event))
+    }
 }

@@ -1,7 +1,7 @@
 //! From the engine's schedule to the lines of a plan: one for each task.
 
 use crate::arrival::odds::Answers;
-use crate::plan::chain::{chain_to_finish, chain_to_start};
+use crate::plan::chain::ChainWords;
 use crate::plan::draft::Draft;
 use crate::plan::roles::Role;
 use crate::plan::sheet::{GivenUp, Plan, TaskLine, TaskState};
@@ -96,6 +96,7 @@ fn blank(inputs: &LineInputs<'_>, task: &Task, role: &Role, times: &TaskTimes) -
             Role::Stands { .. } | Role::NotNeeded | Role::Cannot(_) => None,
         },
         is_unreported: is_unreported(inputs, task, role),
+        is_ordered: matches!(role, Role::Free { ordered: Some(_), .. }),
         cut: if is_cut { task.cut.as_ref().map(|cut| cut.price.clone()) } else { None },
         stands_in_for: match role {
             Role::NotNeeded | Role::Cannot(_) => None,
@@ -103,7 +104,10 @@ fn blank(inputs: &LineInputs<'_>, task: &Task, role: &Role, times: &TaskTimes) -
         },
         late_by: Minutes::ZERO,
         chain: Vec::new(),
-        chain_from: inputs.now,
+        chain_from: match role {
+            Role::Stands { start, .. } => *start,
+            Role::Free { .. } | Role::Waiting | Role::NotNeeded | Role::Cannot(_) => inputs.now,
+        },
         given_up: match role {
             Role::Cannot(why) => Some(GivenUp {
                 why: why.clone(),
@@ -148,8 +152,7 @@ fn fill(inputs: &LineInputs<'_>, line: &mut TaskLine, position: usize, role: &Ro
             }
             if matches!(role, Role::Free { .. }) {
                 line.latest_start = inputs.latest_starts.get(position).copied().flatten();
-                (line.chain_from, line.chain) =
-                    chain_to_start(inputs.work, inputs.port, inputs.draft, position);
+                (line.chain_from, line.chain) = words(inputs).to_start(position);
             }
         }
         Some(Outcome::GivenUp(given_up)) => {
@@ -176,7 +179,7 @@ fn told(
     given_up: &EngineGivenUp,
     deadline: Option<Moment>,
 ) -> GivenUp {
-    let (chain_from, chain) = chain_to_finish(inputs.work, inputs.port, inputs.draft, position);
+    let (chain_from, chain) = words(inputs).to_finish(position);
     let because = inputs
         .draft
         .stated
@@ -212,6 +215,10 @@ fn told(
         chain,
         chain_from,
     }
+}
+
+fn words<'a>(inputs: &LineInputs<'a>) -> ChainWords<'a> {
+    ChainWords { work: inputs.work, port: inputs.port, draft: inputs.draft }
 }
 
 fn task_id(inputs: &LineInputs<'_>, position: usize) -> String {

@@ -12,6 +12,8 @@ use crate::plan::sheet::{AdvisoryInForce, Plan};
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::rules::stage::Rules;
+use crate::schedule::latest::{Latest, Limits, latest};
+use crate::schedule::problem::Problem;
 use crate::schedule::search::Effort;
 use crate::time::moment::Moment;
 use crate::units::wind::Averaging;
@@ -75,7 +77,7 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
     };
     let made = draft_with_permitted(draft_inputs);
     let answers = forecast.map(|f| f.answers);
-    let latest_starts: Vec<Option<Moment>> = Vec::new();
+    let latest_starts = latest_starts(&made.stated.problem);
     let tasks = lines(LineInputs {
         port,
         rules,
@@ -108,6 +110,17 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
     }
     plan.breaches = audit(AuditInputs { port, rules, work, situation, book }, &plan);
     plan
+}
+
+/// The latest start of each task that keeps the hard deadlines; where nothing hard limits it, the soft ones.
+fn latest_starts(problem: &Problem) -> Vec<Option<Moment>> {
+    let by = |limits| latest(problem, limits, &[]).unwrap_or_default();
+    let start = |latest: &Latest| match latest {
+        Latest::By(ends) => Some(ends.start),
+        Latest::Unlimited | Latest::Never => None,
+    };
+    let soft = by(Limits::DeadlinesAndDues);
+    by(Limits::Deadlines).iter().zip(&soft).map(|(hard, soft)| start(hard).or_else(|| start(soft))).collect()
 }
 
 /// The plain plan, or the one with the fewest choices that the files permit if the plain one misses something.

@@ -13,6 +13,7 @@ pub mod fold;
 pub mod heads;
 pub mod lines;
 pub mod make;
+pub mod news;
 pub mod problem;
 pub mod relief;
 pub mod roles;

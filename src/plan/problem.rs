@@ -131,7 +131,9 @@ impl Stater<'_> {
             Role::Free { takes, ordered, is_unreported } => {
                 let way = self.way(task, *takes, *ordered);
                 let issued = if *is_unreported || ordered.is_some() { None } else { self.issued(task, &way) };
-                let release = times.release.unwrap_or(self.inputs.now).max(self.inputs.now);
+                let soonest =
+                    if *is_unreported { self.inputs.now.ceil_to(LEAST_MOVE) } else { self.inputs.now };
+                let release = times.release.unwrap_or(soonest).max(soonest);
                 Some(engine::Task { ways: vec![way], release, issued, ..base })
             }
             Role::Waiting | Role::NotNeeded | Role::Cannot(_) => None,

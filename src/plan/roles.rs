@@ -78,7 +78,10 @@ pub fn roles(inputs: RoleInputs<'_>) -> BTreeMap<NodeIndex, Role> {
         let Some(task) = inputs.work.task_at(index) else { continue };
         let own = own_role(&inputs, index, task);
         let role = match own {
-            Role::Free { .. } | Role::Waiting => after_predecessors(&inputs, index, &roles).unwrap_or(own),
+            Role::Free { takes, .. } => after_predecessors(&inputs, index, &roles)
+                .or_else(|| beginning(&inputs, (index, task), takes, &roles))
+                .unwrap_or(own),
+            Role::Waiting => after_predecessors(&inputs, index, &roles).unwrap_or(own),
             Role::Stands { .. } | Role::NotNeeded | Role::Cannot(_) => own,
         };
         roles.insert(index, role);
@@ -119,11 +122,53 @@ fn own_role(inputs: &RoleInputs<'_>, index: NodeIndex, task: &Task) -> Role {
         .as_ref()
         .filter(|_| !inputs.adjustments.lifted.contains(&task.id))
         .map(|told| Moment::at_or_after(told.value));
+    Role::Free { takes, ordered, is_unreported: is_unreported(inputs, index, task) }
+}
+
+/// How long after its planned start a task may still be taken to begin as planned. Our choice: people start work first
+/// and report it then.
+pub const GRACE: Minutes = Minutes::new(15);
+
+/// A task whose planned start has passed by more than the grace, without a report, and which nothing kept from starting.
+fn is_unreported(inputs: &RoleInputs<'_>, index: NodeIndex, task: &Task) -> bool {
     let planned = inputs.before.and_then(|plan| plan.task(&task.id));
-    let is_unreported = planned.is_some_and(|line| {
-        line.state == TaskState::Planned && line.start.is_some_and(|start| start < inputs.now)
-    }) && inputs.carried_out.is_none();
-    Role::Free { takes, ordered, is_unreported }
+    let has_passed = planned.is_some_and(|line| {
+        line.state == TaskState::Planned && line.start.is_some_and(|start| start + GRACE < inputs.now)
+    });
+    has_passed && inputs.carried_out.is_none() && gate_is_open(inputs, index)
+}
+
+fn gate_is_open(inputs: &RoleInputs<'_>, index: NodeIndex) -> bool {
+    inputs.timed.tasks.get(&index).is_some_and(|times| times.if_declared.is_none())
+}
+
+/// A task whose planned start is now, or passed within the grace, stands: it is just being begun. Only if its gate is
+/// open, and all that it waits for is over.
+fn beginning(
+    inputs: &RoleInputs<'_>,
+    (index, task): (NodeIndex, &Task),
+    takes: Minutes,
+    roles: &BTreeMap<NodeIndex, Role>,
+) -> Option<Role> {
+    let line = inputs.before?.task(&task.id)?;
+    let start = line.start.filter(|start| *start < inputs.now && inputs.now <= *start + GRACE)?;
+    let is_ready = line.state == TaskState::Planned
+        && inputs.carried_out.is_none()
+        && gate_is_open(inputs, index)
+        && inputs.timed.tasks.get(&index).is_some_and(|times| times.release.is_some_and(|r| r <= inputs.now));
+    let over =
+        |edge: petgraph::graph::EdgeReference<'_, Edge>| match (edge.weight(), roles.get(&edge.source())) {
+            (Edge::Link { .. }, Some(Role::Stands { finish, .. })) => *finish <= start,
+            (Edge::Link { .. }, Some(Role::NotNeeded)) | (Edge::Gate | Edge::Counts | Edge::Before, _) => {
+                true
+            }
+            (Edge::Link { .. }, _) => false,
+        };
+    if !is_ready || !inputs.work.graph.edges_directed(index, Direction::Incoming).all(over) {
+        return None;
+    }
+    let members = line.members.iter().flat_map(|(_, members)| members.clone()).collect();
+    Some(Role::Stands { start, finish: start + takes, state: TaskState::Planned, members })
 }
 
 fn done(inputs: &RoleInputs<'_>, task: &Task, recorded: &Recorded, finish: Moment) -> Role {

@@ -187,6 +187,8 @@ pub struct TaskLine {
     pub caught: Option<Chance>,
     /// It can start only when this stage is declared, which has not happened.
     pub if_declared: Option<String>,
+    /// Its start is fixed by order: shown to the minute and never moved.
+    pub is_ordered: bool,
     /// Its planned time has passed without a report.
     pub is_unreported: bool,
     /// The shorter way is taken: its price.

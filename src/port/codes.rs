@@ -1,7 +1,6 @@
 //! The codes of faults in a port's own files; `rules/README.md` explains each.
 
-use crate::finding::table::TableCodes;
-use crate::port::kind::Kind;
+use crate::finding::page::TableCodes;
 
 /// Faults that any table can have.
 pub static TABLE: TableCodes = TableCodes {
@@ -44,17 +43,7 @@ pub const OTHER_DATUM: &str = "port-other-datum";
 pub const BAD_TIDE: &str = "port-bad-tide";
 /// Something a thing has for itself that is neither a count, a time span, a time nor a class.
 pub const BAD_OWN_VALUE: &str = "port-bad-own-value";
-
-/// An id that nothing of this kind has.
-#[must_use]
-pub fn unknown(kind: Kind) -> &'static str {
-    match kind {
-        Kind::Place => "port-unknown-place",
-        Kind::Berth => "port-unknown-berth",
-        Kind::Ship => "port-unknown-ship",
-        Kind::Plant => "port-unknown-plant",
-        Kind::Pool => "port-unknown-pool",
-        Kind::Member => "port-unknown-member",
-        Kind::Channel => "port-unknown-channel",
-    }
-}
+/// A place that port.toml does not list.
+pub const UNKNOWN_PLACE: &str = "port-unknown-place";
+/// A berth that berths.toml does not list.
+pub const UNKNOWN_BERTH: &str = "port-unknown-berth";

@@ -1,8 +1,9 @@
 //! The files of a port, and the port they describe.
 
 use crate::finding::fault::{Finding, has_error, nearest, sort_findings};
+use crate::finding::page::Page;
 use crate::finding::source::SourceText;
-use crate::finding::table::{Item, Keys, Page};
+use crate::finding::table::{Item, Keys};
 use crate::port::codes;
 use crate::port::fleet::{Berth, Plant, Ship};
 use crate::port::harbour::{Place, Port};
@@ -110,12 +111,17 @@ fn read_ids(pages: &BTreeMap<&str, Page<'_>>) -> Known {
             }
             continue;
         };
-        let Some(mut file) = page.keys() else {
+        let Some(mut file) = Keys::of_file(page) else {
             known.could_not_read(kind);
             continue;
         };
-        // Headings of the wrong form are reported when the things themselves are read.
-        let things = file.optional(heading).filter(Item::is_list).map(|item| item.list()).unwrap_or_default();
+        let heading_item = file.optional(heading);
+        if heading_item.is_some_and(|item| !item.is_list()) {
+            // Its wrong form is reported when the things themselves are read.
+            known.could_not_read(kind);
+            continue;
+        }
+        let things = heading_item.map(|item| item.list()).unwrap_or_default();
         for thing in things.iter().filter(|thing| thing.is_table()) {
             let Some(mut keys) = thing.keys(heading) else { continue };
             if let Some(id) = keys.optional("id") {
@@ -141,7 +147,7 @@ fn add_member(known: &mut Known, member: &Item<'_>) {
 
 fn read_things(pages: &BTreeMap<&str, Page<'_>>, known: Known) -> Draft {
     let mut files: BTreeMap<&str, Keys<'_>> =
-        pages.iter().filter_map(|(name, page)| Some((*name, page.keys()?))).collect();
+        pages.iter().filter_map(|(name, page)| Some((*name, Keys::of_file(page)?))).collect();
     let clock = files.get_mut("port.toml").and_then(read_clock);
     let clock_now = clock.as_ref();
     let port_file = files.get_mut("port.toml");

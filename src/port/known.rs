@@ -1,7 +1,7 @@
 //! Which ids a port's files hold, faulty or not, so that other files can be checked against them.
 
-use crate::finding::fault::Place;
-use crate::finding::table::{Item, did_you_mean, quoted};
+use crate::finding::fault::{Place, did_you_mean, quoted};
+use crate::finding::table::Item;
 use crate::port::codes;
 use crate::port::kind::Kind;
 use crate::text::quantity;
@@ -55,9 +55,9 @@ impl Known {
         );
     }
 
-    /// The id in `item` if one of this kind has it; else a finding with the room's `code` for it.
+    /// The id in `item` if one of this kind has it; else a finding with `code`.
     #[must_use]
-    pub fn refer(&self, item: &Item<'_>, kind: Kind, code: fn(Kind) -> &'static str) -> Option<String> {
+    pub fn refer(&self, item: &Item<'_>, kind: Kind, code: &'static str) -> Option<String> {
         let id = item.text()?;
         if let Some((known, known_kind, _)) = self.ids.get(&id.to_lowercase())
             && known == id
@@ -66,18 +66,13 @@ impl Known {
                 return Some(id.to_owned());
             }
             let found = format!("\"{id}\" is a {}, not a {}", known_kind.word(), kind.word());
-            item.fault(code(kind), found, self.listed(kind), "name one of these");
+            item.fault(code, found, self.listed(kind), "name one of these");
             return None;
         }
         if self.could_read(kind) {
             let otherwise = format!("correct the name, or add it to {}", kind.file());
             let to_do = did_you_mean(id, self.of_kind(kind), &otherwise);
-            item.fault(
-                code(kind),
-                format!("{} \"{id}\" is not listed", kind.word()),
-                self.listed(kind),
-                to_do,
-            );
+            item.fault(code, format!("{} \"{id}\" is not listed", kind.word()), self.listed(kind), to_do);
         }
         None
     }

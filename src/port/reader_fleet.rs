@@ -32,7 +32,7 @@ fn read_berth(item: &Item<'_>, known: &Known, clock: Option<&PortClock>) -> Opti
     let mut keys = item.keys("a berth")?;
     let id = keys.required("id").and_then(|item| item.as_text());
     let name = keys.required("name").and_then(|item| item.text());
-    let place = keys.required("place").and_then(|item| known.refer(&item, Kind::Place, codes::unknown));
+    let place = keys.required("place").and_then(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let operator = keys.text_or_empty("operator");
     let (tags, own) = read_tags_and_own(&mut keys, clock);
     keys.finish();
@@ -50,7 +50,7 @@ fn read_ship(item: &Item<'_>, known: &Known, clock: Option<&PortClock>) -> Optio
     let id = keys.required("id").and_then(|item| item.as_text());
     let name = keys.required("name").and_then(|item| item.text());
     let kind = keys.required("kind").and_then(|item| item.text());
-    let berth = keys.required("berth").and_then(|item| known.refer(&item, Kind::Berth, codes::unknown));
+    let berth = keys.required("berth").and_then(|item| known.refer(&item, Kind::Berth, codes::UNKNOWN_BERTH));
     let gross_tonnage = keys.required("gross_tonnage").and_then(|item| item.count(1, MOST_GROSS_TONNAGE));
     let length = keys.required("length").and_then(|item| quantity::metres(&item, 1.0, LONGEST_SHIP));
     let draught = keys.required("draught").and_then(|item| quantity::metres(&item, 0.1, DEEPEST_DRAUGHT));
@@ -84,7 +84,7 @@ fn read_piece(item: &Item<'_>, known: &Known, clock: Option<&PortClock>) -> Opti
     let id = keys.required("id").and_then(|item| item.as_text());
     let name = keys.required("name").and_then(|item| item.text());
     let kind = keys.required("kind").and_then(|item| item.text());
-    let berth = keys.required("berth").and_then(|item| known.refer(&item, Kind::Berth, codes::unknown));
+    let berth = keys.required("berth").and_then(|item| known.refer(&item, Kind::Berth, codes::UNKNOWN_BERTH));
     let (tags, own) = read_tags_and_own(&mut keys, clock);
     keys.finish();
     Some(Plant {

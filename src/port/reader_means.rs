@@ -33,7 +33,8 @@ fn read_pool(item: &Item<'_>, clock: Option<&PortClock>) -> Option<Pool> {
     let duty = keys.optional("duty").map(|item| read_duty(&item));
     let source = keys.text_or_empty("source");
     keys.finish();
-    let members = members.into_iter().collect::<Option<Vec<Member>>>()?;
+    let members =
+        members.into_iter().collect::<Option<Vec<Member>>>().filter(|members| !members.is_empty())?;
     let duty = match duty {
         Some(hours) => Some(hours?),
         None => None,
@@ -51,14 +52,14 @@ fn read_member(item: &Item<'_>, shifts: &[Shift], clock: Option<&PortClock>) -> 
     let id = keys.required("id").and_then(|item| item.as_text());
     let classes = keys.texts("classes");
     let own_shifts = read_shifts(&mut keys, clock);
-    let worked = keys.tables("worked").iter().map(|item| read_worked(item, clock)).collect::<Vec<_>>();
+    let worked = keys.one_or_more("worked").iter().map(|item| read_worked(item, clock)).collect::<Vec<_>>();
     keys.finish();
     let shifts = if own_shifts.is_empty() { shifts.to_vec() } else { own_shifts };
     Some(Member { id: id?.to_owned(), classes, shifts, worked: worked.into_iter().collect::<Option<_>>()? })
 }
 
 fn read_shifts(keys: &mut Keys<'_>, clock: Option<&PortClock>) -> Vec<Shift> {
-    keys.tables("shifts").iter().filter_map(|item| read_shift(item, clock)).collect()
+    keys.one_or_more("shifts").iter().filter_map(|item| read_shift(item, clock)).collect()
 }
 
 /// Two times of day are a shift of every day; two dates with times one that comes once.

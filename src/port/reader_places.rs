@@ -1,6 +1,7 @@
 //! Reads port.toml: the port's name and clock, the exercise, and its places.
 
-use crate::finding::table::{Item, Keys, did_you_mean, quoted};
+use crate::finding::fault::{did_you_mean, quoted};
+use crate::finding::table::{Item, Keys};
 use crate::geo::exposure::{Exposure, ExposureClass, ExposureSector};
 use crate::geo::position::Position;
 use crate::geo::position_text::parse_position;
@@ -54,7 +55,7 @@ pub fn read_head(file: &mut Keys<'_>, known: &Known) -> Option<Head> {
     let authority = keys.required("authority").and_then(|item| item.text());
     let official_source = keys.required("official_source").and_then(|item| item.text());
     let reference =
-        keys.required("reference").and_then(|item| known.refer(&item, Kind::Place, codes::unknown));
+        keys.required("reference").and_then(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let invented = keys.text_or_empty("invented");
     let _ = keys.text_or_empty("source");
     keys.finish();
@@ -105,7 +106,7 @@ fn read_place<'t>(item: &Item<'t>, known: &Known) -> Option<(Place, Option<Item<
     let position = keys.required("position").and_then(|item| read_position(&item));
     let exposure = keys.required("exposure").and_then(|item| read_exposure(&item));
     let counts_item = keys.optional("counts_from");
-    let counts_from = counts_item.map(|item| known.refer(&item, Kind::Place, codes::unknown));
+    let counts_from = counts_item.map(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let _ = keys.text_or_empty("source");
     keys.finish();
     let id = id?;
@@ -140,7 +141,7 @@ fn read_exposure(item: &Item<'_>) -> Option<Exposure> {
     }
     let mut keys = item.keys("an exposure")?;
     let otherwise = keys.required("otherwise").and_then(|item| read_class(&item));
-    let sectors: Vec<Option<ExposureSector>> = keys.tables("sectors").iter().map(read_sector).collect();
+    let sectors: Vec<Option<ExposureSector>> = keys.one_or_more("sectors").iter().map(read_sector).collect();
     keys.finish();
     Some(Exposure { otherwise: otherwise?, sectors: sectors.into_iter().collect::<Option<Vec<_>>>()? })
 }

@@ -1,6 +1,7 @@
 //! Reads the channels of water.toml.
 
-use crate::finding::table::{Item, Keys, did_you_mean, quoted};
+use crate::finding::fault::{did_you_mean, quoted};
+use crate::finding::table::{Item, Keys};
 use crate::port::codes;
 use crate::port::water::{Channel, ChannelClass};
 use crate::text::quantity;

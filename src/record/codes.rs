@@ -1,6 +1,6 @@
 //! The codes of faults in the record, and what each means.
 
-use crate::finding::table::TableCodes;
+use crate::finding::page::TableCodes;
 
 /// Faults that any table can have.
 pub static TABLE: TableCodes = TableCodes {

@@ -1,8 +1,9 @@
 //! Reads the record as people write it: `events.toml`, one table an event.
 
 use crate::finding::fault::{Finding, sort_findings};
+use crate::finding::page::Page;
 use crate::finding::source::SourceText;
-use crate::finding::table::{Item, Keys, Page};
+use crate::finding::table::{Item, Keys};
 use crate::record::codes;
 use crate::record::doubt::doubts;
 use crate::record::event::{Event, Retracted, What};
@@ -63,7 +64,7 @@ const RETRACTED: [(&str, Option<Retracted>); 5] = [
 #[must_use]
 pub fn read_events(source: &SourceText, clock: Option<&PortClock>) -> (Vec<Event>, Vec<Finding>) {
     let page = Page::read(source, &codes::TABLE);
-    let mut events = page.keys().map(|file| events_of(file, clock)).unwrap_or_default();
+    let mut events = Keys::of_file(&page).map(|file| events_of(file, clock)).unwrap_or_default();
     let doubtful = doubts(&events, clock);
     events.sort_by_key(|event| event.known);
     let mut findings = page.into_findings();

@@ -1,6 +1,6 @@
 //! The codes of faults in a port's rules and tasks; `rules/README.md` explains each.
 
-use crate::finding::table::TableCodes;
+use crate::finding::page::TableCodes;
 use crate::port::kind::Kind;
 
 /// Faults that any table can have.
@@ -61,8 +61,7 @@ pub fn unknown(kind: Kind) -> &'static str {
         Kind::Berth => "rules-unknown-berth",
         Kind::Ship => "rules-unknown-ship",
         Kind::Plant => "rules-unknown-plant",
-        Kind::Pool => "rules-unknown-pool",
-        Kind::Member => "rules-unknown-member",
+        Kind::Pool | Kind::Member => "rules-unknown-pool",
         Kind::Channel => "rules-unknown-channel",
     }
 }

@@ -1,7 +1,7 @@
 //! What the readers of rules and tasks check against: the port, the stages' ids, and how winds are meant.
 
-use crate::finding::fault::Place;
-use crate::finding::table::{Item, did_you_mean, quoted};
+use crate::finding::fault::{Place, did_you_mean, quoted};
+use crate::finding::table::Item;
 use crate::port::folder::Draft;
 use crate::rules::codes;
 use crate::text::quantity;

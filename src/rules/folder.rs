@@ -1,8 +1,9 @@
 //! The files of a port's rules and tasks, and the rules they describe.
 
 use crate::finding::fault::{Finding, has_error, sort_findings};
+use crate::finding::page::Page;
 use crate::finding::source::SourceText;
-use crate::finding::table::{Keys, Page};
+use crate::finding::table::Keys;
 use crate::port::folder::{Draft, Folder, read_draft};
 use crate::port::harbour::Port;
 use crate::rules::codes;
@@ -50,8 +51,8 @@ fn missing_file(name: &str) -> Finding {
 }
 
 fn read_pages(rules: Option<&Page<'_>>, tasks: Option<&Page<'_>>, draft: &Draft) -> Option<Rules> {
-    let mut rules_file = rules.and_then(Page::keys);
-    let mut tasks_file = tasks.and_then(Page::keys);
+    let mut rules_file = rules.and_then(Keys::of_file);
+    let mut tasks_file = tasks.and_then(Keys::of_file);
     let mut names = Names::none(rules_file.is_some());
     if let Some(file) = &mut rules_file {
         note_ids(&mut names, Sort::Stage, "stage", file);

@@ -1,6 +1,7 @@
 //! Reads amounts that a template states, or that each thing has for itself.
 
-use crate::finding::table::{Item, quoted};
+use crate::finding::fault::quoted;
+use crate::finding::table::Item;
 use crate::port::fleet::OwnValue;
 use crate::rules::codes;
 use crate::rules::reader_pick::Thing;

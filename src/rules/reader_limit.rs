@@ -67,7 +67,7 @@ fn read_where(item: &Item<'_>, desk: &Desk<'_>) -> Option<String> {
         let id = item.as_text()?;
         return desk.draft.berths.iter().find(|berth| berth.id == id).map(|berth| berth.place.clone());
     }
-    known.refer(item, Kind::Place, codes::unknown)
+    known.refer(item, Kind::Place, codes::unknown(Kind::Place))
 }
 
 /// `{ chance = "10 %" }`, `{ earliest = { at_least = "20 %" } }` or `{ likely = { at_least = "20 %" } }`.

@@ -1,6 +1,7 @@
 //! Reads what a task holds: people, craft and machines; and the water and channel it needs.
 
-use crate::finding::table::{Item, Keys, did_you_mean, quoted};
+use crate::finding::fault::{did_you_mean, quoted};
+use crate::finding::table::{Item, Keys};
 use crate::port::folder::Draft;
 use crate::port::kind::Kind;
 use crate::port::means::Pool;
@@ -29,8 +30,9 @@ pub fn read_needs(
 
 fn read_need(item: &Item<'_>, things: Option<&[Thing<'_>]>, desk: &Desk<'_>) -> Option<NeedSpec> {
     let mut keys = item.keys("a need")?;
-    let pool =
-        keys.required("pool").and_then(|item| desk.draft.known.refer(&item, Kind::Pool, codes::unknown));
+    let pool = keys
+        .required("pool")
+        .and_then(|item| desk.draft.known.refer(&item, Kind::Pool, codes::unknown(Kind::Pool)));
     let count_item = keys.required("count");
     let count = count_item.and_then(|item| read_amount(&item, OwnSort::Count, things, read_count));
     let class_item = keys.optional("class");
@@ -134,7 +136,7 @@ pub fn read_tide(
     let mut keys = item.keys("a tide")?;
     let channel = keys
         .required("channel")
-        .and_then(|item| desk.draft.known.refer(&item, Kind::Channel, codes::unknown));
+        .and_then(|item| desk.draft.known.refer(&item, Kind::Channel, codes::unknown(Kind::Channel)));
     let (from, until) = read_part(&mut keys, ("from", "until"), takes);
     keys.finish();
     if !desk.draft.has_tide && desk.draft.known.could_read(Kind::Channel) {
@@ -178,7 +180,7 @@ pub fn read_passage(item: &Item<'_>, takes: Option<Minutes>, desk: &Desk<'_>) ->
     let mut keys = item.keys("a passage")?;
     let channel = keys
         .required("channel")
-        .and_then(|item| desk.draft.known.refer(&item, Kind::Channel, codes::unknown));
+        .and_then(|item| desk.draft.known.refer(&item, Kind::Channel, codes::unknown(Kind::Channel)));
     let outbound = keys.required("direction").and_then(|item| item.word(&[("out", true), ("in", false)]));
     let (enters, leaves) = read_part(&mut keys, ("enters", "leaves"), takes);
     keys.finish();

@@ -1,6 +1,7 @@
 //! Reads which ships, plant or berths a rule or a template is for.
 
-use crate::finding::table::{Item, Keys, quoted};
+use crate::finding::fault::quoted;
+use crate::finding::table::{Item, Keys};
 use crate::port::fleet::OwnValue;
 use crate::port::folder::Draft;
 use crate::port::kind::Kind;
@@ -87,7 +88,7 @@ fn read_common(keys: &mut Keys<'_>, draft: &Draft, kind: Kind) -> Option<Pick> {
 fn read_ids(keys: &mut Keys<'_>, key: &'static str, draft: &Draft, kind: Kind) -> Option<Vec<String>> {
     let Some(item) = keys.optional(key) else { return Some(Vec::new()) };
     let ids: Vec<Option<String>> =
-        item.list().iter().map(|item| draft.known.refer(item, kind, codes::unknown)).collect();
+        item.list().iter().map(|item| draft.known.refer(item, kind, codes::unknown(kind))).collect();
     ids.into_iter().collect()
 }
 

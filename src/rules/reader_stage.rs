@@ -58,7 +58,7 @@ fn read_stage(item: &Item<'_>, desk: &Desk<'_>) -> Option<Stage> {
     let name = keys.required("name").and_then(|item| item.text());
     let source = keys.text_or_empty("source");
     let triggers: Vec<Option<Trigger>> =
-        keys.tables("any").iter().map(|item| read_trigger(item, id, desk)).collect();
+        keys.one_or_more("any").iter().map(|item| read_trigger(item, id, desk)).collect();
     let after = read_links(&mut keys, false);
     let status = keys.optional("status").map(|item| read_status(&item)).unwrap_or_default();
     let direction = keys.optional("direction").map_or(Some(StageDirection::Closing), |item| {

@@ -7,7 +7,7 @@ use crate::time::moment::Minutes;
 use chrono::{DateTime, Utc};
 
 /// A task, or a template that makes one task for each ship, piece of plant or berth. An instance of a template is called
-/// "<thing>/<template>": "V01/sail".
+/// `<thing>/<template>`: "V01/sail".
 #[derive(Clone, Debug, PartialEq)]
 pub struct TaskSpec {
     /// Its id; for a template the part after the slash.

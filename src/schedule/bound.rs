@@ -1,6 +1,6 @@
 //! What no schedule can beat: each task's earliest start beside what is fixed alone, and the score that follows.
 
-use crate::schedule::model::{Model, NEVER, Standing};
+use crate::schedule::model::{Model, NEVER, Standing, last_in};
 use crate::schedule::outcome::{ClassScore, Score};
 use crate::schedule::place::Builder;
 use crate::schedule::problem::{IfGivenUp, LinkKind};
@@ -105,41 +105,36 @@ impl Bound {
     }
 
     /// By when each task should finish so that neither it nor anything that waits for it is later than it must be,
-    /// windows and members aside; [`NEVER`] where nothing asks for it.
+    /// members aside.
     pub fn wanted(&self, model: &Model) -> Vec<i64> {
-        let mut finish = vec![NEVER; model.tasks.len()];
+        let mut ends: Vec<(i64, i64)> = self.start.iter().copied().zip(self.finish.iter().copied()).collect();
         for task in model.in_turn.iter().rev() {
             let data = &model.tasks[*task];
-            if self.is_hopeless[*task] {
+            if self.is_hopeless[*task] || data.fixed.is_some() {
                 continue;
             }
             // A due time that cannot be met wants the least lateness there can be.
-            let mut wanted = data.deadline.min(data.due.max(self.finish[*task]));
+            let mut wanted = data.deadline.min(data.due.max(self.finish[*task])).min(model.horizon);
             let shortest = data.ways.iter().map(|way| way.takes).min().unwrap_or(0);
             for link in &model.leads[*task] {
-                let other = finish[link.other];
-                if other >= NEVER || model.tasks[link.other].fixed.is_some() {
+                if self.is_hopeless[link.other] || model.tasks[link.other].fixed.is_some() {
                     continue;
                 }
-                let others = model.tasks[link.other].ways.iter();
-                let latest = others
-                    .filter_map(|way| {
-                        Some((
-                            crate::schedule::model::last_in(&model.starts[way.starts], other - way.takes)?,
-                            way.takes,
-                        ))
-                    })
-                    .max();
-                let Some((start, takes)) = latest else { continue };
+                let (start, finish) = ends[link.other];
                 wanted = wanted.min(match link.kind {
                     LinkKind::FinishStart => start - link.lag,
                     LinkKind::StartStart => start - link.lag + shortest,
-                    LinkKind::FinishFinish => start + takes - link.lag,
-                    LinkKind::StartFinish => start + takes - link.lag + shortest,
+                    LinkKind::FinishFinish => finish - link.lag,
+                    LinkKind::StartFinish => finish - link.lag + shortest,
                 });
             }
-            finish[*task] = wanted.max(self.finish[*task]);
+            let last = data.ways.iter().filter_map(|way| {
+                let start = last_in(&model.starts[way.starts], wanted - way.takes)?;
+                Some((start, start + way.takes))
+            });
+            let (start, finish) = last.max().unwrap_or((wanted - shortest, wanted));
+            ends[*task] = (start.max(self.start[*task]), finish.max(self.finish[*task]));
         }
-        finish
+        ends.into_iter().map(|(_, finish)| finish).collect()
     }
 }

@@ -248,7 +248,7 @@ fn named_members(
     let is_matched = members.len() == way.needs.len()
         && members.iter().zip(&way.needs).all(|(named, need)| named.len() == need.count);
     // A fixed task may have been done with fewer or more people than its need says; only the needs must pair up.
-    let is_paired = matches!(at, Place::Fixed(_)) && members.len() == way.needs.len();
+    let is_paired = task.fixed.is_some() && members.len() == way.needs.len();
     if !is_matched && !is_paired {
         found.push(Fault::MembersDoNotMatch { at });
     }

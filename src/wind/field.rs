@@ -52,6 +52,8 @@ pub struct Vortex {
     pub max_wind_kt: f64,
     /// Reach of 34, 50, 64 kt in the quadrants NE, SE, SW, NW, n mi.
     pub reach_nmi: [[f64; 4]; 3],
+    /// The widest reach of 34 kt in any quadrant, n mi.
+    pub widest_nmi: f64,
     /// Exponent of the mean vortex of this strength.
     pub exponent: f64,
     /// Radius of greatest wind, n mi.
@@ -70,10 +72,12 @@ impl Vortex {
     ) -> Vortex {
         let mean = ratios[0].iter().sum::<f64>() / 4.0;
         let mean = if mean > 0.0 { mean } else { 1.0 };
+        let reach_nmi = realised_reach(ratios, forecast_kt, wind_kt, latitude, size);
         Vortex {
             centre,
             max_wind_kt: wind_kt,
-            reach_nmi: realised_reach(ratios, forecast_kt, wind_kt, latitude, size),
+            reach_nmi,
+            widest_nmi: reach_nmi[0].into_iter().fold(0.0, f64::max),
             exponent: rankine_exponent(wind_kt, latitude).max(LEAST_EXPONENT),
             core_nmi: mean * size * radius_of_greatest_wind_nmi(wind_kt, latitude),
         }
@@ -93,6 +97,7 @@ impl Vortex {
             centre: plus(self.centre, s, plus(next.centre, -1.0, self.centre)),
             max_wind_kt: mix(self.max_wind_kt, next.max_wind_kt),
             reach_nmi,
+            widest_nmi: mix(self.widest_nmi, next.widest_nmi),
             exponent: mix(self.exponent, next.exponent),
             core_nmi: mix(self.core_nmi, next.core_nmi),
         }
@@ -154,6 +159,7 @@ mod tests {
             centre: vector_of(latitude, -60.0),
             max_wind_kt: 100.0,
             reach_nmi: [[120.0; 4], [60.0; 4], [30.0; 4]],
+            widest_nmi: 120.0,
             exponent: 0.66,
             core_nmi: 20.0,
         }

@@ -1,7 +1,11 @@
 //! Wind: the track between forecast points, the vortex around it, and what a wind means at a place.
 
+pub mod averaging;
+pub mod beaufort;
 pub mod climatology;
+pub mod exposure;
 pub mod field;
+pub mod height;
 pub mod profile;
 pub mod sphere;
 pub mod structure;

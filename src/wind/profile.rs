@@ -30,10 +30,9 @@ pub fn around(quadrants: [f64; 4], bearing_degrees: f64) -> f64 {
 #[must_use]
 pub fn sector(bearing_degrees: f64) -> (usize, usize, f64) {
     let turned = (bearing_degrees - 45.0 + 360.0) / 90.0;
-    let whole = libm::floor(turned);
-    // A bearing of 0 to 360 makes 3.5 to 7.5 here; anything else is still brought into the four.
-    let from = (whole as usize) & 3;
-    (from, (from + 1) & 3, turned - whole)
+    // A bearing of 0 to 360 makes 3.5 to 7.5 here: the cast rounds down, and the mask turns 4..7 into 0..3.
+    let whole = turned as usize;
+    (whole & 3, (whole + 1) & 3, turned - whole as f64)
 }
 
 /// The vortex along one bearing.

@@ -6,6 +6,7 @@ use crate::rules::limit::{Anchor, Deadline, WindAt};
 use crate::rules::stage::{Rules, Trigger};
 use crate::units::speed::Knots;
 use crate::units::wind::{Averaging, WindLimit, standard_height};
+use crate::wind::exposure::open_sea_limit;
 use crate::work::graph::WorkGraph;
 use std::collections::BTreeMap;
 
@@ -48,8 +49,7 @@ pub fn questions(port: &Port, rules: &Rules, work: &WorkGraph, averaging: Averag
     for wind in winds(rules, work) {
         let key = question_key(wind);
         let Some(place) = port.place(&wind.place) else { continue };
-        let limit = wind.limit.speed;
-        let _ = averaging;
+        let limit = open_sea_limit(&place.exposure, &wind.limit, averaging).speed;
         asked.entry(key.clone()).or_insert(Question { key, position: place.position, limit });
     }
     asked.into_values().collect()

@@ -2,9 +2,9 @@
 
 use crate::record::situation::Situation;
 use crate::rules::limit::{Anchor, Binding, Deadline, WindAt};
-use crate::rules::stage::{Rules, Trigger};
+use crate::rules::stage::{Rules, StageDirection, Trigger};
 use crate::rules::task::NotBefore;
-use crate::time::moment::Moment;
+use crate::time::moment::{Minutes, Moment};
 use crate::units::chance::Chance;
 use crate::work::graph::{Task, WorkGraph};
 use crate::work::questions::question_key;
@@ -199,6 +199,10 @@ fn standing(rules: &Rules, stages: &[StageTimes], position: usize, now: Moment) 
     }
 }
 
+/// By how much tasks behind a stage that is due and not declared move on at a time: what people were told should not
+/// change every minute. Our choice, the same as the least move of a plan.
+const STEP: Minutes = Minutes::new(10);
+
 struct Clockwork<'a> {
     rules: &'a Rules,
     book: &'a ArrivalBook<'a>,
@@ -216,14 +220,31 @@ impl Clockwork<'_> {
                 .filter_map(|deadline| self.bound(deadline))
                 .min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)))
         };
-        let stop = task.stops_at.iter().filter_map(|wind| self.stop(wind));
+        // Work on the way up is done after the wind: its limits hold it back instead of cutting it off.
+        let is_after = self.is_reopening(task);
+        let stop = task.stops_at.iter().filter(|_| !is_after).filter_map(|wind| self.stop(wind));
         let deadline = bounds(Binding::Hard)
             .into_iter()
             .chain(stop)
             .min_by(|a, b| (a.at, &a.because).cmp(&(b.at, &b.because)));
         let (gate, if_declared) = self.gate(task);
-        let release = gate.and_then(|gate| self.not_before(task).map(|times| times.max(gate)));
-        TaskTimes { release, if_declared, deadline, due: bounds(Binding::Soft), risks: risks(task) }
+        let over = task.stops_at.iter().filter(|_| is_after).filter_map(|wind| self.over(wind));
+        let release = gate
+            .and_then(|gate| self.not_before(task).map(|times| times.max(gate)))
+            .map(|release| over.fold(release, Moment::max));
+        let risks = if is_after { Vec::new() } else { risks(task) };
+        TaskTimes { release, if_declared, deadline, due: bounds(Binding::Soft), risks }
+    }
+
+    fn is_reopening(&self, task: &Task) -> bool {
+        let gate = task.gate.and_then(|position| self.rules.stages.get(position));
+        gate.is_some_and(|stage| stage.direction == StageDirection::Reopening)
+    }
+
+    /// When a wind is over for good with 90 % chance; `None` if it never comes or the forecast ends first.
+    fn over(&self, wind: &WindAt) -> Option<Moment> {
+        let answer = self.book.answer(&question_key(wind))?;
+        moment_of(answer.end_quantile(ninety_percent()))
     }
 
     /// When the gate opens (now, if it stands open), and the stage that is still to be declared.
@@ -232,7 +253,9 @@ impl Clockwork<'_> {
         let Some(times) = self.stages.get(position) else { return (None, None) };
         match times.standing {
             Standing::Declared | Standing::Superseded => (Some(self.now), None),
-            Standing::DueNow | Standing::Later => (times.due.map(|due| due.max(self.now)), Some(position)),
+            // Waiting for the order, tasks move on with the clock, but only by whole steps.
+            Standing::DueNow => (Some(self.now.ceil_to(STEP)), Some(position)),
+            Standing::Later => (times.due, Some(position)),
             Standing::NotDue | Standing::Lifted => (None, Some(position)),
         }
     }

@@ -2,7 +2,7 @@
 //! engine.
 
 use snugdown::schedule::outcome::{ClassScore, Outcome, Placement, Root, Schedule, Score};
-use snugdown::schedule::problem::{Direction, IfGivenUp, LaneUse, LinkKind, Problem};
+use snugdown::schedule::problem::{IfGivenUp, LaneUse, LinkKind, Problem};
 use snugdown::time::moment::{Minutes, Moment};
 use snugdown::time::span::Span;
 
@@ -130,10 +130,12 @@ pub fn together(problem: &Problem, one: &Stand, other: &Stand) -> Vec<String> {
         }
     }
     let passage = |stand: &Stand| problem.tasks[stand.task].ways[stand.way].lane.map(|p| (p, stand.start));
-    if let (Some(a), Some(b)) = (passage(one), passage(other)) {
-        if a.0.lane == b.0.lane && !in_order(problem, a, b) && !in_order(problem, b, a) {
-            wrong.push(format!("tasks {} and {} are too close in a lane", one.task, other.task));
-        }
+    if let (Some(a), Some(b)) = (passage(one), passage(other))
+        && a.0.lane == b.0.lane
+        && !in_order(problem, a, b)
+        && !in_order(problem, b, a)
+    {
+        wrong.push(format!("tasks {} and {} are too close in a lane", one.task, other.task));
     }
     wrong
 }
@@ -141,15 +143,11 @@ pub fn together(problem: &Problem, one: &Stand, other: &Stand) -> Vec<String> {
 fn in_order(problem: &Problem, first: (LaneUse, Moment), second: (LaneUse, Moment)) -> bool {
     let lane = &problem.lanes[first.0.lane];
     let enters = second.1 + second.0.enter;
-    if is_same(first.0.direction, second.0.direction) {
+    if first.0.direction == second.0.direction {
         first.1 + first.0.enter + lane.spacing[first.0.class][second.0.class] <= enters
     } else {
         first.1 + first.0.leave + lane.clearance <= enters
     }
-}
-
-fn is_same(one: Direction, other: Direction) -> bool {
-    one == other
 }
 
 /// The holds of a task: pool, member, span.

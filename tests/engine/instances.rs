@@ -31,7 +31,7 @@ impl Dice {
         ((self.0 >> 33) as usize) % count.max(1)
     }
 
-    pub fn from_to(&mut self, from: i64, to: i64) -> i64 {
+    pub fn between(&mut self, from: i64, to: i64) -> i64 {
         from + self.below(usize::try_from(to - from + 1).unwrap_or(1)) as i64
     }
 
@@ -86,16 +86,16 @@ pub fn empty(horizon: Moment) -> Problem {
 pub fn random(seed: u64, most_tasks: usize) -> Problem {
     let dice = &mut Dice::new(seed);
     let mut problem = empty(slot(SLOTS));
-    for _ in 0..dice.from_to(1, 2) {
+    for _ in 0..dice.between(1, 2) {
         problem.windows.push(some_window(dice));
     }
-    for _ in 0..dice.from_to(1, 2) {
-        let members = (0..dice.from_to(1, 3)).map(|_| some_member(dice)).collect();
+    for _ in 0..dice.between(1, 2) {
+        let members = (0..dice.between(1, 3)).map(|_| some_member(dice)).collect();
         problem.pools.push(Pool { members });
     }
-    let spacing = (0..2).map(|_| (0..2).map(|_| slots(dice.from_to(0, 3))).collect()).collect();
-    problem.lanes.push(Lane { spacing, clearance: slots(dice.from_to(0, 1)) });
-    let count = dice.from_to(2, most_tasks as i64) as usize;
+    let spacing = (0..2).map(|_| (0..2).map(|_| slots(dice.between(0, 3))).collect()).collect();
+    problem.lanes.push(Lane { spacing, clearance: slots(dice.between(0, 1)) });
+    let count = dice.between(2, most_tasks as i64) as usize;
     for rank in 0..count {
         let mut new = some_task(dice, &problem);
         new.rank = rank as u32;
@@ -116,9 +116,9 @@ pub fn random(seed: u64, most_tasks: usize) -> Problem {
 }
 
 fn some_window(dice: &mut Dice) -> WindowSet {
-    let spans = (0..dice.from_to(1, 2)).filter_map(|_| {
-        let start = dice.from_to(0, SLOTS - 4);
-        Span::new(slot(start), slot(start + dice.from_to(3, SLOTS - 2)))
+    let spans = (0..dice.between(1, 2)).filter_map(|_| {
+        let start = dice.between(0, SLOTS - 4);
+        Span::new(slot(start), slot(start + dice.between(3, SLOTS - 2)))
     });
     WindowSet::from_spans(spans.collect::<Vec<_>>())
 }
@@ -127,10 +127,10 @@ fn some_member(dice: &mut Dice) -> Member {
     let available = if dice.is_so(2, 3) { WindowSet::always() } else { some_window(dice) };
     let duty = dice
         .is_so(1, 2)
-        .then(|| Duty { at_most: slots(dice.from_to(3, 7)), then_rest: slots(dice.from_to(1, 6)) });
+        .then(|| Duty { at_most: slots(dice.between(3, 7)), then_rest: slots(dice.between(1, 6)) });
     let worked = if dice.is_so(1, 5) {
-        let start = dice.from_to(-6, 3);
-        Span::new(slot(start), slot(start + dice.from_to(1, 4))).into_iter().collect()
+        let start = dice.between(-6, 3);
+        Span::new(slot(start), slot(start + dice.between(1, 4))).into_iter().collect()
     } else {
         vec![]
     };
@@ -146,7 +146,7 @@ fn some_way(dice: &mut Dice, problem: &Problem, takes: i64) -> Way {
             way.start_in.push(window);
         }
     }
-    for _ in 0..dice.from_to(0, 2) {
+    for _ in 0..dice.between(0, 2) {
         let pool = dice.below(problem.pools.len());
         let members = problem.pools[pool].members.len();
         let mut able: Vec<usize> = (0..members).filter(|_| dice.is_so(4, 5)).collect();
@@ -154,15 +154,15 @@ fn some_way(dice: &mut Dice, problem: &Problem, takes: i64) -> Way {
             able.reverse();
         }
         let count = if able.len() > 1 && dice.is_so(1, 4) { 2 } else { 1 };
-        let (before, after) = (slots(dice.from_to(0, 1)), slots(dice.from_to(0, 1)));
+        let (before, after) = (slots(dice.between(0, 1)), slots(dice.between(0, 1)));
         way.needs.push(Need { pool, count, able, before, after });
     }
     if dice.is_so(1, 3) {
-        let enter = dice.from_to(0, 1);
+        let enter = dice.between(0, 1);
         way.lane = Some(LaneUse {
             lane: 0,
             enter: slots(enter),
-            leave: slots(enter + dice.from_to(0, 2)),
+            leave: slots(enter + dice.between(0, 2)),
             direction: if dice.is_so(3, 4) { Direction::Out } else { Direction::In },
             class: dice.below(2),
         });
@@ -171,18 +171,18 @@ fn some_way(dice: &mut Dice, problem: &Problem, takes: i64) -> Way {
 }
 
 fn some_task(dice: &mut Dice, problem: &Problem) -> Task {
-    let takes = dice.from_to(0, 5);
+    let takes = dice.between(0, 5);
     let mut new = task(some_way(dice, problem, takes));
     if dice.is_so(1, 4) {
         let mut cut = some_way(dice, problem, (takes - 2).max(0));
-        cut.cost = dice.from_to(1, 9) as u32;
+        cut.cost = dice.between(1, 9) as u32;
         new.ways.push(cut);
     }
-    new.release = slot(dice.from_to(-2, 5));
-    new.deadline = dice.is_so(4, 5).then(|| slot(dice.from_to(takes + 1, SLOTS)));
-    new.due = dice.is_so(1, 3).then(|| slot(dice.from_to(takes, SLOTS)));
+    new.release = slot(dice.between(-2, 5));
+    new.deadline = dice.is_so(4, 5).then(|| slot(dice.between(takes + 1, SLOTS)));
+    new.due = dice.is_so(1, 3).then(|| slot(dice.between(takes, SLOTS)));
     new.class = dice.below(2) as u8;
-    new.weight = dice.from_to(0, 5) as u32;
+    new.weight = dice.between(0, 5) as u32;
     new
 }
 
@@ -198,7 +198,7 @@ fn some_link(dice: &mut Dice, after: usize) -> Link {
         before: dice.below(after),
         after,
         kind: kinds[dice.below(kinds.len())],
-        lag: slots(dice.from_to(-1, 2)),
+        lag: slots(dice.between(-1, 2)),
         if_given_up: if dice.is_so(1, 2) { IfGivenUp::GiveUpToo } else { IfGivenUp::StartAtDecision },
     }
 }
@@ -218,8 +218,8 @@ fn first_members(way: &Way) -> Vec<Vec<usize>> {
 fn some_fixed(dice: &mut Dice, problem: &mut Problem) {
     let which = dice.below(problem.tasks.len());
     let fixed = &mut problem.tasks[which];
-    let start = dice.from_to(-2, 8);
-    let finish = slot(start) + fixed.ways[0].takes + slots(dice.from_to(0, 1));
+    let start = dice.between(-2, 8);
+    let finish = slot(start) + fixed.ways[0].takes + slots(dice.between(0, 1));
     fixed.fixed = Some(Fixed { way: 0, start: slot(start), finish, members: first_members(&fixed.ways[0]) });
 }
 
@@ -229,7 +229,7 @@ fn some_issued(dice: &mut Dice, problem: &mut Problem) {
         let is_whole =
             members.iter().zip(&issued.ways[0].needs).all(|(named, need)| named.len() == need.count);
         if is_whole && dice.is_so(2, 3) {
-            issued.issued = Some(Issued { way: 0, start: slot(dice.from_to(-1, SLOTS - 4)), members });
+            issued.issued = Some(Issued { way: 0, start: slot(dice.between(-1, SLOTS - 4)), members });
         }
     }
 }

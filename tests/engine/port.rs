@@ -73,9 +73,9 @@ pub fn port(ships: usize, hours: i64, seed: u64) -> Problem {
 }
 
 fn add_ship(problem: &mut Problem, dice: &mut Dice, (ship, set, crane): (usize, usize, usize), hours: i64) {
-    let ready = Moment::from_epoch_minutes(dice.from_to(0, hours * 60 * 2 / 3));
+    let ready = Moment::from_epoch_minutes(dice.between(0, hours * 60 * 2 / 3));
     let first = problem.tasks.len();
-    let mut secure = way(dice.from_to(6, 16) * 15, vec![need(set + 2, 1, 0, 0)]);
+    let mut secure = way(dice.between(6, 16) * 15, vec![need(set + 2, 1, 0, 0)]);
     let mut cut = secure.clone();
     cut.takes = Minutes::new(60);
     cut.cost = 5;
@@ -99,7 +99,7 @@ fn add_ship(problem: &mut Problem, dice: &mut Dice, (ship, set, crane): (usize, 
     pin.whole_in.push(BEFORE_GALE);
     let end = Some(at(hours));
     let class = u8::from(ship % 4 != 0);
-    let weight = dice.from_to(1, 20) as u32;
+    let weight = dice.between(1, 20) as u32;
     let base = |ways: Vec<Way>| Task { release: ready, class, weight, ..task(ways[0].clone()) };
     problem.tasks.extend([
         Task { ways: vec![secure.clone(), cut.clone()], ..base(vec![secure]) },

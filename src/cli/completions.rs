@@ -1,0 +1,25 @@
+//! `snugdown completions`: what a shell completes.
+
+use crate::cli::args::Args as Whole;
+use crate::cli::exit::{Exit, Failure};
+use crate::cli::screen::show;
+use clap::{Args, CommandFactory};
+use clap_complete::{Shell, generate};
+
+/// What `completions` is asked.
+#[derive(Clone, Debug, Args)]
+pub struct CompletionsArgs {
+    /// The shell
+    pub shell: Shell,
+}
+
+/// Writes the completions.
+///
+/// # Errors
+/// [`Failure::Write`].
+pub fn run(args: &CompletionsArgs) -> Result<Exit, Failure> {
+    let mut script = Vec::new();
+    generate(args.shell, &mut Whole::command(), "snugdown", &mut script);
+    show(&String::from_utf8_lossy(&script))?;
+    Ok(Exit::Fits)
+}

@@ -1,0 +1,13 @@
+//! The command line: one file per command; reads the disk and the clock, and writes to the terminal.
+
+pub mod args;
+pub mod arrivals;
+pub mod check;
+pub mod clock;
+pub mod completions;
+pub mod exit;
+pub mod folder;
+pub mod load;
+pub mod man;
+pub mod run;
+pub mod screen;

@@ -1,0 +1,31 @@
+#!/usr/bin/env bash
+# Every test of the project. `bash tests/run.sh` is the usual run; `bash tests/run.sh all` adds the long runs and makes
+# the stored reference values again with the libraries they came from (needs Python 3 with pip).
+# An outside check whose tool is missing fails; none is skipped.
+set -euo pipefail
+cd "$(dirname "$0")/.."
+
+say() { printf '\n== %s\n' "$*"; }
+
+say "formatting"
+cargo fmt --all --check
+
+say "lints"
+cargo clippy --locked --all-targets -- -D warnings
+
+say "documentation"
+RUSTDOCFLAGS="-D warnings" cargo doc --locked --no-deps --document-private-items
+
+say "tests"
+cargo test --locked
+
+if [ "${1:-}" = all ]; then
+  say "outside references, made again"
+  bash tests/outside/run.sh
+  say "long runs"
+  SNUGDOWN_LONG=1 cargo test --locked --release -- long
+  say "benches"
+  cargo bench --locked
+fi
+
+say "all passed"
