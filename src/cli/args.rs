@@ -1,8 +1,11 @@
 //! What can be asked on the command line.
 
 use crate::cli::arrivals::ArrivalsArgs;
+use crate::cli::changes::ChangesArgs;
 use crate::cli::check::CheckArgs;
 use crate::cli::completions::CompletionsArgs;
+use crate::cli::now::NowArgs;
+use crate::cli::plan::PlanArgs;
 use clap::{Parser, Subcommand};
 
 /// From a tropical-cyclone forecast to a port's timed closure checklist.
@@ -41,6 +44,12 @@ Exit codes:
 pub enum Command {
     /// Look for faults in a port's files, all at once.
     Check(CheckArgs),
+    /// Make the whole plan.
+    Plan(PlanArgs),
+    /// Show what matters now, on one screen.
+    Now(NowArgs),
+    /// Say what moved since an earlier plan, and why.
+    Changes(ChangesArgs),
     /// Say when gale, storm and hurricane force arrive at places, and with what chance.
     Arrivals(ArrivalsArgs),
     /// Write a shell's completions to standard output.

@@ -45,6 +45,9 @@ pub enum Failure {
     /// A document cannot be put into JSON: exit code 1.
     #[error("cannot write JSON: {0}")]
     Json(#[from] serde_json::Error),
+    /// The fold left no plan, which a sound one never does: exit code 1.
+    #[error("no plan could be made")]
+    NoPlan,
     /// The command was called in a way that makes no sense: exit code 2.
     #[error("{0}")]
     Usage(String),
@@ -63,7 +66,7 @@ impl Failure {
     #[must_use]
     pub fn code(&self) -> ExitCode {
         ExitCode::from(match self {
-            Failure::Read { .. } | Failure::Write(_) | Failure::Json(_) => 1,
+            Failure::Read { .. } | Failure::Write(_) | Failure::Json(_) | Failure::NoPlan => 1,
             Failure::Usage(_) => 2,
             Failure::Input { .. } => 3,
         })

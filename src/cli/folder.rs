@@ -2,13 +2,12 @@
 
 use crate::advisory::read::LONGEST;
 use crate::cli::exit::Failure;
-use crate::finding::fault::{Finding, Place};
+use crate::finding::fault::Finding;
 use crate::finding::source::SourceText;
 use crate::port::folder::Folder;
 use std::fs::File;
 use std::io::{ErrorKind, Read, stdin};
 use std::path::{Component, Path, PathBuf};
-use std::string::FromUtf8Error;
 
 /// A file of a port that is longer than 1 MiB.
 pub const TOO_LONG: &str = "cli-file-too-long";
@@ -21,8 +20,10 @@ pub struct PortFolder {
     path: PathBuf,
     /// Its TOML files by name.
     pub files: Folder,
-    /// Files that could not be taken as text.
+    /// Files that are too long, or not all text.
     pub findings: Vec<Finding>,
+    /// Those that were too long to be read, by the name they are shown under.
+    pub unread: Vec<String>,
 }
 
 impl PortFolder {
@@ -31,17 +32,37 @@ impl PortFolder {
     /// # Errors
     /// [`Failure::Read`] if the folder or one of the files cannot be read.
     pub fn open(path: &Path) -> Result<PortFolder, Failure> {
-        let mut folder = PortFolder { path: path.to_owned(), files: Folder::new(), findings: Vec::new() };
+        let mut folder = PortFolder {
+            path: path.to_owned(),
+            files: Folder::new(),
+            findings: Vec::new(),
+            unread: Vec::new(),
+        };
         for name in toml_names(path)? {
             let shown = path.join(&name).display().to_string();
             let bytes =
                 read_file(&path.join(&name)).map_err(|error| Failure::Read { name: shown.clone(), error })?;
-            // A file that is no text is kept as an empty one, so that nobody reports it missing besides.
-            let (text, finding) = text_of(&shown, bytes);
-            folder.files.insert(name, SourceText::new(shown, text));
-            folder.findings.extend(finding);
+            folder.take(name, &shown, bytes);
         }
         Ok(folder)
+    }
+
+    fn take(&mut self, name: String, shown: &str, bytes: Vec<u8>) {
+        if bytes.len() > LONGEST {
+            // Kept as an empty file, so that nobody reports it missing besides.
+            self.unread.push(shown.to_owned());
+            self.findings.push(too_long(shown));
+            self.files.insert(name, SourceText::new(shown, ""));
+            return;
+        }
+        // What cannot be decoded is replaced, so that the rest of the file is looked at all the same.
+        let text = String::from_utf8_lossy(&bytes);
+        // Some editors begin a file with a byte order mark, which TOML does not know.
+        let source = SourceText::new(shown, text.strip_prefix('\u{feff}').unwrap_or(&text));
+        if let Err(error) = std::str::from_utf8(&bytes) {
+            self.findings.push(not_text(&source, error.valid_up_to()));
+        }
+        self.files.insert(name, source);
     }
 
     /// What a file within the folder is called for people.
@@ -119,35 +140,22 @@ fn toml_names(path: &Path) -> Result<Vec<String>, Failure> {
     Ok(names)
 }
 
-/// The text of a file; empty, with a finding, if it is none.
-fn text_of(shown: &str, bytes: Vec<u8>) -> (String, Option<Finding>) {
-    if bytes.len() > LONGEST {
-        let finding = Finding::error(
-            TOO_LONG,
-            SourceText::new(shown, "").line(1),
-            "the file is longer than 1 MiB",
-            "the files of a port are at most 1 MiB each",
-            "look whether it is the right file",
-        );
-        return (String::new(), Some(finding));
-    }
-    match String::from_utf8(bytes) {
-        // Some editors begin a file with a byte order mark, which TOML does not know.
-        Ok(text) => (text.strip_prefix('\u{feff}').unwrap_or(&text).to_owned(), None),
-        Err(error) => (String::new(), Some(not_text(shown, &error))),
-    }
+fn too_long(shown: &str) -> Finding {
+    Finding::error(
+        TOO_LONG,
+        SourceText::new(shown, "").line(1),
+        "the file is longer than 1 MiB",
+        "the files of a port are at most 1 MiB each",
+        "look whether it is the right file",
+    )
 }
 
-fn not_text(shown: &str, error: &FromUtf8Error) -> Finding {
-    let good = error.utf8_error().valid_up_to();
-    let text = String::from_utf8_lossy(error.as_bytes().get(..good).unwrap_or_default()).into_owned();
-    // The text is not kept, so the place says line and column, and marks no byte.
-    let place = Place { start: 0, end: 0, ..SourceText::new(shown, text).place(good..good) };
+fn not_text(source: &SourceText, from: usize) -> Finding {
     Finding::error(
         NOT_TEXT,
-        place,
-        "the file is not UTF-8 text from here on",
+        source.place(from..from + char::REPLACEMENT_CHARACTER.len_utf8()),
+        "this is not UTF-8 text",
         "the files of a port are TOML in UTF-8",
-        "save it as UTF-8",
+        "save the file as UTF-8",
     )
 }

@@ -5,7 +5,7 @@ use crate::advisory::read::read_forecast;
 use crate::arrival::errors::ErrorTables;
 use crate::arrival::errors_reader::read_error_tables;
 use crate::cli::exit::Failure;
-use crate::cli::folder::PortFolder;
+use crate::cli::folder::{PortFolder, TOO_LONG};
 use crate::cli::screen::tell_findings;
 use crate::finding::fault::{Finding, has_error, nearest, sort_findings};
 use crate::finding::source::SourceText;
@@ -16,6 +16,8 @@ use crate::record::reader::read_events;
 use crate::rules::folder::read_folder;
 use crate::rules::stage::Rules;
 use crate::time::moment::Moment;
+use crate::work::expand::expand;
+use crate::work::graph::WorkGraph;
 use std::collections::BTreeMap;
 use std::path::Path;
 
@@ -47,6 +49,8 @@ pub struct Loaded {
     pub port: Port,
     /// Its rules.
     pub rules: Rules,
+    /// The graph of its tasks and stages.
+    pub work: WorkGraph,
     /// Its record.
     pub events: Vec<Event>,
     /// The forecasts that the record names, by file.
@@ -100,6 +104,11 @@ pub fn examine(path: &Path) -> Result<Examined, Failure> {
     let (things, port_findings) = read_folder(&folder.files);
     let mut findings = folder.findings.clone();
     findings.extend(port_findings);
+    let things = things.filter(|_| folder.unread.is_empty()).map(|(port, rules)| {
+        let (work, work_findings) = expand(&port, &rules);
+        findings.extend(work_findings);
+        (port, rules, work)
+    });
     let clock = read_draft(&folder.files).0.clock;
     let (events, event_findings) =
         folder.files.get("events.toml").map(|source| read_events(source, clock.as_ref())).unwrap_or_default();
@@ -109,16 +118,12 @@ pub fn examine(path: &Path) -> Result<Examined, Failure> {
     findings.extend(out_of_order(&events, &forecasts));
     let tables = read_tables(&folder, &mut findings, &mut sources);
     sort_findings(&mut findings);
-    // A file that is no text was read as empty: what follows from that is no news.
-    let unread = folder.findings.iter().map(|finding| finding.place.file.clone()).collect::<Vec<_>>();
-    findings.retain(|finding| finding.code.starts_with("cli-") || !unread.contains(&finding.place.file));
-    let loaded = things.zip(tables).filter(|_| !has_error(&findings)).map(|((port, rules), tables)| Loaded {
-        port,
-        rules,
-        events,
-        forecasts,
-        tables,
-    });
+    // A file too long to be read was taken as empty: what follows from that is no news.
+    findings.retain(|finding| finding.code == TOO_LONG || !folder.unread.contains(&finding.place.file));
+    let loaded = things
+        .zip(tables)
+        .filter(|_| !has_error(&findings))
+        .map(|((port, rules, work), tables)| Loaded { port, rules, work, events, forecasts, tables });
     Ok(Examined { findings, sources, loaded })
 }
 

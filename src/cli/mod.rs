@@ -2,6 +2,7 @@
 
 pub mod args;
 pub mod arrivals;
+pub mod changes;
 pub mod check;
 pub mod clock;
 pub mod completions;
@@ -9,5 +10,8 @@ pub mod exit;
 pub mod folder;
 pub mod load;
 pub mod man;
+pub mod now;
+pub mod plan;
+pub mod planning;
 pub mod run;
 pub mod screen;

@@ -3,7 +3,7 @@
 use crate::cli::args::{Args, Command};
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::screen::{tell, tell_findings};
-use crate::cli::{arrivals, check, completions, man};
+use crate::cli::{arrivals, changes, check, completions, man, now, plan};
 use clap::Parser;
 use std::ffi::OsString;
 use std::process::ExitCode;
@@ -34,6 +34,9 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> ExitCode {
 fn answer(command: &Command) -> Result<Exit, Failure> {
     match command {
         Command::Check(args) => check::run(args),
+        Command::Plan(args) => plan::run(args),
+        Command::Now(args) => now::run(args),
+        Command::Changes(args) => changes::run(args),
         Command::Arrivals(args) => arrivals::run(args),
         Command::Completions(args) => completions::run(args),
         Command::Man => man::run(),

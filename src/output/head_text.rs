@@ -21,7 +21,7 @@ pub fn write_title(page: &mut Page, times: &Times, setting: &Setting, what: &str
     page.text(0, &format!("{}: {what} {}", setting.port.to_uppercase(), times.full(times.now())));
 }
 
-/// Writes the head. A failed audit and an overtaken adopted arrival come before all else.
+/// Writes the head. A failed audit, an overdue advisory and an overtaken adopted arrival come before all else.
 pub fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan) {
     page.gap();
     if !plan.breaches.is_empty() {
@@ -31,6 +31,12 @@ pub fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan
                 "THIS PLAN FAILS ITS AUDIT ({}, listed at the end): do not rely on it.",
                 count(plan.breaches.len(), "point")
             ),
+        );
+    }
+    if plan.advisory.as_ref().is_some_and(|advisory| advisory.is_overdue) {
+        page.text(
+            0,
+            "THE ADVISORY IS NOT CURRENT: a newer one is overdue, and what stands below may be wrong by now.",
         );
     }
     write_overtaken(page, times, plan);

@@ -1,5 +1,6 @@
 //! What every page says about the port: its name, its clock, who decides there, and whether it is real.
 
+use crate::output::layout::clip;
 use crate::port::harbour::Port;
 use crate::rules::stage::Rules;
 use crate::time::clock::PortClock;
@@ -47,12 +48,15 @@ impl<'a> Setting<'a> {
 
     /// What must stand on every page of a port that is not real, or of a drill; empty otherwise.
     ///
-    /// EXERCISE stands first, so that it stays when long words behind it are cut.
+    /// EXERCISE stands where it stays when long words are cut.
     #[must_use]
     pub fn banner(&self) -> String {
         match (self.invented.is_empty(), self.is_exercise) {
             (_, false) => self.invented.to_owned(),
             (true, true) => "EXERCISE".to_owned(),
+            (false, true) if clip(self.invented, 40).to_uppercase().contains("EXERCISE") => {
+                self.invented.to_owned()
+            }
             (false, true) => format!("EXERCISE - {}", self.invented),
         }
     }

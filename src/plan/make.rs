@@ -13,7 +13,7 @@ use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::rules::stage::Rules;
 use crate::schedule::latest::{Latest, Limits, latest};
-use crate::schedule::problem::Problem;
+use crate::schedule::outcome::Outcome;
 use crate::schedule::search::Effort;
 use crate::time::moment::Moment;
 use crate::units::wind::Averaging;
@@ -77,7 +77,7 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
     };
     let made = draft_with_permitted(draft_inputs);
     let answers = forecast.map(|f| f.answers);
-    let latest_starts = latest_starts(&made.stated.problem);
+    let latest_starts = latest_starts(&made);
     let tasks = lines(LineInputs {
         port,
         rules,
@@ -112,9 +112,16 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
     plan
 }
 
-/// The latest start of each task that keeps the hard deadlines; where nothing hard limits it, the soft ones.
-fn latest_starts(problem: &Problem) -> Vec<Option<Moment>> {
-    let by = |limits| latest(problem, limits, &[]).unwrap_or_default();
+/// The latest start of each task that keeps the hard deadlines; where nothing hard limits it, the soft ones. A given-up
+/// task puts no limit on those that it waits for.
+fn latest_starts(draft: &Draft) -> Vec<Option<Moment>> {
+    let mut problem = draft.stated.problem.clone();
+    for (task, outcome) in problem.tasks.iter_mut().zip(&draft.schedule.outcomes) {
+        if matches!(outcome, Outcome::GivenUp(_)) {
+            (task.deadline, task.due) = (None, None);
+        }
+    }
+    let by = |limits| latest(&problem, limits, &[]).unwrap_or_default();
     let start = |latest: &Latest| match latest {
         Latest::By(ends) => Some(ends.start),
         Latest::Unlimited | Latest::Never => None,

@@ -121,7 +121,8 @@ struct Finder<'a> {
 }
 
 impl Finder<'_> {
-    /// One more member of a pool that the missed tasks need, a stand-in for one of them, or an order lifted.
+    /// One more member of a pool that the missed tasks or those before them need, a stand-in for one of these, or an
+    /// order lifted.
     fn single_choices(&self) -> Vec<Adjustments> {
         let mut choices = Vec::new();
         let nodes = upstream(self.inputs.work, self.missed);
@@ -135,10 +136,10 @@ impl Finder<'_> {
             *choice.more.entry(pool).or_insert(0) += 1;
             choices.push(choice);
         }
-        for id in self.missed {
-            if self.inputs.work.task(id).is_some_and(|task| task.or_else.is_some()) {
+        for task in nodes.iter().filter_map(|node| self.inputs.work.task_at(*node)) {
+            if task.or_else.is_some() && !self.base.adjustments.substituted.contains(&task.id) {
                 let mut choice = self.base.adjustments.clone();
-                choice.substituted.insert(id.clone());
+                choice.substituted.insert(task.id.clone());
                 choices.push(choice);
             }
         }

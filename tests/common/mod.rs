@@ -1,10 +1,6 @@
 //! What tests of whole plans share: reading a folder and a forecast, and planning on them.
-#![expect(
-    clippy::unwrap_used,
-    clippy::panic,
-    dead_code,
-    reason = "test helpers; not every test file uses all of them"
-)]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test that cannot read its port must fail")]
+#![allow(dead_code, reason = "not every test file uses all of it")]
 
 use snugdown::advisory::forecast::Advisory;
 use snugdown::advisory::read::read_forecast;
@@ -96,7 +92,8 @@ impl Reading {
             events: &self.events,
             forecasts: &self.forecasts,
             tables: &self.tables,
-            draw: Draw::default(),
+            // Fewer scenarios than people get: what is tested here does not depend on their number.
+            draw: Draw { scenarios: 300, most: 600 },
             effort: Effort::usual(self.work.graph.node_count()),
         }
     }

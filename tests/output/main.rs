@@ -4,3 +4,5 @@
 mod fixture;
 mod on_one_screen;
 mod read_as_text;
+mod read_by_programs;
+mod told_to_people;

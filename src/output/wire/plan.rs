@@ -35,7 +35,10 @@ pub struct PlanOut {
     pub stages: Vec<StageOut>,
     /// Tasks: by start, then those without a time.
     pub tasks: Vec<TaskOut>,
-    /// Tasks that moved since the plan before it, as in `changes`; empty if there was none.
+    /// With which earlier plan `moved` compares this one: the last issued, or the one before the last advisory; null if
+    /// there was none.
+    pub moved_since: Option<String>,
+    /// Tasks that moved since then, as in `changes`.
     pub moved: Vec<MovedOut>,
     /// What would help, earliest decision first.
     pub reliefs: Vec<ReliefOut>,
@@ -173,7 +176,7 @@ pub struct BreachOut {
     pub what: String,
 }
 
-/// The plan in its JSON form; `since_before` are the changes since the plan before it.
+/// The plan in its JSON form; `since_before` are the changes since an earlier plan.
 #[must_use]
 pub fn plan_out(plan: &Plan, setting: &Setting, since_before: Option<&Changes>) -> PlanOut {
     PlanOut {
@@ -187,6 +190,7 @@ pub fn plan_out(plan: &Plan, setting: &Setting, since_before: Option<&Changes>) 
         stage_in_force: plan.stage_in_force().map(|stage| stage.id.clone()),
         stages: plan.stages.iter().map(stage).collect(),
         tasks: plan.tasks.iter().map(task).collect(),
+        moved_since: since_before.map(|changes| time(changes.from)),
         moved: since_before.map(moved).unwrap_or_default(),
         reliefs: plan.reliefs.iter().map(relief).collect(),
         duties: plan.duties.iter().map(duty).collect(),

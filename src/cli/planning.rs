@@ -1,0 +1,59 @@
+//! From a loaded folder to its plans.
+
+use crate::arrival::odds::Draw;
+use crate::cli::exit::{Exit, Failure};
+use crate::cli::load::Loaded;
+use crate::plan::fold::{History, Inputs, plan_at};
+use crate::plan::sheet::Plan;
+use crate::record::event::What;
+use crate::schedule::search::Effort;
+use crate::time::moment::{Minutes, Moment};
+
+/// All plans up to a moment, with the usual number of scenarios and the usual effort.
+#[must_use]
+pub fn plans_until(loaded: &Loaded, now: Moment) -> History {
+    let inputs = Inputs {
+        port: &loaded.port,
+        rules: &loaded.rules,
+        work: &loaded.work,
+        events: &loaded.events,
+        forecasts: &loaded.forecasts,
+        tables: &loaded.tables,
+        draw: Draw::default(),
+        effort: Effort::usual(loaded.work.task_ids().count()),
+    };
+    plan_at(&inputs, now)
+}
+
+/// The plan for the moment that was asked for.
+///
+/// # Errors
+/// [`Failure::NoPlan`] if there is none, which a sound fold never leaves.
+pub fn latest(history: &History) -> Result<&Plan, Failure> {
+    history.latest().ok_or(Failure::NoPlan)
+}
+
+/// The moment with which a plan is compared if nobody names one: when the last plan was issued; if none was, just before
+/// the last advisory was taken; `None` if none was taken either.
+#[must_use]
+pub fn compared_with(loaded: &Loaded, now: Moment) -> Option<Moment> {
+    let last = |test: &dyn Fn(&What) -> bool| {
+        let known = loaded.events.iter().filter(|event| test(&event.what)).map(|event| event.known);
+        known.map(Moment::at_or_after).filter(|known| *known <= now).max()
+    };
+    let issued = last(&|what| matches!(what, What::PlanIssued));
+    issued.or_else(|| Some(last(&|what| matches!(what, What::AdvisoryTaken { .. }))? - Minutes::new(1)))
+}
+
+/// How a command ends that showed this plan: what cannot be done in time goes before a stale forecast.
+#[must_use]
+pub fn exit_of(plan: &Plan, loaded: &Loaded) -> Exit {
+    let is_overdue = plan.advisory.as_ref().is_some_and(|advisory| advisory.is_overdue);
+    if !plan.fits() {
+        Exit::CannotBeDone
+    } else if is_overdue || loaded.is_out_of_order(plan.now) {
+        Exit::Stale
+    } else {
+        Exit::Fits
+    }
+}
