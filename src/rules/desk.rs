@@ -60,8 +60,10 @@ pub enum Sort {
     Stage,
     /// A duty.
     Duty,
-    /// A task or template.
+    /// A task.
     Task,
+    /// A template: several may share an id if each is for other things, as the sailing of a gas carrier and of others.
+    Template,
 }
 
 impl Sort {
@@ -70,6 +72,7 @@ impl Sort {
             Sort::Stage => "stage",
             Sort::Duty => "duty",
             Sort::Task => "task",
+            Sort::Template => "template",
         }
     }
 }
@@ -95,6 +98,10 @@ impl Names {
             self.ids.insert(id.to_lowercase(), (id.to_owned(), sort, item.place()));
             return;
         };
+        if (*other_sort, sort) == (Sort::Template, Sort::Template) && other == id {
+            // Whether two of them are for the same thing shows when they are expanded.
+            return;
+        }
         let other_sort = other_sort.word();
         let found = if other == id {
             format!("the id \"{id}\" is already that of the {other_sort} at {place}")

@@ -76,8 +76,10 @@ fn note_ids(names: &mut Names, sort: Sort, heading: &'static str, file: &mut Key
     // Headings of the wrong form are reported when the things themselves are read.
     let Some(things) = file.optional(heading).filter(|item| item.is_list()) else { return };
     for thing in things.list().iter().filter(|thing| thing.is_table()) {
-        if let Some(id) = thing.keys(heading).and_then(|mut keys| keys.optional("id")) {
-            names.add(sort, &id);
+        let Some(mut keys) = thing.keys(heading) else { continue };
+        let is_template = sort == Sort::Task && keys.optional("for_each").is_some();
+        if let Some(id) = keys.optional("id") {
+            names.add(if is_template { Sort::Template } else { sort }, &id);
         }
     }
 }
