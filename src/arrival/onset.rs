@@ -1,8 +1,9 @@
 //! When, in one scenario, a wind is first and last passed at a place.
 //!
-//! Between hourly states the storm moves straight and changes evenly. The wind is there while the distance from the centre is within the reach of the limit on
-//! the place's bearing (a calm eye does not end it). Each hour is tested at both ends and at the closest approach between, so that a storm that brushes a place for some minutes is not missed; the
-//! moment itself is found by root finding to within two seconds.
+//! Between hourly states the storm moves straight and changes evenly. The wind is there while the distance
+//! from the centre is within the reach of the limit on the place's bearing (a calm eye does not end it). Each
+//! hour is tested at both ends and at the closest approach between, so that a storm that brushes a place for
+//! some minutes is not missed; the moment itself is found by root finding to within two seconds.
 
 use crate::arrival::course::Course;
 use crate::arrival::scenario::Scenario;
@@ -16,7 +17,7 @@ use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, bearing_degrees, distance_nm
 /// When the wind comes.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Onset {
-    /// It blows at issue time.
+    /// It blows at issue time, or comes within the minute.
     Already,
     /// At this minute, rounded down.
     At(Moment),
@@ -29,15 +30,18 @@ pub enum Onset {
 pub struct ScenarioOnset {
     /// When the wind first reaches the limit.
     pub onset: Onset,
-    /// When it last falls below the limit, rounded up; `None` if it never comes or still blows at the end of the forecast.
+    /// When it last falls below the limit, rounded up; `None` if it never comes or still blows at the end of
+    /// the forecast.
     pub until: Option<Moment>,
-    /// Wind met where the place lies deepest within the gale radius: the greatest, or very near it. 10 m over open water in the advisory's averaging; zero if the limit is never reached.
+    /// Wind met where the place lies deepest within the gale radius: the greatest, or very near it. 10 m over
+    /// open water in the advisory's averaging; zero if the limit is never reached.
     pub peak: Knots,
     /// From where the wind blows at the onset (at issue, if already there); north if it never comes.
     pub from: Bearing,
     /// The eye passes over: the wind returns from the other side.
     pub has_lull: bool,
-    /// `Never`, but it would come within a day after the end of the forecast if the storm went on as it then is.
+    /// `Never`, but it would come within a day after the end of the forecast if the storm went on as it then
+    /// is.
     pub is_cut_off: bool,
 }
 
@@ -181,7 +185,8 @@ impl Sight {
     /// How many of the limits, which rise, are met here.
     fn count_met(&self, limits_kt: &[f64]) -> usize {
         let [gale, storm, hurricane] = self.profile.reach_nmi;
-        // The given radii decide most cases without the profile's logarithms: below `sure` the limit is met, above `at_most` it is not.
+        // The given radii decide most cases without the profile's logarithms: below `sure` the limit is met,
+        // above `at_most` it is not.
         let is_within = |reach: f64| reach > 0.0 && self.distance <= reach;
         let (sure, at_most) = if is_within(hurricane) {
             (64.0, f64::INFINITY)
@@ -236,7 +241,8 @@ impl<'a> Hour<'a> {
         self.minutes[1] = self.minutes[0];
     }
 
-    /// Whether the centre comes as near as the furthest reach of its gales (times `widening`; at least that of its core) at either end.
+    /// Whether the centre comes as near as the furthest reach of its gales (times `widening`; at least that
+    /// of its core) at either end.
     fn may_reach(&self, widening: f64) -> bool {
         let [from, to] = self.vortices;
         let s = self.closest_share().clamp(0.0, 1.0);
@@ -282,8 +288,9 @@ impl<'a> Hour<'a> {
         self.minutes[0] + (self.minutes[1] - self.minutes[0]) * s
     }
 
-    /// Where in the stretch the place passes the limit's edge: regula falsi, halving the value at an end that stays twice (the Illinois method,
-    /// Dowell & Jarratt 1971, BIT 11:168-174). The outer end of the last bracket is taken: an onset is never late, an end never early.
+    /// Where in the stretch the place passes the limit's edge: regula falsi, halving the value at an end that
+    /// stays twice (the Illinois method, Dowell & Jarratt 1971, BIT 11:168-174). The outer end of the last
+    /// bracket is taken: an onset is never late, an end never early.
     fn crossing(
         &self,
         limit_kt: f64,
@@ -342,7 +349,11 @@ impl State {
         let after = |minutes: f64| course.issued + Minutes::new(minutes as i64);
         let northern = wind_from(Bearing::wrapped(found.bearing), Hemisphere::Northern, INFLOW_DEGREES);
         ScenarioOnset {
-            onset: found.minute.map_or(Onset::Already, |minute| Onset::At(after(f64::floor(minute)))),
+            // To the minute, rounded down, a wind that comes within the first minute blows at issue.
+            onset: match found.minute {
+                Some(minute) if minute >= 1.0 => Onset::At(after(f64::floor(minute))),
+                Some(_) | None => Onset::Already,
+            },
             until: self.until.map(|minute| after(f64::ceil(minute))),
             peak: deepest.peak(),
             from: match course.hemisphere {

@@ -10,7 +10,8 @@ pub struct Question {
     pub key: String,
     /// Where.
     pub position: Position,
-    /// The wind over the open sea, 10 m above it, in the advisory's own averaging. For a limit that means something else
-    /// (a gust at a crane's height, a place behind the coast) take [`crate::wind::exposure::Exposure::open_sea_limit`].
+    /// The wind over the open sea, 10 m above it, in the advisory's own averaging. For a limit that means
+    /// something else (a gust at a crane's height, a place behind the coast) take
+    /// [`crate::wind::exposure::Exposure::open_sea_limit`].
     pub limit: Knots,
 }

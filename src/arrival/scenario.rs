@@ -1,7 +1,8 @@
 //! One way in which the forecast may turn out: a displaced track, another strength, another size.
 //!
-//! Errors are first-order autoregressive on nodes 12 h apart: z0 = e0, zk = phi z(k-1) + sqrt(1 - phi^2) ek, with e from the standard normal distribution, for each of along,
-//! cross, intensity and size; an error is deviation x z + bias.
+//! Errors are first-order autoregressive on nodes 12 h apart: z0 = e0, zk = phi z(k-1) + sqrt(1 - phi^2) ek,
+//! with e from the standard normal distribution, for each of along, cross, intensity and size; an error is
+//! deviation x z + bias.
 
 use crate::arrival::course::{Course, Step};
 use crate::arrival::keyed::{BLOCK, Component, Keyed};
@@ -81,7 +82,7 @@ impl Scenario {
         self.sizes.clear();
         let mut bounds = Vec::with_capacity(course.steps.len());
         for step in &course.steps {
-            let wind = (step.wind_kt + error(step, intensity)).clamp(0.0, 250.0);
+            let wind = (step.expected.wind_kt + error(step, intensity)).clamp(0.0, 250.0);
             let scale = libm::exp(error(step, size));
             self.centres.push(displaced(
                 step.centre,
@@ -107,7 +108,8 @@ impl Scenario {
         self.vortices.resize(course.steps.len(), None);
     }
 
-    /// Whether a wind can reach `place` in the hour after step `k`, when it reaches at most `widening` times as far as 34 kt.
+    /// Whether a wind can reach `place` in the hour after step `k`, when it reaches at most `widening` times
+    /// as far as 34 kt.
     #[must_use]
     pub fn may_reach(&self, k: usize, place: Vector, widening: f64) -> bool {
         let (Some(centre), Some(far2)) = (self.centres.get(k), self.far2.get(k)) else { return false };
@@ -115,7 +117,8 @@ impl Scenario {
         dot(between, between) <= far2 * widening * widening
     }
 
-    /// Makes sure that the realised storms at step `k` and at the next are there; they are made when first needed.
+    /// Makes sure that the realised storms at step `k` and at the next are there; they are made when first
+    /// needed.
     pub fn prepare(&mut self, course: &Course, k: usize) {
         for at in [k, k + 1] {
             let (Some(kept), Some(step)) = (self.vortices.get_mut(at), course.steps.get(at)) else {
@@ -123,13 +126,7 @@ impl Scenario {
             };
             let state = (self.centres.get(at), self.winds_kt.get(at), self.sizes.get(at));
             if let (None, (Some(centre), Some(wind), Some(size))) = (&kept, state) {
-                *kept = Some(Vortex::realised(
-                    *centre,
-                    step.latitude,
-                    &step.ratios,
-                    (step.wind_kt, *wind),
-                    *size,
-                ));
+                *kept = Some(Vortex::realised(&step.expected, *centre, *wind, *size));
             }
         }
     }

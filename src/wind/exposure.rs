@@ -8,8 +8,9 @@ use crate::wind::height::{gust_factor, mean_factor};
 
 /// The mean wind at a place as a share of that over the open sea.
 ///
-/// At sea and with the wind off the sea 1 (WMO/TD-No. 1555 carries the 10-min mean across the beach unchanged). Over land 0.8 (Knaff et al. 2011, as used by public
-/// wind-field codes). Off the land at the shore 0.9: our choice, half way, as the wind has not yet settled to the sea.
+/// At sea and with the wind off the sea 1 (WMO/TD-No. 1555 carries the 10-min mean across the beach
+/// unchanged). Over land 0.8 (Knaff et al. 2011, as used by public wind-field codes). Off the land at the
+/// shore 0.9: our choice, half way, as the wind has not yet settled to the sea.
 #[must_use]
 pub fn land_share(class: ExposureClass) -> f64 {
     match class {
@@ -52,13 +53,15 @@ pub struct Exposure {
 /// A limit as seen from the open sea.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct OpenSeaLimit {
-    /// The wind over the open sea, at 10 m, in the advisory's averaging, at which the limit is met at the place.
+    /// The wind over the open sea, at 10 m, in the advisory's averaging, at which the limit is met at the
+    /// place.
     pub speed: Knots,
     /// The wind at the place, averaged and at the height of the limit, as a multiple of that.
     pub factor: f64,
     /// The exposure it was reckoned with.
     pub class: ExposureClass,
-    /// Another exposure of the place would have given a greater one: the smallest is taken, and this should be said.
+    /// Another exposure of the place would have given a greater one: the smallest is taken, and this should
+    /// be said.
     pub is_least_of_several: bool,
 }
 
@@ -79,11 +82,13 @@ impl Exposure {
     ///
     /// speed = limit / factor, factor = wind at the place / wind over the open sea:
     /// * at sea: averaging of the advisory -> averaging of the limit, by [`conversion`];
-    /// * elsewhere: averaging of the advisory -> 10 min at sea, times [`land_share`], times 10 min -> averaging of the limit in the place's class;
-    /// * both times the factor of the height: logarithmic law over the class's ground for means, power law for gusts.
+    /// * elsewhere: averaging of the advisory -> 10 min at sea, times [`land_share`], times 10 min ->
+    ///   averaging of the limit in the place's class;
+    /// * both times the factor of the height: logarithmic law over the class's ground for means, power
+    ///   law for gusts.
     ///
-    /// Where exposure differs by direction, the direction at the time is not known beforehand: the smallest such speed of all its classes is taken, so that the limit is never met later than
-    /// reckoned.
+    /// Where exposure differs by direction, the direction at the time is not known beforehand: the smallest
+    /// such speed of all its classes is taken, so that the limit is never met later than reckoned.
     #[must_use]
     pub fn open_sea_limit(&self, limit: &WindLimit, advisory: Averaging) -> OpenSeaLimit {
         let classes = std::iter::once(self.class).chain(self.sectors.iter().map(|sector| sector.class));
@@ -101,7 +106,8 @@ impl Exposure {
     }
 }
 
-/// The wind that `limit` speaks of, at a place of this class, as a multiple of the open-sea wind of the advisory.
+/// The wind that `limit` speaks of, at a place of this class, as a multiple of the open-sea wind of the
+/// advisory.
 fn place_factor(class: ExposureClass, limit: &WindLimit, advisory: Averaging) -> f64 {
     let at_ten_metres = match class {
         ExposureClass::AtSea => conversion(class, advisory, limit.averaging),
@@ -145,7 +151,8 @@ mod tests {
 
     #[test]
     fn a_gust_limit_is_met_in_less_wind_than_its_number() {
-        // 50 kt over 1 min at sea bring gusts of 64.2 kt on a coast open to the sea: 46.4 x 1.38 by the table's own 10-min factor.
+        // 50 kt over 1 min at sea bring gusts of 64.2 kt on a coast open to the sea: 46.4 x 1.38 by the
+        // table's own 10-min factor.
         let seen = Exposure::uniform(ExposureClass::OffSea)
             .open_sea_limit(&limit(64.2, Averaging::Gust3s, 10.0), Averaging::Minute1);
         assert_abs_diff_eq!(seen.speed.get(), 50.0, epsilon = 0.15);
