@@ -3,7 +3,7 @@
 //! Between hourly states the storm moves straight and changes evenly. The wind is there while the distance
 //! from the centre is within the reach of the limit on the place's bearing (a calm eye does not end it). Each
 //! hour is tested at both ends and at the closest approach between, so that a storm that brushes a place for
-//! some minutes is not missed; the moment itself is found by root finding to within two seconds.
+//! some minutes is not missed; the moment itself is found by root finding to within a second or two.
 
 use crate::arrival::course::Course;
 use crate::arrival::scenario::Scenario;
@@ -81,9 +81,10 @@ impl Watch {
         let mut states = vec![State::default(); self.limits_kt.len()];
         let mut deepest = Deepest::default();
         let mut before: Option<Sight> = None;
-        for k in 0..course.end.max(1) {
+        let mut next = 0;
+        while next < course.end.max(1) {
             let start = before.take();
-            let Some(mut hour) = self.hour(course, scenario, k) else { continue };
+            let Some(mut hour) = self.next_hour(course, scenario, &mut next) else { continue };
             if course.end == 0 {
                 // A forecast of a single moment: nothing after it belongs to the forecast.
                 hour.stand_still();
@@ -94,7 +95,8 @@ impl Watch {
             self.pass(&hour, [start, end], &mut states, &mut deepest);
         }
         let reached = states.iter().filter(|state| state.is_reached()).count();
-        let cut_off = self.still_coming(course, scenario).max(reached);
+        let all = reached == states.len();
+        let cut_off = if all { reached } else { self.still_coming(course, scenario).max(reached) };
         states
             .iter()
             .enumerate()
@@ -102,9 +104,18 @@ impl Watch {
             .collect()
     }
 
-    /// The hour after step `k`, if any limit can be met in it.
-    fn hour<'a>(&self, course: &Course, scenario: &'a mut Scenario, k: usize) -> Option<Hour<'a>> {
-        if !scenario.may_reach(k, self.place, self.widening) {
+    /// The hour after step `next`, if any limit can be met in it; moves `next` on by that hour, or by all hours
+    /// in which none can.
+    fn next_hour<'a>(
+        &self,
+        course: &Course,
+        scenario: &'a mut Scenario,
+        next: &mut usize,
+    ) -> Option<Hour<'a>> {
+        let k = *next;
+        let out_of_reach = scenario.hours_out_of_reach(k, self.place, self.widening);
+        *next += out_of_reach.max(1);
+        if out_of_reach > 0 {
             return None;
         }
         scenario.prepare(course, k);
@@ -120,6 +131,13 @@ impl Watch {
     /// One hour for all limits. They are nested: where a limit is met, every lower one is.
     fn pass(&self, hour: &Hour<'_>, [start, end]: [Sight; 2], states: &mut [State], deepest: &mut Deepest) {
         let closest = hour.closest();
+        if closest.is_none() && start.met == end.met && hour.k > 0 {
+            // Most hours: the wind neither comes nor goes.
+            if end.met > 0 {
+                deepest.note(end);
+            }
+            return;
+        }
         let middle = closest.map(|s| self.seen(hour.look(s)));
         let dips = middle.map_or(0, |sight| sight.met);
         let most = start.met.max(end.met).max(dips);
@@ -158,8 +176,9 @@ impl Watch {
     /// How many limits, the lowest first, would be met in the look-ahead beyond the forecast.
     fn still_coming(&self, course: &Course, scenario: &mut Scenario) -> usize {
         let mut most = 0;
-        for k in course.end..course.steps.len().saturating_sub(1) {
-            let Some(hour) = self.hour(course, scenario, k) else { continue };
+        let mut next = course.end;
+        while next + 1 < course.steps.len() {
+            let Some(hour) = self.next_hour(course, scenario, &mut next) else { continue };
             for s in [Some(1.0), hour.closest()].into_iter().flatten() {
                 most = most.max(self.seen(hour.look(s)).met);
             }
@@ -289,28 +308,26 @@ impl<'a> Hour<'a> {
     }
 
     /// Where in the stretch the place passes the limit's edge: regula falsi, halving the value at an end that
-    /// stays twice (the Illinois method, Dowell & Jarratt 1971, BIT 11:168-174). The outer end of the last
-    /// bracket is taken: an onset is never late, an end never early.
+    /// stays twice (the Illinois method, Dowell & Jarratt 1971, BIT 11:168-174), until the slope says that it is
+    /// found to a second. Then a second outwards: an onset is never late, an end never early.
     fn crossing(
         &self,
         limit_kt: f64,
         [(mut low, low_sight), (mut high, high_sight)]: [(f64, Sight); 2],
     ) -> f64 {
-        const TWO_SECONDS: f64 = 2.0 / 3600.0;
-        let gap = |s: f64| self.look(s).gap(limit_kt);
+        const SECOND: f64 = 1.0 / 3600.0;
         let (mut at_low, mut at_high) = (low_sight.gap(limit_kt), high_sight.gap(limit_kt));
         let comes = at_low > 0.0;
+        let slope = ((at_high - at_low) / (high - low)).abs();
         let mut low_moved = None;
+        let mut cut = if comes { low } else { high };
         for _ in 0..40 {
-            if high - low < TWO_SECONDS {
+            let next = low + (high - low) * at_low / (at_low - at_high);
+            cut = if next.is_finite() { next.clamp(low, high) } else { f64::midpoint(low, high) };
+            let value = self.look(cut).gap(limit_kt);
+            if value.abs() <= slope * SECOND || high - low < SECOND {
                 break;
             }
-            // Keeping a second away from the ends lets the bracket close from both sides.
-            let margin = TWO_SECONDS / 2.0;
-            let cut = low + (high - low) * at_low / (at_low - at_high);
-            let cut = if cut.is_finite() { cut } else { (low + high) / 2.0 };
-            let cut = cut.clamp(low + margin, high - margin);
-            let value = gap(cut);
             let moves_low = (value > 0.0) == comes;
             let again = low_moved == Some(moves_low);
             low_moved = Some(moves_low);
@@ -322,7 +339,7 @@ impl<'a> Hour<'a> {
                 at_low /= if again { 2.0 } else { 1.0 };
             }
         }
-        if comes { low } else { high }
+        if comes { (cut - SECOND).max(0.0) } else { (cut + SECOND).min(1.0) }
     }
 }
 

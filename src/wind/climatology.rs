@@ -36,12 +36,15 @@ pub fn radius_of_greatest_wind_nmi(max_wind_kt: f64, latitude: f64) -> f64 {
 /// (see the constant).
 #[must_use]
 pub fn reach_nmi(speed_kt: f64, max_wind_kt: f64, latitude: f64) -> f64 {
-    if max_wind_kt < speed_kt {
-        return 0.0;
-    }
+    if max_wind_kt < speed_kt { 0.0 } else { libm::exp(log_reach(speed_kt, max_wind_kt, latitude)) }
+}
+
+/// Natural logarithm of [`reach_nmi`] for a storm that has the wind.
+#[must_use]
+pub fn log_reach(speed_kt: f64, max_wind_kt: f64, latitude: f64) -> f64 {
     let v = max_wind_kt.min(speed_kt + GROWS_WITHIN_KT);
-    radius_of_greatest_wind_nmi(v, latitude)
-        * libm::exp(libm::log(v / speed_kt) / rankine_exponent(v, latitude))
+    libm::log(radius_of_greatest_wind_nmi(v, latitude))
+        + libm::log(v / speed_kt) / rankine_exponent(v, latitude)
 }
 
 #[cfg(test)]

@@ -16,6 +16,9 @@ const OUTER_EXPONENT: (f64, f64) = (0.4, 1.0);
 /// speed.
 const JUST_BELOW_KT: f64 = 0.1;
 
+/// ln(50 / 34).
+const LOG_50_OVER_34: f64 = 0.385_662_480_811_985_05;
+
 /// The exponent x of v = c r^-x through (r1, v1) and (r2, v2): x = ln(v2 / v1) / ln(r1 / r2).
 #[must_use]
 pub fn exponent_between(r1_nmi: f64, v1_kt: f64, r2_nmi: f64, v2_kt: f64) -> f64 {
@@ -144,7 +147,8 @@ impl Profile {
     fn outer_exponent(&self) -> f64 {
         let [gale, storm, _] = self.reach_nmi;
         let last = if storm > 0.0 && gale > storm {
-            exponent_between(gale, 34.0, storm, 50.0)
+            // The exponent between the two given winds; ln(50 / 34) is written out, as this is the inner loop.
+            LOG_50_OVER_34 / libm::log(gale / storm)
         } else {
             self.exponent
         };
@@ -154,13 +158,14 @@ impl Profile {
 
 #[cfg(test)]
 mod tests {
-    use super::{Profile, around, exponent_between};
+    use super::{LOG_50_OVER_34, Profile, around, exponent_between};
     use approx::assert_abs_diff_eq;
     use proptest::prelude::{prop_assert, proptest};
 
     #[test]
     fn between_two_radii_the_wind_is_straight_in_log_log() {
         assert_abs_diff_eq!(exponent_between(120.0, 34.0, 60.0, 50.0), 0.5564, epsilon = 5e-5);
+        assert_abs_diff_eq!(LOG_50_OVER_34, libm::log(50.0 / 34.0), epsilon = 1e-16);
         let profile =
             Profile { max_wind_kt: 55.0, reach_nmi: [120.0, 60.0, 0.0], exponent: 0.5, core_nmi: 30.0 };
         assert_abs_diff_eq!(profile.speed_kt(90.0), 39.90, epsilon = 5e-3);

@@ -12,7 +12,7 @@
 //!   radii is a mean one. Both are assumptions, and told.
 
 use crate::advisory::forecast::{Advisory, Reach};
-use crate::wind::climatology::reach_nmi;
+use crate::wind::climatology::{log_reach, reach_nmi};
 use crate::wind::profile::GIVEN_SPEEDS_KT;
 
 /// Mean ratio of observed reach to mean-vortex reach for 34, 50, 64 kt.
@@ -106,8 +106,8 @@ pub struct Expected {
     pub latitude: f64,
     /// Size.
     pub ratios: Ratios,
-    /// Reach of the three given speeds in the mean storm of this strength, n mi.
-    usual_nmi: [f64; 3],
+    /// Natural logarithms of the reach (n mi) of the three given speeds in the mean storm of this strength.
+    log_usual: [f64; 3],
     follows: f64,
 }
 
@@ -116,14 +116,14 @@ impl Expected {
     /// is as in the mean vortex.
     #[must_use]
     pub fn new(wind_kt: f64, latitude: f64, ratios: Ratios, follows: f64) -> Expected {
-        let usual_nmi = GIVEN_SPEEDS_KT.map(|speed| reach_nmi(speed, wind_kt.max(speed), latitude));
-        Expected { wind_kt, latitude, ratios, usual_nmi, follows }
+        let log_usual = GIVEN_SPEEDS_KT.map(|speed| log_reach(speed, wind_kt.max(speed), latitude));
+        Expected { wind_kt, latitude, ratios, log_usual, follows }
     }
 
     /// The mean reach of 34 kt as forecast, at least that of a storm just of gale force, n mi.
     #[must_use]
     pub fn usual_gale_nmi(&self) -> f64 {
-        self.usual_nmi[0]
+        libm::exp(self.log_usual[0])
     }
 
     /// The reach in n mi of the three given speeds for a realisation of greatest wind `wind_kt` and the size
@@ -142,9 +142,9 @@ impl Expected {
             if wind_kt < speed {
                 break;
             }
-            let (own, usual) = (self.ratios[i], self.usual_nmi[i]);
-            let grown = reach_nmi(speed, wind_kt, self.latitude) / usual;
-            let scale = size * usual * libm::exp(self.follows * libm::log(grown));
+            let (own, usual) = (self.ratios[i], self.log_usual[i]);
+            let grown = log_reach(speed, wind_kt, self.latitude) - usual;
+            let scale = size * libm::exp(usual + self.follows * grown);
             let mean = own.iter().sum::<f64>() / 4.0;
             let filled = own.map(|ratio| (ratio + stronger * (mean - ratio).max(0.0)) * scale);
             // A stronger wind never reaches beyond a weaker one.
