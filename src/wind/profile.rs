@@ -17,7 +17,7 @@ const OUTER_EXPONENT: (f64, f64) = (0.4, 1.0);
 const JUST_BELOW_KT: f64 = 0.1;
 
 /// ln(50 / 34).
-const LOG_50_OVER_34: f64 = 0.385_662_480_811_985_05;
+const LOG_50_OVER_34: f64 = 0.385_662_480_811_984_73;
 
 /// The exponent x of v = c r^-x through (r1, v1) and (r2, v2): x = ln(v2 / v1) / ln(r1 / r2).
 #[must_use]
