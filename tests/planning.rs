@@ -211,7 +211,10 @@ fn changes_name_what_moved_and_why() {
     assert_eq!(changes.news.len(), 1);
     assert!(changes.moved.iter().all(|moved| !moved.cause.is_empty()));
     assert!(changes.moved.iter().all(|moved| moved.by().get().abs() >= 10), "{:?}", changes.moved);
-    assert!(changes.turned.iter().all(|turned| turned.turn != Turn::Relieved));
+    // P1 is the only pilot for the larger ship.
+    let ship = changes.turned.iter().find(|turned| turned.id == "V01/sail").unwrap();
+    assert_eq!(ship.turn, Turn::GivenUp);
+    assert!(ship.cause.contains("P1 out of service"), "{}", ship.cause);
 }
 
 #[test]

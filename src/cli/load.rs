@@ -18,6 +18,7 @@ use crate::rules::stage::Rules;
 use crate::time::moment::Moment;
 use crate::work::expand::expand;
 use crate::work::graph::WorkGraph;
+use crate::work::strangers::strangers;
 use std::collections::BTreeMap;
 use std::path::Path;
 
@@ -113,6 +114,9 @@ pub fn examine(path: &Path) -> Result<Examined, Failure> {
     let (events, event_findings) =
         folder.files.get("events.toml").map(|source| read_events(source, clock.as_ref())).unwrap_or_default();
     findings.extend(event_findings);
+    if let Some((port, rules, work)) = &things {
+        findings.extend(strangers(port, rules, work, &events));
+    }
     let mut sources: Vec<SourceText> = folder.files.values().cloned().collect();
     let forecasts = read_forecasts(&folder, &events, &mut findings, &mut sources)?;
     findings.extend(out_of_order(&events, &forecasts));

@@ -70,6 +70,9 @@ fn write_relief(page: &mut Page, times: &Times, relief: &Relief) {
         page.text(4, &format!("{}{price}", step.what));
     }
     let mut outcome = format!("Then these fit: {}.", relief.relieves.join(", "));
+    if !relief.gives_up.is_empty() {
+        outcome.push_str(&format!(" Given up instead, of less weight: {}.", relief.gives_up.join(", ")));
+    }
     if !relief.leaves.is_empty() {
         outcome.push_str(&format!(" Still without a place: {}.", relief.leaves.join(", ")));
     }

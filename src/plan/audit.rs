@@ -3,36 +3,18 @@
 //! It shares no code with the engine and never sees the engine's problem. Every plan passes it before it is shown; a
 //! plan that does not pass is shown with what was found.
 
+use crate::plan::audit_case::{AuditInputs, breach, holds_time};
 use crate::plan::audit_people::people;
 use crate::plan::audit_record::record;
 use crate::plan::audit_times::times;
 use crate::plan::audit_water::water;
 use crate::plan::roles::GRACE;
 use crate::plan::sheet::{Breach, Plan, TaskLine, TaskState};
-use crate::port::harbour::Port;
-use crate::record::situation::Situation;
-use crate::rules::stage::Rules;
 use crate::rules::task::{IfGivenUp, LinkKind};
 use crate::time::moment::{Minutes, Moment};
-use crate::work::graph::{Edge, WorkGraph};
-use crate::work::reckoned::ArrivalBook;
+use crate::work::graph::Edge;
 use petgraph::visit::EdgeRef;
 use std::collections::BTreeMap;
-
-/// What a plan is held against.
-#[derive(Clone, Copy, Debug)]
-pub struct AuditInputs<'a> {
-    /// The port.
-    pub port: &'a Port,
-    /// Its rules.
-    pub rules: &'a Rules,
-    /// The graph.
-    pub work: &'a WorkGraph,
-    /// The record.
-    pub situation: &'a Situation,
-    /// Working arrivals.
-    pub book: &'a ArrivalBook<'a>,
-}
 
 /// Everything wrong with a plan, sorted; empty for a sound one.
 #[must_use]
@@ -50,20 +32,6 @@ pub fn audit(inputs: AuditInputs<'_>, plan: &Plan) -> Vec<Breach> {
     breaches.sort();
     breaches.dedup();
     breaches
-}
-
-/// A breach in one line.
-pub fn breach(code: &'static str, about: &str, what: String) -> Breach {
-    Breach { code, about: about.to_owned(), what }
-}
-
-/// Whether a task holds a time in the plan.
-#[must_use]
-pub fn holds_time(state: TaskState) -> bool {
-    match state {
-        TaskState::Planned | TaskState::Started | TaskState::Done => true,
-        TaskState::GivenUp | TaskState::Waiting | TaskState::NotNeeded => false,
-    }
 }
 
 /// Every task of the graph stands in the plan once, and nothing else does.

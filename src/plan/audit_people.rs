@@ -1,6 +1,6 @@
 //! The audit of people and craft: who they are, whether they can, whether they are free, and whether they have rested.
 
-use crate::plan::audit::{AuditInputs, breach, holds_time};
+use crate::plan::audit_case::{AuditInputs, breach, holds_time};
 use crate::plan::sheet::{Breach, Plan, TaskLine, TaskState};
 use crate::port::means::{Member, Pool, Shift};
 use crate::time::moment::Moment;

@@ -1,6 +1,6 @@
 //! The audit against the record: what is done stays done, and no order is moved or dropped.
 
-use crate::plan::audit::{AuditInputs, breach};
+use crate::plan::audit_case::{AuditInputs, breach};
 use crate::plan::sheet::{Breach, Plan, TaskState};
 use crate::record::situation::Outcome;
 use crate::time::moment::Moment;

@@ -1,6 +1,6 @@
 //! The audit of times: gates, releases, deadlines, stages, and the chances that a plan shows.
 
-use crate::plan::audit::{AuditInputs, breach};
+use crate::plan::audit_case::{AuditInputs, breach};
 use crate::plan::sheet::{Breach, Plan, StageStatus, TaskLine, TaskState};
 use crate::record::situation::{Situation, Way};
 use crate::rules::limit::{Anchor, Binding};

@@ -1,7 +1,7 @@
 //! The audit of water, light and channel, at second precision.
 
 use crate::geo::daylight::{SunLimit, sun_altitude};
-use crate::plan::audit::{AuditInputs, breach, holds_time};
+use crate::plan::audit_case::{AuditInputs, breach, holds_time};
 use crate::plan::sheet::{Breach, Plan, TaskLine, TaskState};
 use crate::rules::task::DaylightNeed;
 use crate::time::moment::Moment;

@@ -259,11 +259,17 @@ impl Teller<'_> {
         Some(TaskTurned { id: new.id.clone(), name: new.name.clone(), turn, cause })
     }
 
-    /// What moved the deadline that a newly given-up task misses.
+    /// What was said of a newly given-up task or its members, else what moved the deadline that it misses.
     fn because_of(&self, old: &TaskLine, new: &TaskLine) -> String {
+        let members = old.members.iter().flat_map(|(_, members)| members);
+        let told = std::iter::once(self.said_about(MentionKind::Task, &new.id))
+            .chain(members.map(|member| self.said_about(MentionKind::Member, member)));
+        if let Some(said) = told.flatten().next() {
+            return format!("; {said}");
+        }
         match (old.deadline, new.deadline) {
             (was, Some(is)) if was != Some(is) => format!("; {} moved its deadline", self.arrival_cause()),
-            _ => String::new(),
+            (_, Some(_) | None) => String::new(),
         }
     }
 

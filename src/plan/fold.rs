@@ -3,8 +3,10 @@
 use crate::advisory::forecast::Advisory;
 use crate::arrival::errors::ErrorTables;
 use crate::arrival::odds::{Answers, Draw, ask};
+use crate::plan::audit::audit;
+use crate::plan::audit_case::AuditInputs;
 use crate::plan::make::{Forecast, MakeInputs, make};
-use crate::plan::sheet::Plan;
+use crate::plan::sheet::{Breach, Plan};
 use crate::port::harbour::Port;
 use crate::record::event::Event;
 use crate::record::situation::{Situation, situation};
@@ -87,17 +89,7 @@ fn plan_then(
     with_reliefs: bool,
 ) -> Plan {
     let forecast = forecast_in_force(inputs.forecasts, odds, then);
-    let adopted = then.adopted.iter().map(|(place, adopted)| {
-        let answers = adopted.advisory_file.as_ref().and_then(|file| odds.get(file));
-        let time = Moment::at_or_before(adopted.time);
-        (place.clone(), AdoptedArrival { wind: adopted.wind, time, answers })
-    });
-    let book = ArrivalBook {
-        port: inputs.port,
-        answers: forecast.as_ref().map(|forecast| forecast.answers),
-        adopted: adopted.collect(),
-        usual: inputs.rules.reckoning,
-    };
+    let book = arrival_book(inputs, odds, then, forecast.as_ref());
     make(MakeInputs {
         port: inputs.port,
         rules: inputs.rules,
@@ -109,6 +101,36 @@ fn plan_then(
         effort: inputs.effort,
         with_reliefs,
     })
+}
+
+/// Audits any plan against the record up to its own time: for plans that were made elsewhere, or by hand.
+#[must_use]
+pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
+    let then = situation(inputs.events, plan.now.to_utc());
+    let odds = all_odds(inputs, &then);
+    let forecast = forecast_in_force(inputs.forecasts, &odds, &then);
+    let book = arrival_book(inputs, &odds, &then, forecast.as_ref());
+    let Inputs { port, rules, work, .. } = *inputs;
+    audit(AuditInputs { port, rules, work, situation: &then, book: &book }, plan)
+}
+
+fn arrival_book<'a>(
+    inputs: &Inputs<'a>,
+    odds: &'a BTreeMap<String, Answers>,
+    then: &Situation,
+    forecast: Option<&Forecast<'a>>,
+) -> ArrivalBook<'a> {
+    let adopted = then.adopted.iter().map(|(place, adopted)| {
+        let answers = adopted.advisory_file.as_ref().and_then(|file| odds.get(file));
+        let time = Moment::at_or_before(adopted.time);
+        (place.clone(), AdoptedArrival { wind: adopted.wind, time, answers })
+    });
+    ArrivalBook {
+        port: inputs.port,
+        answers: forecast.map(|forecast| forecast.answers),
+        adopted: adopted.collect(),
+        usual: inputs.rules.reckoning,
+    }
 }
 
 /// The newest of the advisories taken: by issue time, a correction after what it corrects, then as they were taken.

@@ -3,7 +3,8 @@
 use crate::advisory::forecast::Advisory;
 use crate::arrival::odds::Answers;
 use crate::plan::adjust::Adjustments;
-use crate::plan::audit::{AuditInputs, audit};
+use crate::plan::audit::audit;
+use crate::plan::audit_case::AuditInputs;
 use crate::plan::draft::{Draft, DraftInputs, draft};
 use crate::plan::heads;
 use crate::plan::lines::{LineInputs, lines};

@@ -2,6 +2,7 @@
 
 pub mod adjust;
 pub mod audit;
+pub mod audit_case;
 pub mod audit_people;
 pub mod audit_record;
 pub mod audit_times;

@@ -19,9 +19,9 @@ pub fn permitted(inputs: DraftInputs<'_>, plain: &Draft) -> Adjustments {
         return plain.adjustments.clone();
     }
     let cuts = cuttable(inputs, plain, &missed, Leave::Permitted);
-    let (with_cuts, missed) = fewest(inputs, plain, cuts, &missed);
-    let mut chosen = with_cuts;
-    for id in &missed {
+    let with_cuts = fewest(inputs, plain, cuts);
+    let mut chosen = with_cuts.adjustments.clone();
+    for id in &with_cuts.misses(inputs.work) {
         let is_permitted = inputs
             .work
             .task(id)
@@ -44,9 +44,9 @@ pub fn reliefs(inputs: DraftInputs<'_>, base: &Draft, plan: &Plan) -> Vec<Relief
     let finder = Finder { inputs, base, plan, missed: &missed };
     let mut found = Vec::new();
     let cuts = cuttable(inputs, base, &missed, Leave::ByOrder);
-    let (choice, left) = fewest(inputs, base, cuts, &missed);
-    if left.len() < missed.len() {
-        found.extend(finder.relief(&choice));
+    let with_cuts = fewest(inputs, base, cuts);
+    if with_cuts.adjustments != base.adjustments {
+        found.extend(finder.relief(&with_cuts.adjustments));
     }
     for choice in finder.single_choices() {
         found.extend(finder.relief(&choice));
@@ -73,30 +73,27 @@ fn cuttable(inputs: DraftInputs<'_>, base: &Draft, missed: &BTreeSet<String>, le
     cuts.into_iter().map(|(_, id)| id).collect()
 }
 
-/// With all of `cuts`, and then with as few of them as miss no more than all do: the choices and what is missed.
-fn fewest(
-    inputs: DraftInputs<'_>,
-    base: &Draft,
-    cuts: Vec<String>,
-    missed: &BTreeSet<String>,
-) -> (Adjustments, BTreeSet<String>) {
-    let mut choice = base.adjustments.clone();
-    choice.cut.extend(cuts.iter().cloned());
-    let with_all = draft(inputs, &choice).misses(inputs.work);
-    if cuts.is_empty() || with_all.len() >= missed.len() {
-        return (base.adjustments.clone(), missed.clone());
+/// The plan with all of `cuts`, and then with as few of them as give up and delay no more than all do; the plan in hand
+/// if they do not help.
+fn fewest(inputs: DraftInputs<'_>, base: &Draft, cuts: Vec<String>) -> Draft {
+    let mut adjustments = base.adjustments.clone();
+    adjustments.cut.extend(cuts.iter().cloned());
+    if cuts.is_empty() {
+        return base.clone();
     }
-    let mut best = with_all;
+    let mut best = draft(inputs, &adjustments);
+    if best.schedule.score.classes >= base.schedule.score.classes {
+        return base.clone();
+    }
     for cut in &cuts {
-        let mut fewer = choice.clone();
+        let mut fewer = best.adjustments.clone();
         fewer.cut.remove(cut);
-        let misses = draft(inputs, &fewer).misses(inputs.work);
-        if misses.len() <= best.len() {
-            best = misses;
-            choice = fewer;
+        let tried = draft(inputs, &fewer);
+        if tried.schedule.score.classes <= best.schedule.score.classes {
+            best = tried;
         }
     }
-    (choice, best)
+    best
 }
 
 /// The missed tasks and everything they wait for.
@@ -153,52 +150,61 @@ impl Finder<'_> {
         choices
     }
 
-    /// The relief that a choice is, if it helps.
+    /// The relief that a choice is, if with it less is given up or late, by weight, than without.
     fn relief(&self, choice: &Adjustments) -> Option<Relief> {
-        let still_missed = self.missed_at(choice, self.inputs.now)?;
-        let relieves: BTreeSet<String> = self.missed.difference(&still_missed).cloned().collect();
-        if relieves.is_empty() || still_missed.iter().any(|id| !self.missed.contains(id)) {
+        let tried = draft(self.inputs, choice);
+        let is_order_lost = tried.clashes.len() > self.base.clashes.len();
+        if is_order_lost || tried.schedule.score.classes >= self.base.schedule.score.classes {
             return None;
         }
-        let decide_by = self.decide_by(choice, &relieves);
+        let missed = tried.misses(self.inputs.work);
+        let relieves: BTreeSet<String> = self.missed.difference(&missed).cloned().collect();
+        if relieves.is_empty() {
+            return None;
+        }
+        let decide_by = self.decide_by(choice, &relieves, &missed);
         Some(Relief {
             steps: self.steps(choice),
             relieves: relieves.into_iter().collect(),
-            leaves: still_missed.into_iter().collect(),
+            leaves: missed.intersection(self.missed).cloned().collect(),
+            gives_up: missed.difference(self.missed).cloned().collect(),
             decide_by,
         })
     }
 
-    /// What is missed when the choice is made at `when`, the plan in hand being carried out until then.
-    fn missed_at(&self, choice: &Adjustments, when: Moment) -> Option<BTreeSet<String>> {
-        let later = when > self.inputs.now;
-        let inputs = DraftInputs {
-            now: when,
-            carried_out: if later { Some(self.plan) } else { self.inputs.carried_out },
-            ..self.inputs
-        };
-        let tried = draft(inputs, choice);
-        let lost_order = tried.clashes.len() > self.base.clashes.len();
-        (!lost_order).then(|| tried.misses(self.inputs.work))
-    }
-
-    fn helps_at(&self, choice: &Adjustments, relieves: &BTreeSet<String>, when: Moment) -> bool {
-        self.missed_at(choice, when).is_some_and(|missed| {
-            relieves.is_disjoint(&missed) && missed.iter().all(|id| self.missed.contains(id))
-        })
+    /// Whether the choice made at `when` still relieves as much and gives up no more, the plan in hand being carried out
+    /// until then.
+    fn helps_at(
+        &self,
+        choice: &Adjustments,
+        (relieves, missed): (&BTreeSet<String>, &BTreeSet<String>),
+        when: Moment,
+    ) -> bool {
+        let tried = draft(DraftInputs { now: when, carried_out: Some(self.plan), ..self.inputs }, choice);
+        let then = tried.misses(self.inputs.work);
+        let is_order_lost = tried.clashes.len() > self.base.clashes.len();
+        !is_order_lost
+            && relieves.is_disjoint(&then)
+            && then.iter().all(|id| self.missed.contains(id) || missed.contains(id))
     }
 
     /// The last minute at which the choice still helps: steps of an hour until it does not, then halving.
     ///
     /// Tides and rest can make a later decision help where an earlier one does not; people are told the end of the first
     /// unbroken stretch, the safe side.
-    fn decide_by(&self, choice: &Adjustments, relieves: &BTreeSet<String>) -> Moment {
+    fn decide_by(
+        &self,
+        choice: &Adjustments,
+        relieves: &BTreeSet<String>,
+        missed: &BTreeSet<String>,
+    ) -> Moment {
+        let helps = |when| self.helps_at(choice, (relieves, missed), when);
         let start = self.inputs.now;
         let mut good = start;
         let mut bad = start + Minutes::hours(72);
         let mut probe = start + Minutes::hours(1);
         while probe < bad {
-            if self.helps_at(choice, relieves, probe) {
+            if helps(probe) {
                 good = probe;
                 probe = probe + Minutes::hours(1);
             } else {
@@ -207,7 +213,7 @@ impl Finder<'_> {
         }
         while (bad - good).get() > 1 {
             let middle = good + Minutes::new((bad - good).get() / 2);
-            if self.helps_at(choice, relieves, middle) { good = middle } else { bad = middle }
+            if helps(middle) { good = middle } else { bad = middle }
         }
         good
     }

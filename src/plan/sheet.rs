@@ -259,6 +259,8 @@ pub struct Relief {
     pub relieves: Vec<String>,
     /// Given-up tasks that it does not help.
     pub leaves: Vec<String>,
+    /// Tasks of less weight that are given up instead.
+    pub gives_up: Vec<String>,
     /// The last minute at which deciding it still makes them fit.
     pub decide_by: Moment,
 }

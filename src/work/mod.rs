@@ -5,4 +5,5 @@ pub mod expand;
 pub mod graph;
 pub mod questions;
 pub mod reckoned;
+pub mod strangers;
 pub mod timed;

@@ -245,6 +245,7 @@ pub fn rich() -> Plan {
             ],
             relieves: vec!["V01/sail".into()],
             leaves: vec!["V08/sail".into()],
+            gives_up: Vec::new(),
             decide_by: at(17, 12, 3),
         }],
         duties: vec![DutyLine {

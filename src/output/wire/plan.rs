@@ -94,6 +94,8 @@ pub struct ReliefOut {
     pub relieves: Vec<String>,
     /// Given-up tasks that it does not help.
     pub leaves: Vec<String>,
+    /// Tasks of less weight that are given up instead.
+    pub gives_up: Vec<String>,
     /// The last minute at which deciding it still helps.
     pub decide_by: String,
 }
@@ -251,6 +253,7 @@ pub fn relief(relief: &Relief) -> ReliefOut {
             .collect(),
         relieves: relief.relieves.clone(),
         leaves: relief.leaves.clone(),
+        gives_up: relief.gives_up.clone(),
         decide_by: time(relief.decide_by),
     }
 }
