@@ -207,7 +207,7 @@ fn changes_name_what_moved_and_why() {
     let reading = port_with(&out);
     let history = reading.plans("2026-09-17T12:31-03:00");
     let earlier = &history.plans[0];
-    let changes = changes_between(earlier, history.latest().unwrap(), &reading.events);
+    let changes = changes_between(earlier, history.latest().unwrap(), &reading.events, &reading.port.clock);
     assert_eq!(changes.news.len(), 1);
     assert!(changes.moved.iter().all(|moved| !moved.cause.is_empty()));
     assert!(changes.moved.iter().all(|moved| moved.by().get().abs() >= 10), "{:?}", changes.moved);

@@ -66,7 +66,7 @@ pub fn run(args: &ChangesArgs) -> Result<Exit, Failure> {
     }
     // The earlier plan ages by the clock too, so it is made for its own moment.
     let before = plans_until(&loaded, from);
-    let changes = changes_between(latest(&before)?, later, &loaded.events);
+    let changes = changes_between(latest(&before)?, later, &loaded.events, &loaded.port.clock);
     if args.json {
         show(&to_text(&changes_out(&changes, &setting))?)?;
     } else {

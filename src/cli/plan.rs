@@ -53,7 +53,8 @@ pub fn run(args: &PlanArgs) -> Result<Exit, Failure> {
     let plan = latest(&history)?;
     if args.json {
         let earlier = compared_with(&loaded, now).and_then(|moment| history.at(moment));
-        let changes = earlier.map(|earlier| changes_between(earlier, plan, &loaded.events));
+        let changes =
+            earlier.map(|earlier| changes_between(earlier, plan, &loaded.events, &loaded.port.clock));
         show(&to_text(&plan_out(plan, &setting, changes.as_ref()))?)?;
     } else {
         show(&plan_text(plan, &setting, width(args.width)))?;

@@ -73,6 +73,7 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
         before,
         now,
         carried_out: None,
+        hints: None,
         forecast_end,
         effort,
     };
@@ -117,11 +118,8 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
 /// task puts no limit on those that it waits for.
 fn latest_starts(draft: &Draft) -> Vec<Option<Moment>> {
     let mut problem = draft.stated.problem.clone();
-    for (task, outcome) in problem.tasks.iter_mut().zip(&draft.schedule.outcomes) {
-        if matches!(outcome, Outcome::GivenUp(_)) {
-            (task.deadline, task.due) = (None, None);
-        }
-    }
+    let is_given_up = |task: usize| matches!(draft.schedule.outcomes.get(task), Some(Outcome::GivenUp(_)));
+    problem.links.retain(|link| !is_given_up(link.before) && !is_given_up(link.after));
     let by = |limits| latest(&problem, limits, &[]).unwrap_or_default();
     let start = |latest: &Latest| match latest {
         Latest::By(ends) => Some(ends.start),
