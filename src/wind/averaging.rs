@@ -79,8 +79,9 @@ pub fn gust_factor(class: ExposureClass, period: Averaging, within: u32) -> Opti
 /// highest minute of a storm to its highest 10-min mean.
 ///
 /// ```
+/// use snugdown::geo::exposure::ExposureClass;
 /// use snugdown::units::wind::Averaging;
-/// use snugdown::wind::averaging::{ExposureClass, conversion};
+/// use snugdown::wind::averaging::conversion;
 /// // A storm's 50 kt over 1 min at sea are 46.5 kt over 10 min, with gusts of 55.5 kt.
 /// let at_sea = |to| 50.0 * conversion(ExposureClass::AtSea, Averaging::Minute1, to);
 /// assert!((at_sea(Averaging::Minute10) - 46.5).abs() < 0.2);
