@@ -4,6 +4,7 @@ use crate::plan::adjust::Adjustments;
 use crate::plan::problem::{Hints, ProblemInputs, Stated, state};
 use crate::plan::roles::{Role, RoleInputs, roles};
 use crate::plan::sheet::{Clash, Plan, TaskState};
+use crate::plan::waters::Waters;
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::schedule::outcome::{Outcome, Schedule, Score};
@@ -20,6 +21,8 @@ use std::collections::{BTreeMap, BTreeSet};
 pub struct DraftInputs<'a> {
     /// The port.
     pub port: &'a Port,
+    /// Its tide and daylight.
+    pub waters: &'a Waters,
     /// The graph.
     pub work: &'a WorkGraph,
     /// Its times.
@@ -61,12 +64,23 @@ pub struct Draft {
 /// out as a plan in which nothing is placed and the refusal is named as a clash: shown, not hidden.
 #[must_use]
 pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
-    let DraftInputs { port, work, timed, situation, before, now, carried_out, hints, forecast_end, effort } =
-        inputs;
+    let DraftInputs {
+        port,
+        waters,
+        work,
+        timed,
+        situation,
+        before,
+        now,
+        carried_out,
+        hints,
+        forecast_end,
+        effort,
+    } = inputs;
     let roles = roles(RoleInputs { work, timed, situation, before, adjustments, now, carried_out });
     let before = carried_out.or(before);
     let problem_inputs =
-        ProblemInputs { port, work, timed, situation, before, hints, adjustments, now, forecast_end };
+        ProblemInputs { port, waters, work, timed, situation, before, hints, adjustments, now, forecast_end };
     let mut stated = state(problem_inputs, &roles);
     let mut clashes = Vec::new();
     let mut schedule = solved(&stated.problem, effort, &mut clashes);

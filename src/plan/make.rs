@@ -11,6 +11,7 @@ use crate::plan::heads;
 use crate::plan::lines::{LineInputs, lines};
 use crate::plan::relief::{permitted, reliefs};
 use crate::plan::sheet::{AdvisoryInForce, Clash, Plan};
+use crate::plan::waters::Waters;
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::rules::stage::Rules;
@@ -42,6 +43,8 @@ pub struct Forecast<'a> {
 pub struct MakeInputs<'a> {
     /// The port.
     pub port: &'a Port,
+    /// Its tide and daylight.
+    pub waters: &'a Waters,
     /// Its rules.
     pub rules: &'a Rules,
     /// The graph of its tasks and stages.
@@ -63,12 +66,14 @@ pub struct MakeInputs<'a> {
 /// Makes the plan. Pure: the same inputs give the same plan.
 #[must_use]
 pub fn make(inputs: MakeInputs<'_>) -> Plan {
-    let MakeInputs { port, rules, work, situation, forecast, book, before, effort, with_reliefs } = inputs;
+    let MakeInputs { port, waters, rules, work, situation, forecast, book, before, effort, with_reliefs } =
+        inputs;
     let now = Moment::at_or_after(situation.now);
     let timed = timed(work, rules, book, situation);
     let forecast_end = forecast.map(|f| Moment::at_or_after(f.advisory.last_valid()));
     let draft_inputs = DraftInputs {
         port,
+        waters,
         work,
         timed: &timed,
         situation,

@@ -20,3 +20,4 @@ pub mod problem;
 pub mod relief;
 pub mod roles;
 pub mod sheet;
+pub mod waters;

@@ -1,16 +1,14 @@
 //! From the timed work graph to the engine's whole-minute problem.
 
-use crate::geo::daylight::{SunLimit, daylight};
 use crate::plan::adjust::Adjustments;
 use crate::plan::roles::Role;
 use crate::plan::sheet::{Plan, TaskState};
+use crate::plan::waters::Waters;
 use crate::port::harbour::Port;
 use crate::port::means::{Member as PortMember, Shift};
 use crate::record::situation::Situation;
 use crate::rules::task::{DaylightNeed, IfGivenUp, LinkKind, Stake, TideNeed};
 use crate::schedule::problem as engine;
-use crate::tide::under_keel::needed_level;
-use crate::tide::window::windows_above;
 use crate::time::local::LocalTime;
 use crate::time::moment::{Minutes, Moment};
 use crate::time::span::Span;
@@ -49,6 +47,8 @@ pub type Hints = BTreeMap<NodeIndex, engine::Issued>;
 pub struct ProblemInputs<'a> {
     /// The port.
     pub port: &'a Port,
+    /// Its tide and daylight.
+    pub waters: &'a Waters,
     /// The graph.
     pub work: &'a WorkGraph,
     /// Its times.
@@ -250,33 +250,16 @@ impl Stater<'_> {
         Some(engine::LaneUse { lane, enter: passage.enters, leave: passage.leaves, direction, class: *class })
     }
 
-    /// The minutes in which a ship may start so that there is water enough over the whole of the shallow part.
     fn tide_window(&mut self, need: &TideNeed, draught: Metres) -> usize {
-        let port = self.inputs.port;
-        let (from, to) = (self.inputs.now - Minutes::hours(1), self.horizon);
+        let ProblemInputs { port, waters, .. } = self.inputs;
         let words = format!("the tide in {} for {draught}", need.channel);
         let key = format!("{words} {} {}", need.from.get(), need.until.get());
-        self.window(key, words, || {
-            let (Some(channel), Some(tide)) = (port.channel(&need.channel), port.tide.as_ref()) else {
-                return WindowSet::never();
-            };
-            let level = needed_level(draught, channel.depth, channel.under_keel, Metres::ZERO);
-            let enough = windows_above(tide, level, from + need.from, to + need.until);
-            let starts = enough.spans().iter().filter_map(|span| {
-                // Half-open on both sides: the last minute of the passage may be the last with water enough.
-                Span::new(span.start() - need.from, span.end() - need.until)
-            });
-            WindowSet::from_spans(starts)
-        })
+        self.window(key, words, || waters.starts_afloat(port, need, draught))
     }
 
     fn daylight_window(&mut self) -> usize {
-        let port = self.inputs.port;
-        let (from, to) = (self.inputs.now - Minutes::hours(24), self.horizon);
-        let here = port.place(&port.reference).map(|place| place.position);
-        self.window(String::from("daylight"), String::from("daylight"), || {
-            here.map_or_else(WindowSet::never, |position| daylight(position, from, to, SunLimit::Sunrise))
-        })
+        let waters = self.inputs.waters;
+        self.window(String::from("daylight"), String::from("daylight"), || waters.daylight().clone())
     }
 
     fn window(&mut self, key: String, words: String, make: impl FnOnce() -> WindowSet) -> usize {
