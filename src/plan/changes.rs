@@ -1,5 +1,6 @@
 //! What changed between two plans, and why.
 
+use crate::plan::draft::LEAST_SPARE;
 use crate::plan::news::news_words;
 use crate::plan::sheet::{Arrival, Plan, StageLine, StageStatus, TaskLine, TaskState};
 use crate::record::event::Event;
@@ -296,21 +297,21 @@ impl Teller<'_> {
         {
             return format!("stage {stage}: {}", moved.cause);
         }
+        let is_earlier = matches!((old.start, new.start), (Some(was), Some(is)) if is < was);
+        let spare = old.start.zip(new.latest_start).map(|(was, latest)| latest - was);
+        if is_earlier && spare.is_some_and(|spare| spare < LEAST_SPARE) {
+            return format!("its issued time left less than {LEAST_SPARE} to spare");
+        }
         if let Some(last) = new.chain.last() {
             return last.what.clone();
         }
         if old.deadline != new.deadline {
             return self.arrival_cause();
         }
-        match (old.start, new.start) {
-            (Some(was), Some(is)) if is < was => {
-                String::from("it can go earlier now, and must for what waits for it")
-            }
-            _ => self
-                .between
-                .last()
-                .map_or_else(|| String::from("the clock"), |event| news_words(event, self.clock)),
+        if is_earlier {
+            return String::from("it can go earlier now, and must for what waits for it");
         }
+        self.between.last().map_or_else(|| String::from("the clock"), |event| news_words(event, self.clock))
     }
 
     /// The last thing that was said of something between the two plans.

@@ -1,16 +1,17 @@
 //! One try at a plan: roles, problem and schedule under given choices.
 
 use crate::plan::adjust::Adjustments;
-use crate::plan::problem::{Hints, ProblemInputs, Stated, state};
+use crate::plan::problem::{Hints, LEAST_MOVE, ProblemInputs, Stated, state};
 use crate::plan::roles::{Role, RoleInputs, roles};
 use crate::plan::sheet::{Clash, Plan, TaskState};
 use crate::plan::waters::Waters;
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
-use crate::schedule::outcome::{Outcome, Schedule, Score};
+use crate::schedule::latest::{Limits, latest};
+use crate::schedule::outcome::{Cause, Outcome, Placement, Schedule, Score};
 use crate::schedule::problem::{Fixed, Issued, Problem};
 use crate::schedule::search::{Effort, solve};
-use crate::time::moment::Moment;
+use crate::time::moment::{Minutes, Moment};
 use crate::work::graph::WorkGraph;
 use crate::work::timed::Timed;
 use petgraph::graph::NodeIndex;
@@ -95,7 +96,43 @@ pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
         }
         schedule = solved(&stated.problem, effort, &mut clashes);
     }
+    let schedule = with_spare(&mut stated.problem, schedule, effort);
     Draft { roles, stated, schedule, adjustments: adjustments.clone(), clashes }
+}
+
+/// An issued time that leaves less than this before the latest start is given up for an earlier one, if there is one.
+/// Our choice: in a gale's last hours nothing should hang on a single hour.
+pub const LEAST_SPARE: Minutes = Minutes::hours(1);
+
+/// Lets issued tasks that have hardly any spare left, and could go earlier, go earlier; nothing may be given up or late
+/// for it.
+fn with_spare(problem: &mut Problem, schedule: Schedule, effort: Effort) -> Schedule {
+    let latest = latest(problem, Limits::Deadlines, &[]).unwrap_or_default();
+    let is_tight = |position: usize, placement: &Placement| {
+        let kept = placement.steps.iter().filter(|step| step.cause == Cause::Issued).map(|step| step.wait);
+        let could_gain = kept.fold(Minutes::ZERO, |sum, wait| sum + wait) >= LEAST_MOVE;
+        let spare = latest.get(position).and_then(|latest| latest.spare(placement.start));
+        could_gain && spare.is_some_and(|spare| spare < LEAST_SPARE)
+    };
+    let tight: Vec<usize> = (0..problem.tasks.len())
+        .filter(|position| schedule.placement(*position).is_some_and(|placed| is_tight(*position, placed)))
+        .collect();
+    if tight.is_empty() {
+        return schedule;
+    }
+    let mut freed = problem.clone();
+    for position in tight {
+        if let Some(task) = freed.tasks.get_mut(position) {
+            task.issued = None;
+        }
+    }
+    match solve(&freed, effort) {
+        Ok(earlier) if earlier.score.classes <= schedule.score.classes => {
+            *problem = freed;
+            earlier
+        }
+        Ok(_) | Err(_) => schedule,
+    }
 }
 
 fn solved(problem: &Problem, effort: Effort, clashes: &mut Vec<Clash>) -> Schedule {
