@@ -1,9 +1,8 @@
 //! `snugdown completions`: what a shell completes.
 
-use crate::cli::args::Args as Whole;
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::screen::show;
-use clap::{Args, CommandFactory};
+use clap::{Args, Command};
 use clap_complete::{Shell, generate};
 
 /// What `completions` is asked.
@@ -13,13 +12,13 @@ pub struct CompletionsArgs {
     pub shell: Shell,
 }
 
-/// Writes the completions.
+/// Writes the completions of the whole program.
 ///
 /// # Errors
 /// [`Failure::Write`].
-pub fn run(args: &CompletionsArgs) -> Result<Exit, Failure> {
+pub fn run(args: &CompletionsArgs, mut whole: Command) -> Result<Exit, Failure> {
     let mut script = Vec::new();
-    generate(args.shell, &mut Whole::command(), "snugdown", &mut script);
+    generate(args.shell, &mut whole, "snugdown", &mut script);
     show(&String::from_utf8_lossy(&script))?;
     Ok(Exit::Fits)
 }

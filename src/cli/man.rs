@@ -1,17 +1,15 @@
 //! `snugdown man`: the manual page.
 
-use crate::cli::args::Args;
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::screen::show;
-use clap::{Command, CommandFactory};
+use clap::Command;
 use clap_mangen::Man;
 
 /// Writes the page of the program, and behind it one section for each command.
 ///
 /// # Errors
 /// [`Failure::Write`].
-pub fn run() -> Result<Exit, Failure> {
-    let mut command = Args::command();
+pub fn run(mut command: Command) -> Result<Exit, Failure> {
     command.build();
     let mut page = Vec::new();
     Man::new(command.clone()).render(&mut page)?;
