@@ -161,6 +161,8 @@ fn a_ship_that_cannot_go_in_time_is_given_up_with_a_chain_that_adds_up_and_a_rel
     assert!(relieved.decide_by >= plan.now);
     assert!(!plan.fits());
     assert_eq!(plan.duties[0].state, DutyState::Missed);
+    // Her crane is pinned in time all the same, and her own loading has as long as it likes: no latest start is missed.
+    assert_eq!(plan.breaches, []);
 }
 
 #[test]

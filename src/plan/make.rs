@@ -114,14 +114,12 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
 }
 
 /// The latest start of each task that keeps the hard deadlines; where nothing hard limits it, the soft ones. A given-up
-/// task puts no limit on those that it waits for.
+/// task stands between none: what it waits for and what waits for it no longer limit each other.
 fn latest_starts(draft: &Draft) -> Vec<Option<Moment>> {
     let mut problem = draft.stated.problem.clone();
-    for (task, outcome) in problem.tasks.iter_mut().zip(&draft.schedule.outcomes) {
-        if matches!(outcome, Outcome::GivenUp(_)) {
-            (task.deadline, task.due) = (None, None);
-        }
-    }
+    let outcomes = &draft.schedule.outcomes;
+    let is_given_up = |task: usize| matches!(outcomes.get(task), Some(Outcome::GivenUp(_)));
+    problem.links.retain(|link| !is_given_up(link.before) && !is_given_up(link.after));
     let by = |limits| latest(&problem, limits, &[]).unwrap_or_default();
     let start = |latest: &Latest| match latest {
         Latest::By(ends) => Some(ends.start),
