@@ -4,7 +4,7 @@
 //! of 100 to 2,000 tasks.
 
 #![expect(clippy::print_stdout, reason = "a measuring program shows what it measured")]
-#![allow(clippy::unwrap_used, reason = "a measuring program that cannot measure must fail")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a measuring program that cannot measure must fail")]
 
 #[path = "../tests/common/mod.rs"]
 mod common;
@@ -91,7 +91,7 @@ fn told(plan: &Plan) -> String {
 /// Reading a folder and making all plans of its record, up to its exercise clock.
 fn whole_folder(folder: &Path) {
     let (ms, history) = timed(|| {
-        let loaded = load(folder).unwrap();
+        let loaded = load(folder).unwrap_or_else(|failure| panic!("{failure}"));
         let now = Moment::at_or_after(loaded.port.exercise.unwrap());
         plans_until(&loaded, now)
     });

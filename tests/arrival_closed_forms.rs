@@ -48,11 +48,13 @@ fn a_single_moment_gives_the_non_central_chi_square_chance_of_being_within_the_r
 
 #[test]
 fn a_track_with_a_constant_cross_error_reaches_a_place_with_the_normal_chance() {
-    // Passes 80 n mi off with sigma 60 and a radius of 120: P = Phi(40 / 60) - Phi(-200 / 60) = 0.7471, whatever the speed.
+    // Passes 80 n mi off with sigma 60 and a radius of 120: P = Phi(40 / 60) - Phi(-200 / 60) = 0.7471,
+    // whatever the speed.
     let storm = along_the_equator(10.0, 120.0, 600.0, 120);
     let question = ask_about("q", at(degrees(80.0), 0.0), 34.0);
     let answer = one(ask(&storm, &constant(0.0, 60.0), &[question], Draw::default()));
-    // One error frozen over the whole track, one scenario in each thousandth of its distribution: exact but for the last.
+    // One error frozen over the whole track, one scenario in each thousandth of its distribution: exact but
+    // for the last.
     assert!((answer.chance().get() - 0.7471).abs() < 0.0015, "{}", answer.chance().get());
 }
 
@@ -74,8 +76,9 @@ fn a_constant_along_error_spreads_the_onset_by_error_over_speed() {
 
 #[test]
 fn growing_correlated_errors_agree_with_an_independent_simulation() {
-    // 480 n mi ahead and 60 off the track, 10 kt, radius 100, sigma 6 at issue and the 2026 Atlantic ones after, correlation 0.85 in 12 h. An independent
-    // simulation of 200,000 cases at hourly steps: P = 0.847 (+- 0.003), onset 36 / 40 / 46 h, duration 8 / 15 / 20 h, single track 40 h.
+    // 480 n mi ahead and 60 off the track, 10 kt, radius 100, sigma 6 at issue and the 2026 Atlantic ones
+    // after, correlation 0.85 in 12 h. An independent simulation of 200,000 cases at hourly steps: P = 0.847
+    // (+- 0.003), onset 36 / 40 / 46 h, duration 8 / 15 / 20 h, single track 40 h.
     let rows = [0.0, 12.0, 24.0, 36.0, 48.0, 60.0, 72.0, 96.0, 120.0]
         .into_iter()
         .zip([6.0, 16.9, 26.3, 33.1, 41.8, 51.9, 64.1, 90.4, 134.9])

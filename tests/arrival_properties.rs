@@ -108,7 +108,8 @@ fn neither_the_order_of_the_questions_nor_other_questions_change_an_answer() {
     for answer in &all.answers {
         assert_eq!(Some(answer), reversed.get(&answer.key));
     }
-    // The peak is told where the place lies deepest within its lowest limit, so only onsets are compared with a question asked alone.
+    // The peak is told where the place lies deepest within its lowest limit, so only onsets are compared with
+    // a question asked alone.
     for question in questions() {
         let alone = ask(&storm, &table, std::slice::from_ref(&question), few);
         let (one, of_all) = (&alone.answers[0], get(&all, &question.key));
@@ -185,7 +186,8 @@ fn the_date_line_is_no_seam() {
     for (x, y) in a.answers.iter().zip(&b.answers) {
         assert_eq!(x.onsets.len(), y.onsets.len());
         for (p, q) in x.onsets.iter().zip(&y.onsets) {
-            // Longitudes are rounded differently in the last bit: an onset may fall on the other side of a whole minute.
+            // Longitudes are rounded differently in the last bit: an onset may fall on the other side of a
+            // whole minute.
             let near = match (p.onset, q.onset) {
                 (Onset::At(m), Onset::At(n)) => (m - n).get().abs() <= 1,
                 (m, n) => m == n,
@@ -209,7 +211,8 @@ fn a_gale_that_blows_at_issue_counts_at_once_and_gives_already() {
 #[test]
 fn below_thirty_onsets_there_is_no_quantile_and_more_are_drawn_first() {
     let storm = along_the_equator(10.0, 120.0, 480.0, 96);
-    // 120 + 2.5 x 30 off: about 0.6 % of the scenarios; 2.0 x 30: about 2.3 %; at most 1,000 are drawn or 10,000.
+    // 120 + 2.5 x 30 off: about 0.6 % of the scenarios; 2.0 x 30: about 2.3 %; at most 1,000 are drawn or
+    // 10,000.
     let rare = ask_about("rare", at(degrees(120.0 + 75.0), 0.0), 34.0);
     let scarce = ask_about("scarce", at(degrees(120.0 + 60.0), 0.0), 34.0);
     let far = ask_about("far", at(40.0, 0.0), 34.0);
@@ -235,7 +238,8 @@ fn below_thirty_onsets_there_is_no_quantile_and_more_are_drawn_first() {
 
 #[test]
 fn a_storm_still_drawing_near_when_the_forecast_ends_gives_no_latest_time() {
-    // The edge reaches the place at 48 h on the single track, where the forecast ends: half of the scenarios bring it by then, the rest would soon after.
+    // The edge reaches the place at 48 h on the single track, where the forecast ends: half of the scenarios
+    // bring it by then, the rest would soon after.
     let storm = along_the_equator(10.0, 120.0, 600.0, 48);
     let question = ask_about("q", at(0.0, 0.0), 34.0);
     let answer =
@@ -259,7 +263,8 @@ fn a_storm_that_dissipates_brings_no_gale_afterwards() {
         point(12.0, at(0.0, degrees(120.0)), 50.0, 80.0),
     ]);
     let question = ask_about("q", place, 34.0);
-    // Going on at 10 kt it would be there at 22 h or so; it is to be gone by 24 h and loses its gales on the way.
+    // Going on at 10 kt it would be there at 22 h or so; it is to be gone by 24 h and loses its gales on the
+    // way.
     storm.ends = Some(Ending::Dissipated(issue_time() + TimeDelta::hours(24)));
     let answer = &ask(&storm, &constant(0.0, 0.0), &[question], Draw { scenarios: 10, most: 10 }).answers[0];
     assert_eq!(answer.single_track, None);
@@ -363,8 +368,8 @@ fn the_eye_does_not_end_the_gale_but_is_told_as_a_lull() {
 
 #[test]
 fn a_no_skill_table_spreads_the_odds_and_keeps_their_order() {
-    // Stress table for tests only: mean errors of a forecast without skill, 45.1 to 426.6 n mi at 12 to 120 h (published mean errors of the climatology
-    // and persistence model, Atlantic 2020-2024), / sqrt(pi / 2).
+    // Stress table for tests only: mean errors of a forecast without skill, 45.1 to 426.6 n mi at 12 to 120 h
+    // (published mean errors of the climatology and persistence model, Atlantic 2020-2024), / sqrt(pi / 2).
     let rows = [0.0, 12.0, 24.0, 36.0, 48.0, 60.0, 72.0, 96.0, 120.0]
         .into_iter()
         .zip([10.0, 36.0, 76.4, 120.4, 162.1, 201.6, 235.7, 292.2, 340.4])

@@ -100,15 +100,15 @@ fn a_command_line_that_makes_no_sense_ends_with_code_2() {
 
 #[test]
 fn what_does_not_fit_goes_before_a_stale_forecast() {
-    let folder = port_with("late", &took("2026-09-16 12:05", "approach.txt"));
+    let folder = port_with("late", &took("2026-09-17 12:05", "approach.txt"));
     let path = folder.to_str().unwrap();
     for command in ["plan", "now"] {
-        let output = run(&[command, path, "--now", "2026-09-17 06:20"]);
+        let output = run(&[command, path, "--now", "2026-09-18 06:20"]);
         assert_eq!(output.status.code(), Some(4), "{command}");
         assert!(text(&output.stdout).contains("NOT CURRENT"));
     }
-    assert_eq!(code(&["changes", path, "--to", "2026-09-17 06:20"]), Some(4));
-    assert_eq!(code(&["arrivals", path, "--now", "2026-09-17 06:20"]), Some(5));
+    assert_eq!(code(&["changes", path, "--to", "2026-09-18 06:20"]), Some(4));
+    assert_eq!(code(&["arrivals", path, "--now", "2026-09-18 06:20"]), Some(5));
 }
 
 #[test]
@@ -127,12 +127,12 @@ fn a_forecast_is_stale_once_the_next_is_overdue() {
 
 #[test]
 fn an_advisory_older_than_the_last_is_found_and_ends_with_code_5() {
-    let events = took("2026-09-16 12:05", "approach.txt") + &took("2026-09-16 12:30", "older.txt");
+    let events = took("2026-09-17 12:05", "approach.txt") + &took("2026-09-17 12:30", "older.txt");
     let folder = port_with("out-of-order", &events);
-    let older = fs::read_to_string(folder.join("approach.txt")).unwrap().replace("16/1500Z", "16/0900Z");
-    let older = older.replace("1500 UTC WED SEP 16", "0900 UTC WED SEP 16").replace("16/1200Z", "16/0600Z");
+    let older = fs::read_to_string(folder.join("approach.txt")).unwrap().replace("17/1500Z", "17/0900Z");
+    let older = older.replace("1500 UTC THU SEP 17", "0900 UTC THU SEP 17").replace("17/1200Z", "17/0600Z");
     fs::write(folder.join("older.txt"), older).unwrap();
-    let output = run(&["arrivals", folder.to_str().unwrap(), "--now", "2026-09-16 13:00"]);
+    let output = run(&["arrivals", folder.to_str().unwrap(), "--now", "2026-09-17 13:00"]);
     let told = text(&output.stderr);
     assert!(told.contains("cli-advisory-older"), "{told}");
     assert_eq!(output.status.code(), Some(5), "{told}");

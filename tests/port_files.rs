@@ -81,8 +81,8 @@ fn eleven_faults_in_seven_files_are_all_found_at_once_each_in_its_place() {
     rules.toml:45:9 rules-unknown-stage
     ships.toml:7:9 port-unknown-berth
     ships.toml:24:11 port-bad-value
-    tasks.toml:110:8 rules-unknown-stage
-    tasks.toml:124:33 rules-zero-count
+    tasks.toml:111:8 rules-unknown-stage
+    tasks.toml:125:33 rules-zero-count
     water.toml:18:9 port-no-unit
     ");
 }

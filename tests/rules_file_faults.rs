@@ -289,7 +289,7 @@ fn a_value_of_its_own_belongs_to_a_thing() {
     );
     provokes(
         "tasks.toml",
-        ("after = [\"H3\", \"T1-moor\"", "after = [\"H3\", { same = ^\"sail\" }"),
+        ("\"T1-moor\", { every", "{ same = ^\"sail\" }, { every"),
         "rules-own-without-thing",
         &["same = \"sail\""],
     );

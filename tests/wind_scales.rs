@@ -34,7 +34,8 @@ fn every_whole_knot_has_the_force_of_the_table() {
     for row in rows {
         assert_eq!(force(Knots::new(row.least_kt).unwrap()), row.force);
         assert_eq!(force(Knots::new(row.most_kt.unwrap_or(150.0)).unwrap()), row.force);
-        // The m/s column starts between the last knot of the force before and the first of this one, both rounded.
+        // The m/s column starts between the last knot of the force before and the first of this one, both
+        // rounded.
         let knots = row.least_ms / METRES_PER_SECOND_PER_KNOT;
         assert!(knots > most_before - 0.5 && knots < row.least_kt + 0.1, "{} m/s", row.least_ms);
         most_before = row.most_kt.unwrap_or(64.0);

@@ -1,7 +1,9 @@
-//! One advisory's forecast, hour by hour, with the size of its errors at each hour: what every scenario starts from.
+//! One advisory's forecast, hour by hour, with the size of its errors at each hour: what every scenario
+//! starts from.
 //!
-//! All of it is kept as if the storm were in the northern hemisphere: a southern storm is mirrored at the equator here, and directions are mirrored back
-//! in the answers, so that mirrored forecasts give the same odds to the byte.
+//! All of it is kept as if the storm were in the northern hemisphere: a southern storm is mirrored at the
+//! equator here, and directions are mirrored back in the answers, so that mirrored forecasts give the same
+//! odds to the byte.
 
 use crate::advisory::forecast::{Advisory, Ending, ForecastPoint, Motion, Quadrants, Reach, WindRadii};
 use crate::arrival::errors::ErrorTable;
@@ -11,14 +13,15 @@ use crate::units::speed::Knots;
 use crate::wind::climatology::{radius_of_greatest_wind_nmi, reach_nmi};
 use crate::wind::field::Hemisphere;
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, dot, east_and_north, normalised, plus, vector_of};
-use crate::wind::structure::{Ratios, Structure};
+use crate::wind::structure::{Expected, Structure};
 use crate::wind::track::Track;
 use chrono::{DateTime, Utc};
 
 /// Hours between the nodes at which errors are drawn; between them they are interpolated.
 pub const NODE_H: f64 = 12.0;
 
-/// Hours for which the storm is carried on beyond its forecast, to tell winds that are still coming from winds that never come.
+/// Hours for which the storm is carried on beyond its forecast, to tell winds that are still coming from
+/// winds that never come.
 const LOOK_AHEAD_H: usize = 24;
 
 /// The greatest wind (kt) at the hour for which dissipation is forecast. Our choice: offices stop near it.
@@ -38,29 +41,27 @@ pub struct Step {
     pub along: Vector,
     /// Unit tangent to the right of the motion.
     pub cross: Vector,
-    /// Latitude of the forecast centre in degrees.
-    pub latitude: f64,
-    /// Forecast greatest wind in kt.
-    pub wind_kt: f64,
-    /// Forecast size.
-    pub ratios: Ratios,
+    /// Forecast strength and size.
+    pub expected: Expected,
     /// Standard deviations of the errors, widened by what was assumed.
     pub deviation: [f64; 4],
     /// Their means.
     pub bias: [f64; 4],
     /// The error node at or before.
     pub node: usize,
-    /// Weights of that node's standard error and the next one's, for each component; their mix keeps a variance of one.
+    /// Weights of that node's standard error and the next one's, for each component; their mix keeps a
+    /// variance of one.
     pub weights: [(f64, f64); 4],
-    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error) for storms of up to 35, 40, ... 90 kt.
+    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error) for storms of up to 35,
+    /// 40, ... 90 kt.
     bounds: [f64; BOUNDS],
 }
 
 const BOUNDS: usize = 12;
 
 impl Step {
-    /// A bound of the reach of 34 kt, or of the core if that is wider, for a storm of `wind_kt` before its size error. A few times cheaper than the
-    /// reach itself, it keeps far places out of the inner loop.
+    /// A bound of the reach of 34 kt, or of the core if that is wider, for a storm of `wind_kt` before its
+    /// size error. A few times cheaper than the reach itself, it keeps far places out of the inner loop.
     #[must_use]
     pub fn bound_nmi(&self, wind_kt: f64) -> f64 {
         let class = ((wind_kt - 30.0).max(0.0) / 5.0) as usize;
@@ -71,7 +72,8 @@ impl Step {
 /// A forecast ready for scenarios.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Course {
-    /// States at issue, each whole hour after it, at the end of the forecast, and hourly beyond (look-ahead only).
+    /// States at issue, each whole hour after it, at the end of the forecast, and hourly beyond (look-ahead
+    /// only).
     pub steps: Vec<Step>,
     /// Index of the step at the end of the forecast.
     pub end: usize,
@@ -181,7 +183,8 @@ fn northern_points(advisory: &Advisory, hemisphere: Hemisphere) -> Option<Vec<Fo
         Some(Ending::Absorbed(at)) => (*at, None),
         Some(Ending::CutShort(_)) | None => return Some(points),
     };
-    // Up to its end the storm goes on as it last moved; a dissipating one weakens, an absorbed one keeps its wind.
+    // Up to its end the storm goes on as it last moved; a dissipating one weakens, an absorbed one keeps its
+    // wind.
     let last = points.last()?.clone();
     if at > last.valid {
         let fixes: Vec<(f64, Position)> = points
@@ -242,7 +245,8 @@ impl<'a> Errors<'a> {
         Errors { table, lead_at_issue_h, start_nmi, widening }
     }
 
-    /// Deviations and biases. The present centre's own accuracy replaces the table's at lead 0 and fades into the next 12 h.
+    /// Deviations and biases. The present centre's own accuracy replaces the table's at lead 0 and fades into
+    /// the next 12 h.
     fn at(&self, hour: f64) -> ([f64; 4], [f64; 4]) {
         let lead = hour + self.lead_at_issue_h;
         let row = self.table.at(lead);
@@ -267,7 +271,8 @@ impl<'a> Errors<'a> {
 
     /// The node before an hour and the weights of the two nodes around it.
     ///
-    /// z = ((1 - s) z0 + s z1) / sqrt((1 - s)^2 + s^2 + 2 s (1 - s) phi): without the root the variance would dip between nodes.
+    /// z = ((1 - s) z0 + s z1) / sqrt((1 - s)^2 + s^2 + 2 s (1 - s) phi): without the root the variance would
+    /// dip between nodes.
     fn weights(&self, hour: f64, serial: &[[f64; 4]]) -> (usize, [(f64, f64); 4]) {
         let position = (hour + self.lead_at_issue_h) / NODE_H;
         let node = f64::floor(position).max(0.0);
@@ -309,6 +314,8 @@ impl Forecast<'_> {
                 along[0] * centre[1] - along[1] * centre[0],
             ]);
             let ratios = self.structure.ratios_at(held);
+            let follows = self.errors.table.settings().size_follows_intensity;
+            let expected = Expected::new(linear_at(&self.winds, held), latitude, ratios, follows);
             let (deviation, bias) = self.errors.at(held);
             let (node, weights) = self.errors.weights(held, serial);
             steps.push(Step {
@@ -316,14 +323,12 @@ impl Forecast<'_> {
                 centre,
                 along,
                 cross,
-                latitude,
-                wind_kt: linear_at(&self.winds, held),
-                ratios,
+                expected,
                 deviation,
                 bias,
                 node,
                 weights,
-                bounds: bounds(&ratios, latitude),
+                bounds: bounds(&expected),
             });
         }
         steps
@@ -351,10 +356,12 @@ impl Forecast<'_> {
     }
 }
 
-fn bounds(ratios: &Ratios, latitude: f64) -> [f64; BOUNDS] {
-    let widest = ratios[0].iter().copied().fold(0.0, f64::max);
+fn bounds(expected: &Expected) -> [f64; BOUNDS] {
+    let latitude = expected.latitude;
+    let widest = expected.ratios[0].iter().copied().fold(0.0, f64::max);
     let widest = if widest > 0.0 { widest } else { 1.0 };
-    let core = radius_of_greatest_wind_nmi(0.0, latitude);
+    // The reach lies between that of the forecast and of the realised strength.
+    let core = radius_of_greatest_wind_nmi(0.0, latitude).max(expected.usual_gale_nmi());
     let mut bounds = [widest * core; BOUNDS];
     let mut wind = 30.0;
     for bound in &mut bounds {

@@ -1,4 +1,5 @@
-//! How wrong forecasts are: standard deviations by lead time, their biases and correlations, and for which seas they hold.
+//! How wrong forecasts are: standard deviations by lead time, their biases and correlations, and for which
+//! seas they hold.
 
 use crate::advisory::forecast::Advisory;
 use crate::geo::position::Position;
@@ -32,7 +33,8 @@ impl Basin {
         Basin::Southern,
     ];
 
-    /// The two letters by which storm numbers name it (AL122024); the Indian Ocean's and the southern seas' other letters are read too.
+    /// The two letters by which storm numbers name it (AL122024); the Indian Ocean's and the southern seas'
+    /// other letters are read too.
     #[must_use]
     pub fn from_letters(letters: &str) -> Option<Basin> {
         match letters.to_ascii_uppercase().as_str() {
@@ -66,7 +68,8 @@ impl Basin {
         by_number.or_else(|| advisory.points.first().map(|point| Basin::at(point.position)))
     }
 
-    /// The basin of a position. The line between Atlantic and East Pacific follows Central America in three steps: our reading of the map.
+    /// The basin of a position. The line between Atlantic and East Pacific follows Central America in three
+    /// steps: our reading of the map.
     #[must_use]
     pub fn at(position: Position) -> Basin {
         let (latitude, longitude) = (position.latitude(), position.longitude());
@@ -102,14 +105,16 @@ impl fmt::Display for Basin {
     }
 }
 
-/// The errors at one lead time. Arrays hold along, cross (n mi), intensity (kt), size (natural logarithm of the radius), in the order of [`crate::arrival::keyed::Component::ALL`].
+/// The errors at one lead time. Arrays hold along, cross (n mi), intensity (kt), size (natural logarithm of
+/// the radius), in the order of [`crate::arrival::keyed::Component::ALL`].
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct ErrorRow {
     /// Hours after the base time of the forecast.
     pub lead_h: f64,
     /// Standard deviations.
     pub deviation: [f64; 4],
-    /// Mean of (what happens - what was forecast): ahead, to the right of the motion in the northern hemisphere and to the left in the southern, stronger, larger.
+    /// Mean of (what happens - what was forecast): ahead, to the right of the motion in the northern
+    /// hemisphere and to the left in the southern, stronger, larger.
     pub bias: [f64; 4],
     /// Correlation between the error 12 h earlier and the error at this lead; unused at lead 0.
     pub serial: [f64; 4],
@@ -143,7 +148,8 @@ pub enum TableError {
     },
 }
 
-/// Forecast errors of one office in one or more seas. Rows start at lead 0 and rise; deviations are not negative; correlations lie within 0..1.
+/// Forecast errors of one office in one or more seas. Rows start at lead 0 and rise; deviations are not
+/// negative; correlations lie within 0..1.
 #[derive(Clone, Debug, PartialEq)]
 pub struct ErrorTable {
     name: String,
@@ -158,9 +164,14 @@ pub struct ErrorTable {
 pub struct Settings {
     /// Correlation of the innovations of intensity and size, -1..1.
     pub intensity_with_size: f64,
-    /// Hours in which a storm's own size relaxes by the factor e to the mean vortex after the last given radii, 1..1000.
+    /// How far the radii of a storm follow its strength where it differs from the forecast, 0..1; 1 is as in
+    /// the mean vortex.
+    pub size_follows_intensity: f64,
+    /// Hours in which a storm's own size relaxes by the factor e to the mean vortex after the last given
+    /// radii, 1..1000.
     pub radii_relaxation_h: f64,
-    /// The stated accuracy of the centre divided by this is the standard deviation of its position along and across, 0.5..5.
+    /// The stated accuracy of the centre divided by this is the standard deviation of its position along and
+    /// across, 0.5..5.
     pub accuracy_divisor: f64,
 }
 
@@ -189,6 +200,7 @@ impl ErrorTable {
             row.check()?;
         }
         within("intensity_with_size", 0.0, settings.intensity_with_size, MUTUAL_BOUNDS)?;
+        within("size_follows_intensity", 0.0, settings.size_follows_intensity, FOLLOWS_BOUNDS)?;
         within("radii_relaxation_h", 0.0, settings.radii_relaxation_h, RELAXATION_BOUNDS)?;
         within("accuracy_divisor", 0.0, settings.accuracy_divisor, ACCURACY_BOUNDS)?;
         Ok(ErrorTable { name: name.into(), sources, rows, settings, notes: Vec::new() })
@@ -281,7 +293,8 @@ pub struct Column {
     pub bounds: (f64, f64),
 }
 
-/// Columns of deviations, biases and serial correlations, each in the order of [`crate::arrival::keyed::Component::ALL`].
+/// Columns of deviations, biases and serial correlations, each in the order of
+/// [`crate::arrival::keyed::Component::ALL`].
 pub const COLUMNS: [[Column; 4]; 3] = [
     [
         Column { name: "along_nmi", bounds: (0.0, 3000.0) },
@@ -305,6 +318,8 @@ pub const COLUMNS: [[Column; 4]; 3] = [
 
 /// Bounds of [`Settings::intensity_with_size`].
 pub const MUTUAL_BOUNDS: (f64, f64) = (-1.0, 1.0);
+/// Bounds of [`Settings::size_follows_intensity`].
+pub const FOLLOWS_BOUNDS: (f64, f64) = (0.0, 1.0);
 /// Bounds of [`Settings::radii_relaxation_h`].
 pub const RELAXATION_BOUNDS: (f64, f64) = (1.0, 1000.0);
 /// Bounds of [`Settings::accuracy_divisor`].
@@ -344,7 +359,8 @@ impl ErrorTables {
         &self.tables
     }
 
-    /// The table for an advisory's sea. Where none was made for it, the one for elsewhere, widened, with a note to print.
+    /// The table for an advisory's sea. Where none was made for it, the one for elsewhere, widened, with a
+    /// note to print.
     #[must_use]
     pub fn for_advisory(&self, advisory: &Advisory) -> ErrorTable {
         let basin = Basin::of(advisory);
@@ -371,8 +387,12 @@ mod tests {
     use crate::geo::position::Position;
     use approx::assert_abs_diff_eq;
 
-    const SETTINGS: Settings =
-        Settings { intensity_with_size: 0.0, radii_relaxation_h: 36.0, accuracy_divisor: 1.5 };
+    const SETTINGS: Settings = Settings {
+        intensity_with_size: 0.0,
+        size_follows_intensity: 0.5,
+        radii_relaxation_h: 36.0,
+        accuracy_divisor: 1.5,
+    };
 
     fn row(lead_h: f64, along: f64) -> ErrorRow {
         ErrorRow { lead_h, deviation: [along, 1.0, 1.0, 0.1], ..ErrorRow::NONE }

@@ -1,8 +1,8 @@
 //! Reads a file of forecast-error tables.
 
 use crate::arrival::errors::{
-    ACCURACY_BOUNDS, Basin, COLUMNS, ErrorRow, ErrorTable, ErrorTables, LEAD_BOUNDS, MUTUAL_BOUNDS,
-    RELAXATION_BOUNDS, Settings, is_within,
+    ACCURACY_BOUNDS, Basin, COLUMNS, ErrorRow, ErrorTable, ErrorTables, FOLLOWS_BOUNDS, LEAD_BOUNDS,
+    MUTUAL_BOUNDS, RELAXATION_BOUNDS, Settings, is_within,
 };
 use crate::finding::fault::{Finding, nearest, sort_findings};
 use crate::finding::source::SourceText;
@@ -37,6 +37,7 @@ struct RawTable {
     radii_relaxation_h: Spanned<f64>,
     accuracy_divisor: Spanned<f64>,
     intensity_with_size: Spanned<f64>,
+    size_follows_intensity: Spanned<f64>,
     lead_h: Numbers,
     along_nmi: Numbers,
     cross_nmi: Numbers,
@@ -55,9 +56,10 @@ struct RawTable {
 /// Reads error tables.
 ///
 /// # Errors
-/// All findings of the file: what is not TOML or not a known key (`arrival-errors-unreadable`), a number out of range (`arrival-errors-range`), columns of
-/// different length (`arrival-errors-length`), leads that do not start at 0 and rise (`arrival-errors-leads`), an unknown or doubled basin
-/// (`arrival-errors-basin`), a doubled name (`arrival-errors-name`), an `elsewhere` that names no table (`arrival-errors-elsewhere`).
+/// All findings of the file: what is not TOML or not a known key (`arrival-errors-unreadable`), a number out
+/// of range (`arrival-errors-range`), columns of different length (`arrival-errors-length`), leads that do
+/// not start at 0 and rise (`arrival-errors-leads`), an unknown or doubled basin (`arrival-errors-basin`), a
+/// doubled name (`arrival-errors-name`), an `elsewhere` that names no table (`arrival-errors-elsewhere`).
 pub fn read_error_tables(source: &SourceText) -> Result<ErrorTables, Vec<Finding>> {
     let raw: RawFile = match toml::from_str(source.text()) {
         Ok(raw) => raw,
@@ -168,6 +170,11 @@ impl Reader<'_> {
         }
         let settings = Settings {
             intensity_with_size: self.number(&raw.intensity_with_size, "intensity_with_size", MUTUAL_BOUNDS),
+            size_follows_intensity: self.number(
+                &raw.size_follows_intensity,
+                "size_follows_intensity",
+                FOLLOWS_BOUNDS,
+            ),
             radii_relaxation_h: self.number(&raw.radii_relaxation_h, "radii_relaxation_h", RELAXATION_BOUNDS),
             accuracy_divisor: self.number(&raw.accuracy_divisor, "accuracy_divisor", ACCURACY_BOUNDS),
         };

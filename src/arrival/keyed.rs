@@ -1,10 +1,12 @@
 //! Random numbers that depend on what they are for, not on when or where they are drawn.
 //!
-//! Each number is a hash of storm, component, lead node and scenario. So the same forecast issued again gives the same answer, scenarios of two advisories of one storm are
-//! comparable one by one, and neither the number of threads nor the order of the questions matters.
+//! Each number is a hash of storm, component, lead node and scenario. So the same forecast issued again gives
+//! the same answer, scenarios of two advisories of one storm are comparable one by one, and neither the
+//! number of threads nor the order of the questions matters.
 
-/// Scenarios are drawn in blocks of this many; within a block each node's numbers are spread evenly (one in each thousandth), which makes shares and
-/// quantiles steadier than independent draws would (Latin hypercube sampling: McKay, Beckman & Conover 1979, Technometrics 21:239-245).
+/// Scenarios are drawn in blocks of this many; within a block each node's numbers are spread evenly (one in
+/// each thousandth), which makes shares and quantiles steadier than independent draws would (Latin hypercube
+/// sampling: McKay, Beckman & Conover 1979, Technometrics 21:239-245).
 pub const BLOCK: usize = 1000;
 
 /// What a number disturbs.
@@ -73,8 +75,8 @@ impl Keyed {
     }
 }
 
-/// The finaliser of SplitMix64 (Steele, Lea & Flood 2014, "Fast splittable pseudorandom number generators", OOPSLA): every bit of the input stirs
-/// every bit of the output.
+/// The finaliser of SplitMix64 (Steele, Lea & Flood 2014, "Fast splittable pseudorandom number generators",
+/// OOPSLA): every bit of the input stirs every bit of the output.
 fn mixed(x: u64) -> u64 {
     let x = x.wrapping_add(0x9e37_79b9_7f4a_7c15);
     let x = (x ^ (x >> 30)).wrapping_mul(0xbf58_476d_1ce4_e5b9);

@@ -13,7 +13,8 @@ use crate::units::chance::Chance;
 use crate::units::speed::Knots;
 use std::collections::BTreeMap;
 
-/// Below this many onsets no quantile is given: a 10 % point of fewer hangs on two or three scenarios. The program's rule.
+/// Below this many onsets no quantile is given: a 10 % point of fewer hangs on two or three scenarios. The
+/// program's rule.
 pub const LEAST_ONSETS: usize = 30;
 
 /// How many scenarios are drawn.
@@ -44,12 +45,14 @@ pub enum Quantile {
 
 /// The answer to one question.
 ///
-/// P(t) is the share of scenarios in which the limit is reached in (issue, t]; those past it at issue count at once; after the end of the forecast P stays as it is. Quantiles are
-/// of the onsets *after issue*, given that the wind comes by the end of the forecast: always say with them the chance that it comes at all.
+/// P(t) is the share of scenarios in which the limit is reached in (issue, t]; those past it at issue count
+/// at once; after the end of the forecast P stays as it is. Quantiles are of the onsets *after issue*, given
+/// that the wind comes by the end of the forecast: always say with them the chance that it comes at all.
 ///
-/// A quantile is cut off ([`Quantile::AfterEnd`]) when it would lie beyond the end of the forecast if those scenarios were counted too in which the storm, going on as
-/// it is at the end, would still bring the wind within a day. So a forecast that stops while the storm draws near never gives a "latest" that looks like one. Times that
-/// are given use onsets within the forecast only: nothing that was carried on enters them.
+/// A quantile is cut off ([`Quantile::AfterEnd`]) when it would lie beyond the end of the forecast if those
+/// scenarios were counted too in which the storm, going on as it is at the end, would still bring the wind
+/// within a day. So a forecast that stops while the storm draws near never gives a "latest" that looks like
+/// one. Times that are given use onsets within the forecast only: nothing that was carried on enters them.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Answer {
     /// The question's name.
@@ -108,7 +111,8 @@ impl Answer {
         point(&self.reached, self.cut_off, p)
     }
 
-    /// The same among onsets within the forecast alone, however many are cut off: for scoring forecasts against what came. For people take [`Answer::quantile`].
+    /// The same among onsets within the forecast alone, however many are cut off: for scoring forecasts
+    /// against what came. For people take [`Answer::quantile`].
     #[must_use]
     pub fn quantile_within(&self, p: Chance) -> Option<Moment> {
         at_rank(&self.reached, p)
@@ -142,7 +146,8 @@ impl Answer {
         }
     }
 
-    /// Of the scenarios in which the wind comes (or blows at issue): the time by which a share `p` of them have it behind them for good, as far as the forecast goes.
+    /// Of the scenarios in which the wind comes (or blows at issue): the time by which a share `p` of them
+    /// have it behind them for good, as far as the forecast goes.
     #[must_use]
     pub fn end_quantile(&self, p: Chance) -> Quantile {
         let comes = self.onsets.iter().filter(|scenario| scenario.onset != Onset::Never);
@@ -152,7 +157,8 @@ impl Answer {
         point(&ends, open, p)
     }
 
-    /// The chance that the wind blows neither at `t` nor later in the forecast, whether it came before or never comes.
+    /// The chance that the wind blows neither at `t` nor later in the forecast, whether it came before or
+    /// never comes.
     #[must_use]
     pub fn chance_over_by(&self, t: Moment) -> Chance {
         let over = self
@@ -172,7 +178,8 @@ fn tenths(n: usize) -> Chance {
 
 /// The smallest count that is at least the share `p` of `whole`.
 fn least_count(whole: usize, p: Chance) -> usize {
-    // A share such as 0.1 is a little more than a tenth in binary: without the allowance 10 % of 1,000 would be 101.
+    // A share such as 0.1 is a little more than a tenth in binary: without the allowance 10 % of 1,000 would
+    // be 101.
     f64::ceil(whole as f64 * p.get() - 1e-9).max(0.0) as usize
 }
 
@@ -212,7 +219,8 @@ impl Answers {
 
 /// Answers all questions about one advisory from one set of scenarios.
 ///
-/// The draws depend on the storm alone (see [`crate::arrival::keyed`]): neither the advisory's number, nor the other questions, nor their order change an answer.
+/// The draws depend on the storm alone (see [`crate::arrival::keyed`]): neither the advisory's number, nor
+/// the other questions, nor their order change an answer.
 #[must_use]
 pub fn ask(advisory: &Advisory, table: &ErrorTable, questions: &[Question], draw: Draw) -> Answers {
     let joint = draw.scenarios.max(1);
@@ -364,8 +372,8 @@ impl<'a> Drawing<'a> {
         self.groups = groups;
     }
 
-    /// The questions of a group that want more scenarios. One without any onset gets none: 10,000 could bring thirty, and
-    /// with such a chance the first 1,000 show none in one case of twenty at most.
+    /// The questions of a group that want more scenarios. One without any onset gets none: 10,000 could bring
+    /// thirty, and with such a chance the first 1,000 show none in one case of twenty at most.
     fn lacking(&self, group: &Group) -> Vec<usize> {
         let wants = |question: &&usize| {
             let onsets = self.onsets.get(**question).map_or(&[][..], Vec::as_slice);

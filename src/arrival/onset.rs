@@ -1,8 +1,9 @@
 //! When, in one scenario, a wind is first and last passed at a place.
 //!
-//! Between hourly states the storm moves straight and changes evenly. The wind is there while the distance from the centre is within the reach of the limit on
-//! the place's bearing (a calm eye does not end it). Each hour is tested at both ends and at the closest approach between, so that a storm that brushes a place for some minutes is not missed; the
-//! moment itself is found by root finding to within two seconds.
+//! Between hourly states the storm moves straight and changes evenly. The wind is there while the distance
+//! from the centre is within the reach of the limit on the place's bearing (a calm eye does not end it). Each
+//! hour is tested at both ends and at the closest approach between, so that a storm that brushes a place for
+//! some minutes is not missed; the moment itself is found by root finding to within a second or two.
 
 use crate::arrival::course::Course;
 use crate::arrival::scenario::Scenario;
@@ -16,7 +17,7 @@ use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, bearing_degrees, distance_nm
 /// When the wind comes.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Onset {
-    /// It blows at issue time.
+    /// It blows at issue time, or comes within the minute.
     Already,
     /// At this minute, rounded down.
     At(Moment),
@@ -29,15 +30,18 @@ pub enum Onset {
 pub struct ScenarioOnset {
     /// When the wind first reaches the limit.
     pub onset: Onset,
-    /// When it last falls below the limit, rounded up; `None` if it never comes or still blows at the end of the forecast.
+    /// When it last falls below the limit, rounded up; `None` if it never comes or still blows at the end of
+    /// the forecast.
     pub until: Option<Moment>,
-    /// Wind met where the place lies deepest within the gale radius: the greatest, or very near it. 10 m over open water in the advisory's averaging; zero if the limit is never reached.
+    /// Wind met where the place lies deepest within the gale radius: the greatest, or very near it. 10 m over
+    /// open water in the advisory's averaging; zero if the limit is never reached.
     pub peak: Knots,
     /// From where the wind blows at the onset (at issue, if already there); north if it never comes.
     pub from: Bearing,
     /// The eye passes over: the wind returns from the other side.
     pub has_lull: bool,
-    /// `Never`, but it would come within a day after the end of the forecast if the storm went on as it then is.
+    /// `Never`, but it would come within a day after the end of the forecast if the storm went on as it then
+    /// is.
     pub is_cut_off: bool,
 }
 
@@ -77,9 +81,10 @@ impl Watch {
         let mut states = vec![State::default(); self.limits_kt.len()];
         let mut deepest = Deepest::default();
         let mut before: Option<Sight> = None;
-        for k in 0..course.end.max(1) {
+        let mut next = 0;
+        while next < course.end.max(1) {
             let start = before.take();
-            let Some(mut hour) = self.hour(course, scenario, k) else { continue };
+            let Some(mut hour) = self.next_hour(course, scenario, &mut next) else { continue };
             if course.end == 0 {
                 // A forecast of a single moment: nothing after it belongs to the forecast.
                 hour.stand_still();
@@ -90,7 +95,8 @@ impl Watch {
             self.pass(&hour, [start, end], &mut states, &mut deepest);
         }
         let reached = states.iter().filter(|state| state.is_reached()).count();
-        let cut_off = self.still_coming(course, scenario).max(reached);
+        let all = reached == states.len();
+        let cut_off = if all { reached } else { self.still_coming(course, scenario).max(reached) };
         states
             .iter()
             .enumerate()
@@ -98,9 +104,18 @@ impl Watch {
             .collect()
     }
 
-    /// The hour after step `k`, if any limit can be met in it.
-    fn hour<'a>(&self, course: &Course, scenario: &'a mut Scenario, k: usize) -> Option<Hour<'a>> {
-        if !scenario.may_reach(k, self.place, self.widening) {
+    /// The hour after step `next`, if any limit can be met in it; moves `next` on by that hour, or by all hours
+    /// in which none can.
+    fn next_hour<'a>(
+        &self,
+        course: &Course,
+        scenario: &'a mut Scenario,
+        next: &mut usize,
+    ) -> Option<Hour<'a>> {
+        let k = *next;
+        let out_of_reach = scenario.hours_out_of_reach(k, self.place, self.widening);
+        *next += out_of_reach.max(1);
+        if out_of_reach > 0 {
             return None;
         }
         scenario.prepare(course, k);
@@ -116,6 +131,13 @@ impl Watch {
     /// One hour for all limits. They are nested: where a limit is met, every lower one is.
     fn pass(&self, hour: &Hour<'_>, [start, end]: [Sight; 2], states: &mut [State], deepest: &mut Deepest) {
         let closest = hour.closest();
+        if closest.is_none() && start.met == end.met && hour.k > 0 {
+            // Most hours: the wind neither comes nor goes.
+            if end.met > 0 {
+                deepest.note(end);
+            }
+            return;
+        }
         let middle = closest.map(|s| self.seen(hour.look(s)));
         let dips = middle.map_or(0, |sight| sight.met);
         let most = start.met.max(end.met).max(dips);
@@ -154,8 +176,9 @@ impl Watch {
     /// How many limits, the lowest first, would be met in the look-ahead beyond the forecast.
     fn still_coming(&self, course: &Course, scenario: &mut Scenario) -> usize {
         let mut most = 0;
-        for k in course.end..course.steps.len().saturating_sub(1) {
-            let Some(hour) = self.hour(course, scenario, k) else { continue };
+        let mut next = course.end;
+        while next + 1 < course.steps.len() {
+            let Some(hour) = self.next_hour(course, scenario, &mut next) else { continue };
             for s in [Some(1.0), hour.closest()].into_iter().flatten() {
                 most = most.max(self.seen(hour.look(s)).met);
             }
@@ -181,7 +204,8 @@ impl Sight {
     /// How many of the limits, which rise, are met here.
     fn count_met(&self, limits_kt: &[f64]) -> usize {
         let [gale, storm, hurricane] = self.profile.reach_nmi;
-        // The given radii decide most cases without the profile's logarithms: below `sure` the limit is met, above `at_most` it is not.
+        // The given radii decide most cases without the profile's logarithms: below `sure` the limit is met,
+        // above `at_most` it is not.
         let is_within = |reach: f64| reach > 0.0 && self.distance <= reach;
         let (sure, at_most) = if is_within(hurricane) {
             (64.0, f64::INFINITY)
@@ -236,7 +260,8 @@ impl<'a> Hour<'a> {
         self.minutes[1] = self.minutes[0];
     }
 
-    /// Whether the centre comes as near as the furthest reach of its gales (times `widening`; at least that of its core) at either end.
+    /// Whether the centre comes as near as the furthest reach of its gales (times `widening`; at least that
+    /// of its core) at either end.
     fn may_reach(&self, widening: f64) -> bool {
         let [from, to] = self.vortices;
         let s = self.closest_share().clamp(0.0, 1.0);
@@ -282,28 +307,27 @@ impl<'a> Hour<'a> {
         self.minutes[0] + (self.minutes[1] - self.minutes[0]) * s
     }
 
-    /// Where in the stretch the place passes the limit's edge: regula falsi, halving the value at an end that stays twice (the Illinois method,
-    /// Dowell & Jarratt 1971, BIT 11:168-174). The outer end of the last bracket is taken: an onset is never late, an end never early.
+    /// Where in the stretch the place passes the limit's edge: regula falsi, halving the value at an end that
+    /// stays twice (the Illinois method, Dowell & Jarratt 1971, BIT 11:168-174), until the slope says that it is
+    /// found to a second. Then a second outwards: an onset is never late, an end never early.
     fn crossing(
         &self,
         limit_kt: f64,
         [(mut low, low_sight), (mut high, high_sight)]: [(f64, Sight); 2],
     ) -> f64 {
-        const TWO_SECONDS: f64 = 2.0 / 3600.0;
-        let gap = |s: f64| self.look(s).gap(limit_kt);
+        const SECOND: f64 = 1.0 / 3600.0;
         let (mut at_low, mut at_high) = (low_sight.gap(limit_kt), high_sight.gap(limit_kt));
         let comes = at_low > 0.0;
+        let slope = ((at_high - at_low) / (high - low)).abs();
         let mut low_moved = None;
+        let mut cut = if comes { low } else { high };
         for _ in 0..40 {
-            if high - low < TWO_SECONDS {
+            let next = low + (high - low) * at_low / (at_low - at_high);
+            cut = if next.is_finite() { next.clamp(low, high) } else { f64::midpoint(low, high) };
+            let value = self.look(cut).gap(limit_kt);
+            if value.abs() <= slope * SECOND || high - low < SECOND {
                 break;
             }
-            // Keeping a second away from the ends lets the bracket close from both sides.
-            let margin = TWO_SECONDS / 2.0;
-            let cut = low + (high - low) * at_low / (at_low - at_high);
-            let cut = if cut.is_finite() { cut } else { (low + high) / 2.0 };
-            let cut = cut.clamp(low + margin, high - margin);
-            let value = gap(cut);
             let moves_low = (value > 0.0) == comes;
             let again = low_moved == Some(moves_low);
             low_moved = Some(moves_low);
@@ -315,7 +339,7 @@ impl<'a> Hour<'a> {
                 at_low /= if again { 2.0 } else { 1.0 };
             }
         }
-        if comes { low } else { high }
+        if comes { (cut - SECOND).max(0.0) } else { (cut + SECOND).min(1.0) }
     }
 }
 
@@ -342,7 +366,11 @@ impl State {
         let after = |minutes: f64| course.issued + Minutes::new(minutes as i64);
         let northern = wind_from(Bearing::wrapped(found.bearing), Hemisphere::Northern, INFLOW_DEGREES);
         ScenarioOnset {
-            onset: found.minute.map_or(Onset::Already, |minute| Onset::At(after(f64::floor(minute)))),
+            // To the minute, rounded down, a wind that comes within the first minute blows at issue.
+            onset: match found.minute {
+                Some(minute) if minute >= 1.0 => Onset::At(after(f64::floor(minute))),
+                Some(_) | None => Onset::Already,
+            },
             until: self.until.map(|minute| after(f64::ceil(minute))),
             peak: deepest.peak(),
             from: match course.hemisphere {

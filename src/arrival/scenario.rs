@@ -1,7 +1,8 @@
 //! One way in which the forecast may turn out: a displaced track, another strength, another size.
 //!
-//! Errors are first-order autoregressive on nodes 12 h apart: z0 = e0, zk = phi z(k-1) + sqrt(1 - phi^2) ek, with e from the standard normal distribution, for each of along,
-//! cross, intensity and size; an error is deviation x z + bias.
+//! Errors are first-order autoregressive on nodes 12 h apart: z0 = e0, zk = phi z(k-1) + sqrt(1 - phi^2) ek,
+//! with e from the standard normal distribution, for each of along, cross, intensity and size; an error is
+//! deviation x z + bias.
 
 use crate::arrival::course::{Course, Step};
 use crate::arrival::keyed::{BLOCK, Component, Keyed};
@@ -53,6 +54,9 @@ pub struct Scenario {
     sizes: Vec<f64>,
     /// Square of the chord beyond which a place cannot meet 34 kt within the hour after a step.
     far2: Vec<f64>,
+    /// The greatest bound of the reach of 34 kt, and the longest way of the centre in an hour, in radians.
+    widest: f64,
+    fastest: f64,
     vortices: Vec<Option<Vortex>>,
 }
 
@@ -81,7 +85,7 @@ impl Scenario {
         self.sizes.clear();
         let mut bounds = Vec::with_capacity(course.steps.len());
         for step in &course.steps {
-            let wind = (step.wind_kt + error(step, intensity)).clamp(0.0, 250.0);
+            let wind = (step.expected.wind_kt + error(step, intensity)).clamp(0.0, 250.0);
             let scale = libm::exp(error(step, size));
             self.centres.push(displaced(
                 step.centre,
@@ -95,10 +99,15 @@ impl Scenario {
             bounds.push(scale * step.bound_nmi(wind));
         }
         self.far2.clear();
+        self.widest = bounds.iter().copied().fold(0.0, f64::max) / EARTH_RADIUS_NMI;
+        // Never nothing: a storm that stands still is looked at again after a day or so.
+        self.fastest = 1.0 / EARTH_RADIUS_NMI;
         for (centres, reach) in self.centres.windows(2).zip(bounds.windows(2)) {
             let ([from, to], [a, b]) = (centres, reach) else { continue };
             let moved = plus(*to, -1.0, *from);
-            let far = a.max(*b) / EARTH_RADIUS_NMI + f64::sqrt(dot(moved, moved));
+            let way = f64::sqrt(dot(moved, moved));
+            let far = a.max(*b) / EARTH_RADIUS_NMI + way;
+            self.fastest = self.fastest.max(way);
             self.far2.push(far * far);
         }
         let last = bounds.last().copied().unwrap_or(0.0) / EARTH_RADIUS_NMI;
@@ -107,15 +116,23 @@ impl Scenario {
         self.vortices.resize(course.steps.len(), None);
     }
 
-    /// Whether a wind can reach `place` in the hour after step `k`, when it reaches at most `widening` times as far as 34 kt.
+    /// For how many hours from step `k` on no wind can reach `place`, when it reaches at most `widening` times as
+    /// far as 34 kt; 0 if it may in the hour after `k`.
     #[must_use]
-    pub fn may_reach(&self, k: usize, place: Vector, widening: f64) -> bool {
-        let (Some(centre), Some(far2)) = (self.centres.get(k), self.far2.get(k)) else { return false };
+    pub fn hours_out_of_reach(&self, k: usize, place: Vector, widening: f64) -> usize {
+        let (Some(centre), Some(far2)) = (self.centres.get(k), self.far2.get(k)) else { return 1 };
         let between = plus(place, -1.0, *centre);
-        dot(between, between) <= far2 * widening * widening
+        let distance2 = dot(between, between);
+        if distance2 <= far2 * widening * widening {
+            return 0;
+        }
+        // However it goes on, the storm needs this long to come near enough.
+        let hours = (f64::sqrt(distance2) - self.widest * widening) / self.fastest;
+        (hours as usize).max(1)
     }
 
-    /// Makes sure that the realised storms at step `k` and at the next are there; they are made when first needed.
+    /// Makes sure that the realised storms at step `k` and at the next are there; they are made when first
+    /// needed.
     pub fn prepare(&mut self, course: &Course, k: usize) {
         for at in [k, k + 1] {
             let (Some(kept), Some(step)) = (self.vortices.get_mut(at), course.steps.get(at)) else {
@@ -123,13 +140,7 @@ impl Scenario {
             };
             let state = (self.centres.get(at), self.winds_kt.get(at), self.sizes.get(at));
             if let (None, (Some(centre), Some(wind), Some(size))) = (&kept, state) {
-                *kept = Some(Vortex::realised(
-                    *centre,
-                    step.latitude,
-                    &step.ratios,
-                    (step.wind_kt, *wind),
-                    *size,
-                ));
+                *kept = Some(Vortex::realised(&step.expected, *centre, *wind, *size));
             }
         }
     }

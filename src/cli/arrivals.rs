@@ -9,6 +9,7 @@ use crate::cli::clock::{port_now, zoned_time};
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::folder::read_bytes;
 use crate::cli::load::{load, shipped_tables};
+use crate::cli::port_args::PortArgs;
 use crate::cli::screen::{show, tell_findings, width};
 use crate::geo::position::Position;
 use crate::geo::position_text::parse_decimal;
@@ -111,7 +112,7 @@ fn for_forecast(args: &ArrivalsArgs) -> Result<Exit, Failure> {
 }
 
 fn for_port(args: &ArrivalsArgs) -> Result<Exit, Failure> {
-    let loaded = load(&args.forecast)?;
+    let loaded = load(&PortArgs::of(args.forecast.clone()))?;
     let setting = Setting::of(&loaded.port, &loaded.rules);
     let now = port_now(args.now.as_deref(), setting.clock, loaded.port.exercise)?;
     let Some((file, advisory)) = loaded.in_force(now) else {

@@ -4,6 +4,7 @@ use crate::cli::clock::{port_now, port_time};
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::load::load;
 use crate::cli::planning::{compared_with, exit_of, latest, plans_until};
+use crate::cli::port_args::PortArgs;
 use crate::cli::screen::{show, width};
 use crate::output::changes_text::changes_text;
 use crate::output::setting::Setting;
@@ -11,15 +12,14 @@ use crate::output::wire::changes::changes_out;
 use crate::output::wire::value::to_text;
 use crate::plan::changes::changes_between;
 use clap::Args;
-use std::path::PathBuf;
 
 /// What `changes` is asked.
 #[derive(Clone, Debug, Args)]
 #[command(after_help = AFTER_HELP)]
 pub struct ChangesArgs {
-    /// The port's folder
-    #[arg(value_name = "DIR")]
-    pub folder: PathBuf,
+    /// The port
+    #[command(flatten)]
+    pub port: PortArgs,
     /// The earlier time; else when the last plan was issued, or just before the last advisory was taken
     #[arg(long, value_name = "TIME")]
     pub from: Option<String>,
@@ -45,7 +45,7 @@ Examples:
 /// # Errors
 /// Any [`Failure`].
 pub fn run(args: &ChangesArgs) -> Result<Exit, Failure> {
-    let loaded = load(&args.folder)?;
+    let loaded = load(&args.port)?;
     let setting = Setting::of(&loaded.port, &loaded.rules);
     let to = match &args.to {
         Some(text) => port_time("--to", text, setting.clock)?,
@@ -66,7 +66,7 @@ pub fn run(args: &ChangesArgs) -> Result<Exit, Failure> {
     }
     // The earlier plan ages by the clock too, so it is made for its own moment.
     let before = plans_until(&loaded, from);
-    let changes = changes_between(latest(&before)?, later, &loaded.events);
+    let changes = changes_between(latest(&before)?, later, &loaded.events, &loaded.port.clock);
     if args.json {
         show(&to_text(&changes_out(&changes, &setting))?)?;
     } else {

@@ -2,6 +2,7 @@
 
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::load::examine;
+use crate::cli::port_args::PortArgs;
 use crate::cli::screen::show;
 use crate::finding::fault::has_error;
 use crate::finding::render::with_source;
@@ -9,14 +10,13 @@ use crate::output::escape::visible_lines;
 use crate::output::wire::findings::findings_out;
 use crate::output::wire::value::to_text;
 use clap::Args;
-use std::path::PathBuf;
 
 /// What `check` is asked.
 #[derive(Clone, Debug, Args)]
 pub struct CheckArgs {
-    /// The port's folder
-    #[arg(value_name = "DIR")]
-    pub folder: PathBuf,
+    /// The port
+    #[command(flatten)]
+    pub port: PortArgs,
     /// Write JSON
     #[arg(long)]
     pub json: bool,
@@ -27,7 +27,7 @@ pub struct CheckArgs {
 /// # Errors
 /// [`Failure::Read`], [`Failure::Write`]; [`Failure::Input`] without findings, as they are shown already.
 pub fn run(args: &CheckArgs) -> Result<Exit, Failure> {
-    let examined = examine(&args.folder)?;
+    let examined = examine(&args.port)?;
     if args.json {
         show(&to_text(&findings_out(&examined.findings))?)?;
     } else {

@@ -12,7 +12,7 @@ pub struct CompletionsArgs {
     pub shell: Shell,
 }
 
-/// Writes the completions of the whole program.
+/// Writes the completions of the whole command line.
 ///
 /// # Errors
 /// [`Failure::Write`].

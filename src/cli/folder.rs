@@ -47,6 +47,16 @@ impl PortFolder {
         Ok(folder)
     }
 
+    /// Reads a file from elsewhere, or standard input for "-", in place of the folder's own file of that name.
+    ///
+    /// # Errors
+    /// [`Failure::Read`] if it cannot be read.
+    pub fn replace(&mut self, name: &str, by: &Path) -> Result<(), Failure> {
+        let bytes = read_bytes(by)?;
+        self.take(name.to_owned(), &by.display().to_string(), bytes);
+        Ok(())
+    }
+
     fn take(&mut self, name: String, shown: &str, bytes: Vec<u8>) {
         if bytes.len() > LONGEST {
             // Kept as an empty file, so that nobody reports it missing besides.

@@ -6,6 +6,7 @@ use crate::arrival::errors::ErrorTables;
 use crate::arrival::errors_reader::read_error_tables;
 use crate::cli::exit::Failure;
 use crate::cli::folder::{PortFolder, TOO_LONG};
+use crate::cli::port_args::PortArgs;
 use crate::cli::screen::tell_findings;
 use crate::finding::fault::{Finding, has_error, nearest, sort_findings};
 use crate::finding::source::SourceText;
@@ -20,10 +21,11 @@ use crate::work::expand::expand;
 use crate::work::graph::WorkGraph;
 use crate::work::strangers::strangers;
 use std::collections::BTreeMap;
-use std::path::Path;
 
 /// The error tables that go with the program, for ports without their own.
 const SHIPPED_ERRORS: &str = include_str!("../../rules/forecast-errors.toml");
+/// A port's record within its folder.
+const RECORD: &str = "events.toml";
 /// A port's own error tables within its folder.
 const OWN_ERRORS: &str = "forecast-errors.toml";
 
@@ -85,8 +87,8 @@ impl Loaded {
 ///
 /// # Errors
 /// [`Failure::Read`], or [`Failure::Input`] with all findings.
-pub fn load(path: &Path) -> Result<Loaded, Failure> {
-    let Examined { findings, sources, loaded } = examine(path)?;
+pub fn load(port: &PortArgs) -> Result<Loaded, Failure> {
+    let Examined { findings, sources, loaded } = examine(port)?;
     match loaded {
         Some(loaded) => {
             tell_findings(&findings, &sources);
@@ -100,8 +102,11 @@ pub fn load(path: &Path) -> Result<Loaded, Failure> {
 ///
 /// # Errors
 /// [`Failure::Read`] if the disk does not give what is there.
-pub fn examine(path: &Path) -> Result<Examined, Failure> {
-    let folder = PortFolder::open(path)?;
+pub fn examine(port: &PortArgs) -> Result<Examined, Failure> {
+    let mut folder = PortFolder::open(&port.folder)?;
+    if let Some(record) = &port.record {
+        folder.replace(RECORD, record)?;
+    }
     let (things, port_findings) = read_folder(&folder.files);
     let mut findings = folder.findings.clone();
     findings.extend(port_findings);
@@ -112,7 +117,7 @@ pub fn examine(path: &Path) -> Result<Examined, Failure> {
     });
     let clock = read_draft(&folder.files).0.clock;
     let (events, event_findings) =
-        folder.files.get("events.toml").map(|source| read_events(source, clock.as_ref())).unwrap_or_default();
+        folder.files.get(RECORD).map(|source| read_events(source, clock.as_ref())).unwrap_or_default();
     findings.extend(event_findings);
     if let Some((port, rules, work)) = &things {
         findings.extend(strangers(port, rules, work, &events));

@@ -13,5 +13,6 @@ pub mod man;
 pub mod now;
 pub mod plan;
 pub mod planning;
+pub mod port_args;
 pub mod run;
 pub mod screen;

@@ -4,6 +4,7 @@ use crate::cli::clock::port_now;
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::load::{Loaded, load};
 use crate::cli::planning::{exit_of, latest, plans_until};
+use crate::cli::port_args::PortArgs;
 use crate::cli::screen::show;
 use crate::finding::fault::nearest;
 use crate::output::now_lists::{NowOptions, concerns, everybody, now_of};
@@ -15,15 +16,14 @@ use crate::plan::sheet::Plan;
 use crate::time::moment::Minutes;
 use clap::Args;
 use clap::value_parser;
-use std::path::PathBuf;
 
 /// What `now` is asked.
 #[derive(Clone, Debug, Args)]
 #[command(after_help = AFTER_HELP)]
 pub struct NowArgs {
-    /// The port's folder
-    #[arg(value_name = "DIR")]
-    pub folder: PathBuf,
+    /// The port
+    #[command(flatten)]
+    pub port: PortArgs,
     /// Only tasks of this person, office, pool or member
     #[arg(long = "for", value_name = "WHO")]
     pub concerning: Option<String>,
@@ -52,7 +52,7 @@ Examples:
 /// # Errors
 /// Any [`Failure`].
 pub fn run(args: &NowArgs) -> Result<Exit, Failure> {
-    let loaded = load(&args.folder)?;
+    let loaded = load(&args.port)?;
     let setting = Setting::of(&loaded.port, &loaded.rules);
     let now = port_now(args.now.as_deref(), setting.clock, loaded.port.exercise)?;
     let history = plans_until(&loaded, now);

@@ -4,6 +4,7 @@ use crate::cli::clock::port_now;
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::load::load;
 use crate::cli::planning::{compared_with, exit_of, latest, plans_until};
+use crate::cli::port_args::PortArgs;
 use crate::cli::screen::{show, width};
 use crate::output::plan_text::plan_text;
 use crate::output::setting::Setting;
@@ -11,15 +12,14 @@ use crate::output::wire::plan::plan_out;
 use crate::output::wire::value::to_text;
 use crate::plan::changes::changes_between;
 use clap::Args;
-use std::path::PathBuf;
 
 /// What `plan` is asked.
 #[derive(Clone, Debug, Args)]
 #[command(after_help = AFTER_HELP)]
 pub struct PlanArgs {
-    /// The port's folder
-    #[arg(value_name = "DIR")]
-    pub folder: PathBuf,
+    /// The port
+    #[command(flatten)]
+    pub port: PortArgs,
     /// The time to plan for; else the port's exercise clock, else the system's
     #[arg(long, value_name = "TIME")]
     pub now: Option<String>,
@@ -46,14 +46,15 @@ Examples:
 /// # Errors
 /// Any [`Failure`].
 pub fn run(args: &PlanArgs) -> Result<Exit, Failure> {
-    let loaded = load(&args.folder)?;
+    let loaded = load(&args.port)?;
     let setting = Setting::of(&loaded.port, &loaded.rules);
     let now = port_now(args.now.as_deref(), setting.clock, loaded.port.exercise)?;
     let history = plans_until(&loaded, now);
     let plan = latest(&history)?;
     if args.json {
         let earlier = compared_with(&loaded, now).and_then(|moment| history.at(moment));
-        let changes = earlier.map(|earlier| changes_between(earlier, plan, &loaded.events));
+        let changes =
+            earlier.map(|earlier| changes_between(earlier, plan, &loaded.events, &loaded.port.clock));
         show(&to_text(&plan_out(plan, &setting, changes.as_ref()))?)?;
     } else {
         show(&plan_text(plan, &setting, width(args.width)))?;

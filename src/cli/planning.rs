@@ -19,7 +19,9 @@ pub fn plans_until(loaded: &Loaded, now: Moment) -> History {
         events: &loaded.events,
         forecasts: &loaded.forecasts,
         tables: &loaded.tables,
-        draw: Draw::default(),
+        // The same scenarios for every advisory and every place: what happens together is counted together, and an
+        // arrival adopted earlier is held against the same count. `arrivals` draws more for what is rare.
+        draw: Draw { most: Draw::default().scenarios, ..Draw::default() },
         effort: Effort::usual(loaded.work.task_ids().count()),
     };
     plan_at(&inputs, now)

@@ -55,9 +55,12 @@ impl<'a> Times<'a> {
         glued(&if self.zone(at) == self.zone(self.now) { text } else { format!("{text} {}", self.zone(at)) })
     }
 
-    /// "Thu 06:20 (09:20Z)".
+    /// "Thu 06:20 (09:20Z)"; "Thu 09:20Z" where the clock shows UTC.
     #[must_use]
     pub fn both(&self, at: Moment) -> String {
+        if self.clock.offset_at(at).east == Minutes::ZERO {
+            return format!("{}Z", self.local_day(at));
+        }
         glued(&format!("{} ({})", self.local_day(at), self.utc(at)))
     }
 

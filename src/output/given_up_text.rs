@@ -6,6 +6,7 @@ use crate::output::layout::Page;
 use crate::output::task_text::{chain_words, title};
 use crate::output::words::count;
 use crate::plan::sheet::{GivenUp, Plan, Relief, TaskLine};
+use crate::time::moment::Moment;
 
 /// Writes every given-up task with its cause, then what would relieve the plan, earliest decision first.
 pub fn write_given_up(page: &mut Page, times: &Times, plan: &Plan) {
@@ -101,6 +102,28 @@ pub fn write_overtaken(page: &mut Page, times: &Times, plan: &Plan) {
                 apart(overtaken.computed - overtaken.adopted),
             ),
         );
+    }
+}
+
+/// Writes what an order to adopt the computed arrival would move.
+pub fn write_if_adopted(page: &mut Page, margin: usize, times: &Times, plan: &Plan) {
+    for tried in &plan.if_adopted {
+        let stages = tried.stages.iter().map(|stage| {
+            let due = |at: Option<Moment>| {
+                at.map_or_else(|| "not due".to_owned(), |at| times.both(times.told_down(at)))
+            };
+            format!("{} due {} instead of {}", stage.id, due(stage.to), due(stage.from))
+        });
+        let mut parts: Vec<String> = stages.collect();
+        parts.push(format!("{} start at another time", count(tried.moved, "task")));
+        for (words, ids) in [("no longer fit", &tried.given_up), ("fit again", &tried.relieved)] {
+            if !ids.is_empty() {
+                parts.push(format!("{words}: {}", ids.join(", ")));
+            }
+        }
+        let computed = times.both(times.told_down(tried.computed));
+        let words = format!("{} at {computed}, {}: {}", tried.place, apart(tried.by), parts.join("; "));
+        page.labelled(margin, "if adopted", &words);
     }
 }
 

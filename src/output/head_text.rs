@@ -2,7 +2,7 @@
 
 use crate::output::arrival_text::{Onset, counted_from, glued_chance, onset_sentence};
 use crate::output::clock_text::{Times, lasting};
-use crate::output::given_up_text::write_overtaken;
+use crate::output::given_up_text::{write_if_adopted, write_overtaken};
 use crate::output::layout::Page;
 use crate::output::setting::Setting;
 use crate::output::words::{count, stage_status};
@@ -58,8 +58,9 @@ pub fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan
     }
     page.labelled(MARGIN, "verdict", &verdict(times, plan));
     for clash in &plan.clashes {
-        page.labelled(MARGIN, "clash", &format!("the order for {}: {}", clash.task, clash.what));
+        page.labelled(MARGIN, "clash", &format!("{}: {}", clash.task, clash.what));
     }
+    write_if_adopted(page, MARGIN, times, plan);
     for note in &plan.notes {
         page.labelled(MARGIN, "note", note);
     }

@@ -36,12 +36,20 @@ impl ChainWords<'_> {
         let parts =
             chain(problem, &self.draft.schedule, position).map(|chain| chain.parts).unwrap_or_default();
         let last = parts.len().saturating_sub(1);
+        let mut from = problem.now;
+        // A chain that begins with work already under way is told from when that began.
+        let begun = parts.first().filter(|part| part.what == What::Fixed).map(|part| part.minutes);
+        if let Some(minutes) = begun {
+            from = from + minutes;
+        }
+        let skipped = usize::from(begun.is_some());
         let links = (0..)
             .zip(parts)
+            .skip(skipped)
             .filter(|(number, part)| part.minutes != Minutes::ZERO || *number == last)
             .map(|(_, part)| ChainLink { what: self.words(part.task, &part.what), minutes: part.minutes })
             .collect();
-        (problem.now, links)
+        (from, links)
     }
 
     fn words(&self, task: usize, what: &What) -> String {

@@ -4,6 +4,7 @@ use crate::plan::news::news_words;
 use crate::plan::sheet::{Arrival, Plan, StageLine, StageStatus, TaskLine, TaskState};
 use crate::record::event::Event;
 use crate::record::mention::{MentionKind, mentions};
+use crate::time::clock::PortClock;
 use crate::time::moment::{Minutes, Moment};
 use std::collections::BTreeMap;
 
@@ -121,7 +122,7 @@ pub enum Turn {
 
 /// What differs between two plans of one port, and why; `events` is the port's whole record.
 #[must_use]
-pub fn changes_between(earlier: &Plan, later: &Plan, events: &[Event]) -> Changes {
+pub fn changes_between(earlier: &Plan, later: &Plan, events: &[Event], clock: &PortClock) -> Changes {
     let mut between: Vec<&Event> = events
         .iter()
         .filter(|event| {
@@ -130,7 +131,7 @@ pub fn changes_between(earlier: &Plan, later: &Plan, events: &[Event]) -> Change
         })
         .collect();
     between.sort_by_key(|event| event.known);
-    let teller = Teller { earlier, later, between };
+    let teller = Teller { earlier, later, between, clock };
     let before: BTreeMap<&str, &TaskLine> =
         earlier.tasks.iter().map(|line| (line.id.as_str(), line)).collect();
     let pairs = || later.tasks.iter().filter_map(|line| before.get(line.id.as_str()).map(|old| (*old, line)));
@@ -139,7 +140,7 @@ pub fn changes_between(earlier: &Plan, later: &Plan, events: &[Event]) -> Change
     Changes {
         from: earlier.now,
         to: later.now,
-        news: teller.between.iter().map(|event| news_words(event)).collect(),
+        news: teller.between.iter().map(|event| news_words(event, clock)).collect(),
         arrivals: teller.arrivals(),
         stages: teller.stages(),
         moved: pairs().filter_map(|(old, new)| teller.moved(old, new)).collect(),
@@ -151,6 +152,7 @@ struct Teller<'a> {
     earlier: &'a Plan,
     later: &'a Plan,
     between: Vec<&'a Event>,
+    clock: &'a PortClock,
 }
 
 impl Teller<'_> {
@@ -304,13 +306,16 @@ impl Teller<'_> {
             (Some(was), Some(is)) if is < was => {
                 String::from("it can go earlier now, and must for what waits for it")
             }
-            _ => self.between.last().map_or_else(|| String::from("the clock"), |event| news_words(event)),
+            _ => self
+                .between
+                .last()
+                .map_or_else(|| String::from("the clock"), |event| news_words(event, self.clock)),
         }
     }
 
     /// The last thing that was said of something between the two plans.
     fn said_about(&self, kind: MentionKind, id: &str) -> Option<String> {
         let about = |event: &&&Event| mentions(event).iter().any(|m| m.kind == kind && m.id == id);
-        self.between.iter().rev().find(about).map(|event| news_words(event))
+        self.between.iter().rev().find(about).map(|event| news_words(event, self.clock))
     }
 }

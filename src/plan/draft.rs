@@ -1,13 +1,13 @@
 //! One try at a plan: roles, problem and schedule under given choices.
 
 use crate::plan::adjust::Adjustments;
-use crate::plan::problem::{ProblemInputs, Stated, state};
+use crate::plan::problem::{Hints, ProblemInputs, Stated, state};
 use crate::plan::roles::{Role, RoleInputs, roles};
 use crate::plan::sheet::{Clash, Plan, TaskState};
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::schedule::outcome::{Outcome, Schedule, Score};
-use crate::schedule::problem::{Fixed, Problem};
+use crate::schedule::problem::{Fixed, Issued, Problem};
 use crate::schedule::search::{Effort, solve};
 use crate::time::moment::Moment;
 use crate::work::graph::WorkGraph;
@@ -32,6 +32,8 @@ pub struct DraftInputs<'a> {
     pub now: Moment,
     /// When trying a later decision: the plan that is carried out until then.
     pub carried_out: Option<&'a Plan>,
+    /// When trying a later decision: where an earlier try with the same choices put each task.
+    pub hints: Option<&'a Hints>,
     /// The last time that the forecast speaks of.
     pub forecast_end: Option<Moment>,
     /// How long to search.
@@ -59,18 +61,12 @@ pub struct Draft {
 /// out as a plan in which nothing is placed and the refusal is named as a clash: shown, not hidden.
 #[must_use]
 pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
-    let DraftInputs { port, work, timed, situation, before, now, carried_out, forecast_end, effort } = inputs;
+    let DraftInputs { port, work, timed, situation, before, now, carried_out, hints, forecast_end, effort } =
+        inputs;
     let roles = roles(RoleInputs { work, timed, situation, before, adjustments, now, carried_out });
-    let problem_inputs = ProblemInputs {
-        port,
-        work,
-        timed,
-        situation,
-        before: carried_out.or(before),
-        adjustments,
-        now,
-        forecast_end,
-    };
+    let before = carried_out.or(before);
+    let problem_inputs =
+        ProblemInputs { port, work, timed, situation, before, hints, adjustments, now, forecast_end };
     let mut stated = state(problem_inputs, &roles);
     let mut clashes = Vec::new();
     let mut schedule = solved(&stated.problem, effort, &mut clashes);
@@ -132,6 +128,17 @@ fn fix(problem: &mut Problem, position: usize, start: Moment) {
 }
 
 impl Draft {
+    /// Where this try puts the tasks that it was free to place.
+    #[must_use]
+    pub fn hints(&self) -> Hints {
+        let placed = self.stated.nodes.iter().zip(&self.schedule.outcomes).filter_map(|(node, outcome)| {
+            let Outcome::Placed(placement) = outcome else { return None };
+            let issued = Issued { way: 0, start: placement.start, members: placement.members.clone() };
+            matches!(self.roles.get(node), Some(Role::Free { .. })).then_some((*node, issued))
+        });
+        placed.collect()
+    }
+
     /// Ids of the tasks that this try does not do in time: given up, or under way past their hard deadline.
     #[must_use]
     pub fn misses(&self, work: &WorkGraph) -> BTreeSet<String> {

@@ -3,13 +3,14 @@
 use crate::advisory::forecast::Advisory;
 use crate::arrival::odds::Answers;
 use crate::plan::adjust::Adjustments;
+use crate::plan::adoption::if_adopted;
 use crate::plan::audit::audit;
 use crate::plan::audit_case::AuditInputs;
 use crate::plan::draft::{Draft, DraftInputs, draft};
 use crate::plan::heads;
 use crate::plan::lines::{LineInputs, lines};
 use crate::plan::relief::{permitted, reliefs};
-use crate::plan::sheet::{AdvisoryInForce, Plan};
+use crate::plan::sheet::{AdvisoryInForce, Clash, Plan};
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::rules::stage::Rules;
@@ -18,9 +19,10 @@ use crate::schedule::outcome::Outcome;
 use crate::schedule::search::Effort;
 use crate::time::moment::Moment;
 use crate::units::wind::Averaging;
-use crate::work::graph::WorkGraph;
+use crate::work::graph::{Task, WorkGraph};
 use crate::work::reckoned::ArrivalBook;
-use crate::work::timed::timed;
+use crate::work::timed::{Timed, timed};
+use petgraph::graph::NodeIndex;
 
 /// An advisory with its answers.
 #[derive(Clone, Debug)]
@@ -73,6 +75,7 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
         before,
         now,
         carried_out: None,
+        hints: None,
         forecast_end,
         effort,
     };
@@ -92,6 +95,11 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
     });
     let averaging = forecast.map_or(Averaging::Minute1, |f| f.advisory.averaging);
     let arrivals = heads::arrivals(port, book, averaging);
+    let adoption = if with_reliefs {
+        if_adopted(draft_inputs, rules, book, (&made, &arrivals), draft_with_permitted)
+    } else {
+        Vec::new()
+    };
     let mut plan = Plan {
         now,
         advisory: forecast.map(|f| in_force(f, situation)),
@@ -102,7 +110,8 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
         arrivals,
         tasks,
         reliefs: Vec::new(),
-        clashes: made.clashes.clone(),
+        if_adopted: adoption,
+        clashes: made.clashes.iter().cloned().chain(begun_too_soon(work, rules, &timed, situation)).collect(),
         breaches: Vec::new(),
         notes: Vec::new(),
     };
@@ -114,11 +123,10 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
 }
 
 /// The latest start of each task that keeps the hard deadlines; where nothing hard limits it, the soft ones. A given-up
-/// task stands between none: what it waits for and what waits for it no longer limit each other.
+/// task puts no limit on those that it waits for.
 fn latest_starts(draft: &Draft) -> Vec<Option<Moment>> {
     let mut problem = draft.stated.problem.clone();
-    let outcomes = &draft.schedule.outcomes;
-    let is_given_up = |task: usize| matches!(outcomes.get(task), Some(Outcome::GivenUp(_)));
+    let is_given_up = |task: usize| matches!(draft.schedule.outcomes.get(task), Some(Outcome::GivenUp(_)));
     problem.links.retain(|link| !is_given_up(link.before) && !is_given_up(link.after));
     let by = |limits| latest(&problem, limits, &[]).unwrap_or_default();
     let start = |latest: &Latest| match latest {
@@ -127,6 +135,19 @@ fn latest_starts(draft: &Draft) -> Vec<Option<Moment>> {
     };
     let soft = by(Limits::DeadlinesAndDues);
     by(Limits::Deadlines).iter().zip(&soft).map(|(hard, soft)| start(hard).or_else(|| start(soft))).collect()
+}
+
+/// Tasks that were begun or done although the stage that gates them is not declared: a fact cannot be undone, but it is
+/// said.
+fn begun_too_soon(work: &WorkGraph, rules: &Rules, timed: &Timed, situation: &Situation) -> Vec<Clash> {
+    let clash = |(index, task): (NodeIndex, &Task)| {
+        let stage = rules.stages.get(timed.tasks.get(&index)?.if_declared?)?;
+        let state = situation.tasks.get(&task.id)?;
+        let is_begun = state.started.is_some() || state.done_at().is_some();
+        let what = format!("reported begun, and stage {} is not declared", stage.id);
+        is_begun.then(|| Clash { task: task.id.clone(), what })
+    };
+    work.tasks().filter_map(clash).collect()
 }
 
 /// The plain plan, or the one with the fewest choices that the files permit if the plain one misses something.

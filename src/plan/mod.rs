@@ -1,6 +1,7 @@
 //! From rules, record and odds to a timed plan; its audit; what changed since the one before.
 
 pub mod adjust;
+pub mod adoption;
 pub mod audit;
 pub mod audit_case;
 pub mod audit_people;

@@ -41,6 +41,9 @@ pub struct Stated {
     pub window_words: Vec<String>,
 }
 
+/// Where to try tasks first.
+pub type Hints = BTreeMap<NodeIndex, engine::Issued>;
+
 /// Everything that a problem is stated from.
 #[derive(Clone, Copy, Debug)]
 pub struct ProblemInputs<'a> {
@@ -54,6 +57,8 @@ pub struct ProblemInputs<'a> {
     pub situation: &'a Situation,
     /// The plan before this one.
     pub before: Option<&'a Plan>,
+    /// Where to try tasks first, instead of where the plan before has them.
+    pub hints: Option<&'a Hints>,
     /// The choices.
     pub adjustments: &'a Adjustments,
     /// Nothing starts before this moment.
@@ -130,7 +135,8 @@ impl Stater<'_> {
             }
             Role::Free { takes, ordered, is_unreported } => {
                 let way = self.way(task, *takes, *ordered);
-                let issued = if *is_unreported || ordered.is_some() { None } else { self.issued(task, &way) };
+                let issued =
+                    if *is_unreported || ordered.is_some() { None } else { self.issued(index, task, &way) };
                 let soonest =
                     if *is_unreported { self.inputs.now.ceil_to(LEAST_MOVE) } else { self.inputs.now };
                 let release = times.release.unwrap_or(soonest).max(soonest);
@@ -209,7 +215,10 @@ impl Stater<'_> {
     }
 
     /// Where the plan before has the task, if that is still ahead and its members are still able.
-    fn issued(&self, task: &Task, way: &engine::Way) -> Option<engine::Issued> {
+    fn issued(&self, index: NodeIndex, task: &Task, way: &engine::Way) -> Option<engine::Issued> {
+        if let Some(hints) = self.inputs.hints {
+            return hints.get(&index).filter(|hint| hint.start >= self.inputs.now).cloned();
+        }
         let line = self.inputs.before?.task(&task.id)?;
         let start = line.start.filter(|start| *start >= self.inputs.now)?;
         if line.state != TaskState::Planned {

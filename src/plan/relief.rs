@@ -159,10 +159,10 @@ impl Finder<'_> {
         }
         let missed = tried.misses(self.inputs.work);
         let relieves: BTreeSet<String> = self.missed.difference(&missed).cloned().collect();
-        if relieves.is_empty() {
+        if relieves.is_empty() || self.stand_ins(choice).iter().any(|id| missed.contains(id)) {
             return None;
         }
-        let decide_by = self.decide_by(choice, &relieves, &missed);
+        let decide_by = self.decide_by(&tried, &relieves, &missed);
         Some(Relief {
             steps: self.steps(choice),
             relieves: relieves.into_iter().collect(),
@@ -172,37 +172,37 @@ impl Finder<'_> {
         })
     }
 
-    /// Whether the choice made at `when` still relieves as much and gives up no more, the plan in hand being carried out
-    /// until then.
-    fn helps_at(
-        &self,
-        choice: &Adjustments,
-        (relieves, missed): (&BTreeSet<String>, &BTreeSet<String>),
-        when: Moment,
-    ) -> bool {
-        let tried = draft(DraftInputs { now: when, carried_out: Some(self.plan), ..self.inputs }, choice);
-        let then = tried.misses(self.inputs.work);
-        let is_order_lost = tried.clashes.len() > self.base.clashes.len();
-        !is_order_lost
-            && relieves.is_disjoint(&then)
-            && then.iter().all(|id| self.missed.contains(id) || missed.contains(id))
+    /// The stand-ins of the tasks that a choice substitutes: a relief must not lean on one that does not fit itself.
+    fn stand_ins(&self, choice: &Adjustments) -> Vec<String> {
+        let substituted = choice.substituted.difference(&self.base.adjustments.substituted);
+        let tasks = substituted.filter_map(|id| self.inputs.work.task(id)?.or_else.as_ref());
+        tasks.flat_map(|substitute| substitute.tasks.iter().cloned()).collect()
     }
 
-    /// The last minute at which the choice still helps: steps of an hour until it does not, then halving.
+    /// The last minute at which the choice still relieves as much and gives up no more, the plan in hand being carried
+    /// out until then: steps of an hour until it does not, then halving.
     ///
     /// Tides and rest can make a later decision help where an earlier one does not; people are told the end of the first
-    /// unbroken stretch, the safe side.
-    fn decide_by(
-        &self,
-        choice: &Adjustments,
-        relieves: &BTreeSet<String>,
-        missed: &BTreeSet<String>,
-    ) -> Moment {
-        let helps = |when| self.helps_at(choice, (relieves, missed), when);
-        let start = self.inputs.now;
-        let mut good = start;
-        let mut bad = start + Minutes::hours(72);
-        let mut probe = start + Minutes::hours(1);
+    /// unbroken stretch, the safe side. Each try starts from where the one before put the tasks.
+    fn decide_by(&self, first: &Draft, relieves: &BTreeSet<String>, missed: &BTreeSet<String>) -> Moment {
+        let mut hints = first.hints();
+        let mut helps = |when: Moment| {
+            let inputs =
+                DraftInputs { now: when, carried_out: Some(self.plan), hints: Some(&hints), ..self.inputs };
+            let tried = draft(inputs, &first.adjustments);
+            let then = tried.misses(self.inputs.work);
+            let is_order_lost = tried.clashes.len() > self.base.clashes.len();
+            let does = !is_order_lost
+                && relieves.is_disjoint(&then)
+                && then.iter().all(|id| self.missed.contains(id) || missed.contains(id));
+            if does {
+                hints = tried.hints();
+            }
+            does
+        };
+        let mut good = self.inputs.now;
+        let mut bad = good + Minutes::hours(72);
+        let mut probe = good + Minutes::hours(1);
         while probe < bad {
             if helps(probe) {
                 good = probe;

@@ -27,6 +27,8 @@ pub struct Plan {
     pub joint: Option<JointChance>,
     /// Adopted arrivals that the computed ones have left behind by more than the rules' margin.
     pub overtaken: Vec<Overtaken>,
+    /// What adopting the computed arrivals would move, where they differ from the adopted ones by more than the margin.
+    pub if_adopted: Vec<IfAdopted>,
     /// Orders that clash with a rule, a limit or each other: reported, never moved.
     pub clashes: Vec<Clash>,
     /// What the audit found wrong with this plan; empty for a sound one.
@@ -347,6 +349,36 @@ pub struct Overtaken {
     pub computed: Moment,
     /// Tasks that the computed one endangers: they are planned to finish after it allows.
     pub endangers: Vec<String>,
+}
+
+/// What an order to adopt the computed arrival would move.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct IfAdopted {
+    /// The place's name.
+    pub place: String,
+    /// The computed arrival.
+    pub computed: Moment,
+    /// How much later than the adopted one it is; negative is earlier.
+    pub by: Minutes,
+    /// Stages that are not declared yet and would be due at another time.
+    pub stages: Vec<StageShift>,
+    /// How many tasks would start at another time.
+    pub moved: usize,
+    /// Tasks that would no longer fit.
+    pub given_up: Vec<String>,
+    /// Tasks that would fit again.
+    pub relieved: Vec<String>,
+}
+
+/// A stage that would be due at another time.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct StageShift {
+    /// Its id.
+    pub id: String,
+    /// Due now.
+    pub from: Option<Moment>,
+    /// Due then.
+    pub to: Option<Moment>,
 }
 
 /// An order that clashes with something.

@@ -1,4 +1,5 @@
-//! From one averaging period of the wind to another, by exposure: gust factors of the WMO guidelines for tropical cyclones.
+//! From one averaging period of the wind to another, by exposure: gust factors of the WMO guidelines for
+//! tropical cyclones.
 
 use crate::geo::exposure::ExposureClass;
 use crate::units::wind::Averaging;
@@ -6,13 +7,17 @@ use crate::units::wind::Averaging;
 /// Reference periods of the rows of a [`Table`]: an hour, 10, 3, 2 minutes, 1 minute.
 const REFERENCES: [u32; 5] = [3600, 600, 180, 120, 60];
 
-/// Gust factors of one class: for each reference period T0 the highest mean over 3 s, 60 s, 120 s, 180 s, 600 s within T0, as a multiple of the mean over T0.
+/// Gust factors of one class: for each reference period T0 the highest mean over 3 s, 60 s, 120 s, 180 s, 600
+/// s within T0, as a multiple of the mean over T0.
 type Table = [[f64; 5]; 5];
 
-/// Table 1.1 of WMO/TD-No. 1555 (Harper, Kepert & Ginger 2010, Guidelines for converting between various wind averaging periods in tropical cyclone conditions).
+/// Table 1.1 of WMO/TD-No. 1555 (Harper, Kepert & Ginger 2010, Guidelines for converting between various wind
+/// averaging periods in tropical cyclone conditions).
 ///
-/// The 3-s column is confirmed by public copies, save at-sea within an hour (1.30 here; one copy has 1.40, which fits neither the steps of the column nor 1.23 x 1.03); the others are
-/// from memory and agree with one another and with the conversions of Table 1.2 (0.93, 0.90, 0.87, 0.84 from 1 min to 10 min). Entries with a period longer than their reference are 1.
+/// The 3-s column is confirmed by public copies, save at-sea within an hour (1.30 here; one copy has 1.40,
+/// which fits neither the steps of the column nor 1.23 x 1.03); the others are from memory and agree with one
+/// another and with the conversions of Table 1.2 (0.93, 0.90, 0.87, 0.84 from 1 min to 10 min). Entries with
+/// a period longer than their reference are 1.
 fn table(class: ExposureClass) -> &'static Table {
     const IN_LAND: Table = [
         [1.75, 1.28, 1.19, 1.15, 1.08],
@@ -50,7 +55,8 @@ fn table(class: ExposureClass) -> &'static Table {
     }
 }
 
-/// Gust factor: the highest mean over `period` within a reference of `within` seconds, as a multiple of the mean over the reference. `None` for other references than the table's.
+/// Gust factor: the highest mean over `period` within a reference of `within` seconds, as a multiple of the
+/// mean over the reference. `None` for other references than the table's.
 #[must_use]
 pub fn gust_factor(class: ExposureClass, period: Averaging, within: u32) -> Option<f64> {
     let row = REFERENCES.iter().position(|reference| *reference == within)?;
@@ -64,15 +70,18 @@ pub fn gust_factor(class: ExposureClass, period: Averaging, within: u32) -> Opti
     table(class).get(row)?.get(column).copied()
 }
 
-/// What to multiply a storm's greatest wind averaged over `from` with, to have its greatest wind averaged over `to`, in one exposure.
+/// What to multiply a storm's greatest wind averaged over `from` with, to have its greatest wind averaged
+/// over `to`, in one exposure.
 ///
-/// To a shorter period: the gust factor within `from`. To a longer one: G(to, 1 h) / G(from, 1 h), which gives the 0.93, 0.90, 0.87, 0.84 of WMO/TD-No. 1555, Table 1.2, from 1 min to
-/// 10 min. The two are not each other's inverse on purpose: 1.05 (at sea) leads from any 10-min mean to its highest minute, 0.93 from the highest
-/// minute of a storm to its highest 10-min mean.
+/// To a shorter period: the gust factor within `from`. To a longer one: G(to, 1 h) / G(from, 1 h), which
+/// gives the 0.93, 0.90, 0.87, 0.84 of WMO/TD-No. 1555, Table 1.2, from 1 min to 10 min. The two are not each
+/// other's inverse on purpose: 1.05 (at sea) leads from any 10-min mean to its highest minute, 0.93 from the
+/// highest minute of a storm to its highest 10-min mean.
 ///
 /// ```
+/// use snugdown::geo::exposure::ExposureClass;
 /// use snugdown::units::wind::Averaging;
-/// use snugdown::wind::averaging::{ExposureClass, conversion};
+/// use snugdown::wind::averaging::conversion;
 /// // A storm's 50 kt over 1 min at sea are 46.5 kt over 10 min, with gusts of 55.5 kt.
 /// let at_sea = |to| 50.0 * conversion(ExposureClass::AtSea, Averaging::Minute1, to);
 /// assert!((at_sea(Averaging::Minute10) - 46.5).abs() < 0.2);

@@ -5,14 +5,16 @@ use crate::units::speed::Knots;
 use crate::wind::climatology::{radius_of_greatest_wind_nmi, rankine_exponent};
 use crate::wind::profile::{Profile, sector};
 use crate::wind::sphere::{Vector, bearing_degrees, distance_nmi, plus};
-use crate::wind::structure::{Ratios, realised_reach};
+use crate::wind::structure::Expected;
 
 /// How far the surface wind is turned inwards from the circle around the centre, in degrees, over the sea.
 ///
-/// 20: our rounding of the mean of 22.6 that Zhang & Uhlhorn 2012 (Monthly Weather Review 140:3587-3605) measured; cited from memory.
+/// 20: our rounding of the mean of 22.6 that Zhang & Uhlhorn 2012 (Monthly Weather Review 140:3587-3605)
+/// measured; cited from memory.
 pub const INFLOW_DEGREES: f64 = 20.0;
 
-/// The least exponent with which the mean vortex is used: its formula would fall below it in storms under 16 kt.
+/// The least exponent with which the mean vortex is used: its formula would fall below it in storms under 16
+/// kt.
 const LEAST_EXPONENT: f64 = 0.2;
 
 /// On which side of the equator a storm turns.
@@ -32,7 +34,8 @@ impl Hemisphere {
     }
 }
 
-/// The direction from which the wind blows at a site on bearing b from the centre, turned inwards by the angle beta.
+/// The direction from which the wind blows at a site on bearing b from the centre, turned inwards by the
+/// angle beta.
 ///
 /// Northern hemisphere: b + 90 - beta; southern: b - 90 + beta.
 #[must_use]
@@ -61,29 +64,25 @@ pub struct Vortex {
 }
 
 impl Vortex {
-    /// The storm of greatest wind `wind_kt`, where `forecast_kt` was forecast, with the size that `ratios` times `size` give.
+    /// The storm with its centre there, of greatest wind `wind_kt` and with the size error `size` (1 for
+    /// none), where `expected` was forecast.
     #[must_use]
-    pub fn realised(
-        centre: Vector,
-        latitude: f64,
-        ratios: &Ratios,
-        (forecast_kt, wind_kt): (f64, f64),
-        size: f64,
-    ) -> Vortex {
-        let mean = ratios[0].iter().sum::<f64>() / 4.0;
+    pub fn realised(expected: &Expected, centre: Vector, wind_kt: f64, size: f64) -> Vortex {
+        let mean = expected.ratios[0].iter().sum::<f64>() / 4.0;
         let mean = if mean > 0.0 { mean } else { 1.0 };
-        let reach_nmi = realised_reach(ratios, forecast_kt, wind_kt, latitude, size);
+        let reach_nmi = expected.reach(wind_kt, size);
         Vortex {
             centre,
             max_wind_kt: wind_kt,
             reach_nmi,
             widest_nmi: reach_nmi[0].into_iter().fold(0.0, f64::max),
-            exponent: rankine_exponent(wind_kt, latitude).max(LEAST_EXPONENT),
-            core_nmi: mean * size * radius_of_greatest_wind_nmi(wind_kt, latitude),
+            exponent: rankine_exponent(wind_kt, expected.latitude).max(LEAST_EXPONENT),
+            core_nmi: mean * size * radius_of_greatest_wind_nmi(wind_kt, expected.latitude),
         }
     }
 
-    /// The state a share `s` (0..1) of the way from `self` to `next`; the centre goes along the chord and is not brought back to length one.
+    /// The state a share `s` (0..1) of the way from `self` to `next`; the centre goes along the chord and is
+    /// not brought back to length one.
     #[must_use]
     pub fn towards(&self, next: &Vortex, s: f64) -> Vortex {
         let mix = |a: f64, b: f64| a + (b - a) * s;
@@ -139,7 +138,8 @@ impl Vortex {
 pub struct PointWind {
     /// Mean wind, averaged as the advisory's, 10 m over open water; falls to a calm in the eye.
     pub speed: Knots,
-    /// The same with the eye filled: what a gale's onset and end are judged by, since a calm eye never ends the gale.
+    /// The same with the eye filled: what a gale's onset and end are judged by, since a calm eye never ends
+    /// the gale.
     pub around: Knots,
     /// From where it blows.
     pub from: Bearing,
@@ -177,7 +177,8 @@ mod tests {
 
     #[test]
     fn a_site_left_of_a_southern_storm_moving_south_sees_the_wind_back() {
-        // On the storm's left (east) the site's bearing goes 180, 90, 0 as the centre passes: wind 110, 020, 290.
+        // On the storm's left (east) the site's bearing goes 180, 90, 0 as the centre passes: wind 110, 020,
+        // 290.
         let from = |bearing: f64| wind_from(Bearing::wrapped(bearing), Hemisphere::Southern, 20.0).get();
         assert_abs_diff_eq!(from(180.0), 110.0);
         assert_abs_diff_eq!(from(90.0), 20.0);

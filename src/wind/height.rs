@@ -3,16 +3,18 @@
 use crate::geo::exposure::ExposureClass;
 use crate::units::length::Metres;
 
-/// Heights are held within these bounds (m): below, a mean wind profile means little; above, the surface layer ends.
+/// Heights are held within these bounds (m): below, a mean wind profile means little; above, the surface
+/// layer ends.
 const HEIGHT_BOUNDS_M: (f64, f64) = (2.0, 200.0);
 
-/// Exponent of the power law for 3-s gusts: they grow less with height than means do, as gust factors fall. 0.10 is the upper of 0.08 to 0.10 in common use
-/// (from memory): the stronger gust aloft, the safe side.
+/// Exponent of the power law for 3-s gusts: they grow less with height than means do, as gust factors fall.
+/// 0.10 is the upper of 0.08 to 0.10 in common use (from memory): the stronger gust aloft, the safe side.
 const GUST_EXPONENT: f64 = 0.10;
 
 /// Roughness length in metres of the ground that the wind of a class has crossed.
 ///
-/// Davenport and WMO-No. 8 classes, from memory: sea 0.0002, open coast 0.005, open land 0.03. Wind off the land has crossed land.
+/// Davenport and WMO-No. 8 classes, from memory: sea 0.0002, open coast 0.005, open land 0.03. Wind off the
+/// land has crossed land.
 #[must_use]
 pub fn roughness_m(class: ExposureClass) -> f64 {
     match class {

@@ -1,17 +1,23 @@
 //! Wind speed and distance from the centre along one bearing: each from the other.
 //!
-//! Between the radii that an advisory gives the wind follows a power law, straight in log-log; inside them it rises to the greatest wind as the mean
-//! vortex does, outside it falls on with the last exponent. [`Profile::reach_nmi`] and [`Profile::speed_kt`] are each other's inverse.
+//! Between the radii that an advisory gives the wind follows a power law, straight in log-log; inside them it
+//! rises to the greatest wind as the mean vortex does, outside it falls on with the last exponent.
+//! [`Profile::reach_nmi`] and [`Profile::speed_kt`] are each other's inverse.
 
 /// The wind speeds whose reach advisories give, in kt, weakest first.
 pub const GIVEN_SPEEDS_KT: [f64; 3] = [34.0, 50.0, 64.0];
 
-/// Bounds of the exponent beyond the gale radius (physics of the modified Rankine vortex: 1 keeps angular momentum, 0.4 is the
-/// flattest outer profile in use; Knaff et al. 2007 find 0.3 to 0.9 within the gale radius). Our choice of bounds.
+/// Bounds of the exponent beyond the gale radius (physics of the modified Rankine vortex: 1 keeps angular
+/// momentum, 0.4 is the flattest outer profile in use; Knaff et al. 2007 find 0.3 to 0.9 within the gale
+/// radius). Our choice of bounds.
 const OUTER_EXPONENT: (f64, f64) = (0.4, 1.0);
 
-/// Where a wind of a given speed is not found on a bearing, the wind there stays this much (kt) below that speed.
+/// Where a wind of a given speed is not found on a bearing, the wind there stays this much (kt) below that
+/// speed.
 const JUST_BELOW_KT: f64 = 0.1;
+
+/// ln(50 / 34).
+const LOG_50_OVER_34: f64 = 0.385_662_480_811_984_73;
 
 /// The exponent x of v = c r^-x through (r1, v1) and (r2, v2): x = ln(v2 / v1) / ln(r1 / r2).
 #[must_use]
@@ -19,7 +25,8 @@ pub fn exponent_between(r1_nmi: f64, v1_kt: f64, r2_nmi: f64, v2_kt: f64) -> f64
     libm::log(v2_kt / v1_kt) / libm::log(r1_nmi / r2_nmi)
 }
 
-/// A quantity known at 45, 135, 225 and 315 degrees (the middles of the quadrants), linear in bearing between them.
+/// A quantity known at 45, 135, 225 and 315 degrees (the middles of the quadrants), linear in bearing between
+/// them.
 #[must_use]
 pub fn around(quadrants: [f64; 4], bearing_degrees: f64) -> f64 {
     let (from, to, share) = sector(bearing_degrees);
@@ -49,7 +56,8 @@ pub struct Profile {
 }
 
 impl Profile {
-    /// How far a wind of `speed_kt` or more reaches on this bearing in n mi; zero if it does not blow. The calm of the eye is not cut out.
+    /// How far a wind of `speed_kt` or more reaches on this bearing in n mi; zero if it does not blow. The
+    /// calm of the eye is not cut out.
     #[must_use]
     pub fn reach_nmi(&self, speed_kt: f64) -> f64 {
         if self.max_wind_kt < speed_kt {
@@ -128,16 +136,19 @@ impl Profile {
         self.max_wind_kt.min(v1_kt * libm::exp(libm::log(r1_nmi / r_nmi) * self.exponent))
     }
 
-    /// Radius and speed from which winds below 34 kt fall off: the gale radius, or the core where it is the wider or no gale blows.
+    /// Radius and speed from which winds below 34 kt fall off: the gale radius, or the core where it is the
+    /// wider or no gale blows.
     fn outer_start(&self) -> (f64, f64) {
         (self.reach_nmi[0].max(self.core_nmi), self.max_wind_kt.min(34.0))
     }
 
-    /// The last exponent known, within its bounds: between the 34- and 50-kt radii where both are there, else the mean vortex's.
+    /// The last exponent known, within its bounds: between the 34- and 50-kt radii where both are there, else
+    /// the mean vortex's.
     fn outer_exponent(&self) -> f64 {
         let [gale, storm, _] = self.reach_nmi;
         let last = if storm > 0.0 && gale > storm {
-            exponent_between(gale, 34.0, storm, 50.0)
+            // The exponent between the two given winds; ln(50 / 34) is written out, as this is the inner loop.
+            LOG_50_OVER_34 / libm::log(gale / storm)
         } else {
             self.exponent
         };
@@ -147,13 +158,14 @@ impl Profile {
 
 #[cfg(test)]
 mod tests {
-    use super::{Profile, around, exponent_between};
+    use super::{LOG_50_OVER_34, Profile, around, exponent_between};
     use approx::assert_abs_diff_eq;
     use proptest::prelude::{prop_assert, proptest};
 
     #[test]
     fn between_two_radii_the_wind_is_straight_in_log_log() {
         assert_abs_diff_eq!(exponent_between(120.0, 34.0, 60.0, 50.0), 0.5564, epsilon = 5e-5);
+        assert_abs_diff_eq!(LOG_50_OVER_34, libm::log(50.0 / 34.0), epsilon = 1e-16);
         let profile =
             Profile { max_wind_kt: 55.0, reach_nmi: [120.0, 60.0, 0.0], exponent: 0.5, core_nmi: 30.0 };
         assert_abs_diff_eq!(profile.speed_kt(90.0), 39.90, epsilon = 5e-3);

@@ -1,7 +1,7 @@
 //! The earth as a sphere of unit vectors: for the inner loops, where a full geodesic would be too slow.
 //!
-//! Distances differ from the ellipsoid's by at most 0.56 % (the flattening of WGS 84 is 1/298), far below the error of any
-//! forecast. For distances that people read take the geodesics of the `geo` room.
+//! Distances differ from the ellipsoid's by at most 0.56 % (the flattening of WGS 84 is 1/298), far below the
+//! error of any forecast. For distances that people read take the geodesics of the `geo` room.
 
 use crate::geo::position::{Position, wrap_longitude};
 use crate::units::bearing::Bearing;
@@ -65,8 +65,8 @@ pub fn east_and_north(p: Vector) -> (Vector, Vector) {
 
 /// Great-circle distance in nautical miles, from the chord between the two points.
 ///
-/// angle = c (1 + c^2 / 24 + 3 c^4 / 640), c the chord: the series of 2 asin(c / 2), good to 0.01 n mi within 1,500 n mi;
-/// beyond that the arcsine itself.
+/// angle = c (1 + c^2 / 24 + 3 c^4 / 640), c the chord: the series of 2 asin(c / 2), good to 0.01 n mi within
+/// 1,500 n mi; beyond that the arcsine itself.
 #[must_use]
 pub fn distance_nmi(a: Vector, b: Vector) -> f64 {
     let between = plus(a, -1.0, b);
@@ -93,7 +93,8 @@ pub fn bearing_degrees(from: Vector, to: Vector) -> f64 {
 
 /// The angle whose tangent is y / x, -pi to pi, to 2e-8 radians: four times as fast as the library's.
 ///
-/// atan(u) / u = 1 + a2 u^2 + ... + a16 u^16 for |u| <= 1 (Abramowitz & Stegun 1964, Handbook of Mathematical Functions, 4.4.49, after Hastings 1955).
+/// atan(u) / u = 1 + a2 u^2 + ... + a16 u^16 for |u| <= 1 (Abramowitz & Stegun 1964, Handbook of Mathematical
+/// Functions, 4.4.49, after Hastings 1955).
 fn angle_of(y: f64, x: f64) -> f64 {
     use std::f64::consts::{FRAC_PI_2, PI};
     const A: [f64; 9] = [
@@ -125,10 +126,11 @@ pub fn bearing(from: Vector, to: Vector) -> Bearing {
     Bearing::wrapped(bearing_degrees(from, to))
 }
 
-/// The point reached from `centre` by going `ahead` n mi along the unit tangent `along` and `aside` n mi along `across`.
+/// The point reached from `centre` by going `ahead` n mi along the unit tangent `along` and `aside` n mi
+/// along `across`.
 ///
-/// The two make one great-circle arc of length e = |(ahead, aside)|; tan e is taken as e (1 + e^2 / 3 + 2 e^4 / 15), good to 0.04 n mi within
-/// 1,000 n mi.
+/// The two make one great-circle arc of length e = |(ahead, aside)|; tan e is taken as e (1 + e^2 / 3 + 2 e^4
+/// / 15), good to 0.04 n mi within 1,000 n mi.
 #[must_use]
 pub fn displaced(centre: Vector, along: Vector, across: Vector, ahead_nmi: f64, aside_nmi: f64) -> Vector {
     let (ahead, aside) = (ahead_nmi / EARTH_RADIUS_NMI, aside_nmi / EARTH_RADIUS_NMI);

@@ -1,21 +1,24 @@
 //! How large a storm is at any hour of its forecast, as ratios to the mean vortex of its strength.
 //!
-//! ratio = given reach / mean reach (`climatology`) for the storm's own greatest wind. Kept as ratios the radii stay tied to the intensity: a stronger realisation of
-//! the storm is larger, a weaker one smaller, and below 34 kt there is no gale. How ratios are filled in:
+//! ratio = given reach / mean reach (`climatology`) for the storm's own greatest wind. Kept as ratios the
+//! radii stay tied to the intensity: a stronger realisation of the storm is larger, a weaker one smaller, and
+//! below 34 kt there is no gale. How ratios are filled in:
 //!
 //! * between two hours that give radii: linear in time;
 //! * before the first: as the first;
-//! * after the last: they relax to the mean vortex, exp(-dt / relaxation time): the storm's own size is forgotten slowly (Knaff et al. 2007 let the departure from
-//!   their mean vortex decay in this way);
-//! * a wind whose reach is never given takes the ratio of the next weaker wind, and a storm without any radii is a mean one. Both are assumptions, and told.
+//! * after the last: they relax to the mean vortex, exp(-dt / relaxation time): the storm's own size is
+//!   forgotten slowly (Knaff et al. 2007 let the departure from their mean vortex decay in this way);
+//! * a wind whose reach is never given takes the ratio of the next weaker wind, and a storm without any
+//!   radii is a mean one. Both are assumptions, and told.
 
 use crate::advisory::forecast::{Advisory, Reach};
-use crate::wind::climatology::reach_nmi;
+use crate::wind::climatology::{log_reach, reach_nmi};
 use crate::wind::profile::GIVEN_SPEEDS_KT;
 
 /// Mean ratio of observed reach to mean-vortex reach for 34, 50, 64 kt.
 ///
-/// Our own calculation from HURDAT2, Atlantic, 2006-2015: 34 kt 0.94 to 1.03 (storms of 35-105 kt), 50 kt 0.91 to 0.98, 64 kt 0.65 to 0.85.
+/// Our own calculation from HURDAT2, Atlantic, 2006-2015: 34 kt 0.94 to 1.03 (storms of 35-105 kt), 50 kt
+/// 0.91 to 1.03 (60-125 kt), 64 kt 0.65 to 0.9 (70-125 kt).
 const USUAL: [f64; 3] = [1.0, 0.92, 0.75];
 
 /// Ratios for the three given speeds, in the four quadrants NE, SE, SW, NW.
@@ -87,42 +90,74 @@ fn pairwise(a: [f64; 4], b: [f64; 4], f: impl Fn(f64, f64) -> f64) -> [f64; 4] {
     [f(a[0], b[0]), f(a[1], b[1]), f(a[2], b[2]), f(a[3], b[3])]
 }
 
-/// By how much (kt) a realisation must be stronger than forecast until a quadrant without a wind has it as the mean of the others.
+/// By how much (kt) a realisation must be stronger than forecast until a quadrant without a wind has it as
+/// the mean of the others.
 ///
-/// Our choice: zeros are left in 1.9 of 4 quadrants in storms of 35 kt, 1.1 at 45 kt, 0.3 at 55 kt (HURDAT2, Atlantic, 2006-2015).
+/// Our choice: zeros are left in 1.9 of 4 quadrants in storms of 35 kt, 1.1 at 45 kt, 0.3 at 55 kt (HURDAT2,
+/// Atlantic, 2006-2015).
 const FILLED_AT_KT: f64 = 20.0;
 
-/// The reach in n mi of the three given speeds for a realisation of greatest wind `wind_kt` where `forecast_kt` was forecast.
-///
-/// R = ratio x size x mean reach(wind). As the storm grows stronger than forecast, quadrants below the storm's mean ratio come up to it.
-#[must_use]
-pub fn realised_reach(
-    ratios: &Ratios,
-    forecast_kt: f64,
-    wind_kt: f64,
-    latitude: f64,
-    size: f64,
-) -> [[f64; 4]; 3] {
-    let stronger = ((wind_kt - forecast_kt) / FILLED_AT_KT).clamp(0.0, 1.0);
-    let mut reach = [[0.0; 4]; 3];
-    let mut outside = [f64::INFINITY; 4];
-    for ((out, own), speed) in reach.iter_mut().zip(ratios).zip(GIVEN_SPEEDS_KT) {
-        if wind_kt < speed {
-            break;
-        }
-        let scale = size * reach_nmi(speed, wind_kt, latitude);
-        let mean = own.iter().sum::<f64>() / 4.0;
-        let filled = own.map(|ratio| (ratio + stronger * (mean - ratio).max(0.0)) * scale);
-        // A stronger wind never reaches beyond a weaker one.
-        *out = pairwise(filled, outside, f64::min);
-        outside = *out;
+/// What a forecast says about strength and size at one time.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Expected {
+    /// Greatest wind in kt.
+    pub wind_kt: f64,
+    /// Latitude of the centre in degrees.
+    pub latitude: f64,
+    /// Size.
+    pub ratios: Ratios,
+    /// Natural logarithms of the reach (n mi) of the three given speeds in the mean storm of this strength.
+    log_usual: [f64; 3],
+    follows: f64,
+}
+
+impl Expected {
+    /// A forecast of strength and size. `follows`, 0..1: how far a realisation's radii follow its strength; 1
+    /// is as in the mean vortex.
+    #[must_use]
+    pub fn new(wind_kt: f64, latitude: f64, ratios: Ratios, follows: f64) -> Expected {
+        let log_usual = GIVEN_SPEEDS_KT.map(|speed| log_reach(speed, wind_kt.max(speed), latitude));
+        Expected { wind_kt, latitude, ratios, log_usual, follows }
     }
-    reach
+
+    /// The mean reach of 34 kt as forecast, at least that of a storm just of gale force, n mi.
+    #[must_use]
+    pub fn usual_gale_nmi(&self) -> f64 {
+        libm::exp(self.log_usual[0])
+    }
+
+    /// The reach in n mi of the three given speeds for a realisation of greatest wind `wind_kt` and the size
+    /// error `size` (1 for none).
+    ///
+    /// R = ratio x size x U^(1 - g) x M^g, U the mean vortex's reach for the forecast wind (for one just
+    /// strong enough, if it is below), M the same for the realised wind, g how far radii follow the strength;
+    /// zero if the realised wind is too weak. As the storm grows stronger than forecast, quadrants below the
+    /// storm's mean ratio come up to it.
+    #[must_use]
+    pub fn reach(&self, wind_kt: f64, size: f64) -> [[f64; 4]; 3] {
+        let stronger = ((wind_kt - self.wind_kt) / FILLED_AT_KT).clamp(0.0, 1.0);
+        let mut reach = [[0.0; 4]; 3];
+        let mut outside = [f64::INFINITY; 4];
+        for (i, (out, speed)) in reach.iter_mut().zip(GIVEN_SPEEDS_KT).enumerate() {
+            if wind_kt < speed {
+                break;
+            }
+            let (own, usual) = (self.ratios[i], self.log_usual[i]);
+            let grown = log_reach(speed, wind_kt, self.latitude) - usual;
+            let scale = size * libm::exp(usual + self.follows * grown);
+            let mean = own.iter().sum::<f64>() / 4.0;
+            let filled = own.map(|ratio| (ratio + stronger * (mean - ratio).max(0.0)) * scale);
+            // A stronger wind never reaches beyond a weaker one.
+            *out = pairwise(filled, outside, f64::min);
+            outside = *out;
+        }
+        reach
+    }
 }
 
 #[cfg(test)]
 mod tests {
-    use super::{Structure, realised_reach};
+    use super::{Expected, Structure};
     use approx::assert_abs_diff_eq;
 
     fn structure(known: [Vec<(f64, [f64; 4])>; 3]) -> Structure {
@@ -140,9 +175,10 @@ mod tests {
     #[test]
     fn a_storm_below_gale_force_has_no_gales_and_a_stronger_one_reaches_further() {
         let ratios = [[1.0, 1.0, 0.0, 0.5], [1.0; 4], [1.0; 4]];
-        assert_abs_diff_eq!(realised_reach(&ratios, 45.0, 33.0, 20.0, 1.0)[0][0], 0.0);
-        let as_forecast = realised_reach(&ratios, 45.0, 45.0, 20.0, 1.0)[0];
-        let stronger = realised_reach(&ratios, 45.0, 65.0, 20.0, 1.0)[0];
+        let expected = Expected::new(45.0, 20.0, ratios, 0.5);
+        assert_abs_diff_eq!(expected.reach(33.0, 1.0)[0][0], 0.0);
+        let as_forecast = expected.reach(45.0, 1.0)[0];
+        let stronger = expected.reach(65.0, 1.0)[0];
         assert_abs_diff_eq!(as_forecast[2], 0.0);
         assert!(stronger[0] > as_forecast[0] && stronger[2] > 0.0);
     }
@@ -150,7 +186,7 @@ mod tests {
     #[test]
     fn a_stronger_wind_never_reaches_further_than_a_weaker_one() {
         let ratios = [[0.2; 4], [3.0; 4], [5.0; 4]];
-        let [gale, storm, hurricane] = realised_reach(&ratios, 100.0, 100.0, 20.0, 1.0);
+        let [gale, storm, hurricane] = Expected::new(100.0, 20.0, ratios, 1.0).reach(100.0, 1.0);
         assert!(gale[0] >= storm[0] && storm[0] >= hurricane[0]);
     }
 }

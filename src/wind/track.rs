@@ -1,8 +1,9 @@
 //! The centre line of a storm between the points that an advisory gives.
 //!
-//! Latitude and longitude (unwrapped, so that the date line is no seam) are each a monotone cubic in time: the centre passes
-//! through every given point, its speed is continuous, and it never overshoots a point at which the forecast stalls or turns. This is how
-//! a forecaster's own line between the points is meant to be read; a great circle between points 24 h apart would kink at each.
+//! Latitude and longitude (unwrapped, so that the date line is no seam) are each a monotone cubic in time:
+//! the centre passes through every given point, its speed is continuous, and it never overshoots a point at
+//! which the forecast stalls or turns. This is how a forecaster's own line between the points is meant to be
+//! read; a great circle between points 24 h apart would kink at each.
 
 use crate::geo::position::{Position, wrap_longitude};
 
@@ -17,7 +18,8 @@ pub struct Track {
 }
 
 impl Track {
-    /// The line through `fixes`: hours on any one clock, rising, with the centre then. `None` if there are none or the hours do not rise.
+    /// The line through `fixes`: hours on any one clock, rising, with the centre then. `None` if there are
+    /// none or the hours do not rise.
     #[must_use]
     pub fn through(fixes: &[(f64, Position)]) -> Option<Track> {
         let (_, first) = fixes.first()?;
@@ -58,9 +60,9 @@ impl Track {
 
 /// Slopes of a monotone cubic through (x, y).
 ///
-/// Inside: the weighted harmonic mean of the neighbouring secants d1, d2 over steps h1, h2, zero where they differ in sign:
-/// m = (w1 + w2) / (w1 / d1 + w2 / d2), w1 = 2 h2 + h1, w2 = h2 + 2 h1 (Fritsch & Butland 1984, SIAM J. Sci. Stat. Comput. 5:300-304). At the ends: the
-/// secant itself.
+/// Inside: the weighted harmonic mean of the neighbouring secants d1, d2 over steps h1, h2, zero where they
+/// differ in sign: m = (w1 + w2) / (w1 / d1 + w2 / d2), w1 = 2 h2 + h1, w2 = h2 + 2 h1 (Fritsch & Butland
+/// 1984, SIAM J. Sci. Stat. Comput. 5:300-304). At the ends: the secant itself.
 fn monotone_slopes(x: &[f64], y: &[f64]) -> Vec<f64> {
     let steps: Vec<(f64, f64)> = x
         .windows(2)

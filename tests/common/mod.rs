@@ -34,13 +34,18 @@ pub struct Reading {
 impl Reading {
     /// The TOML files of a folder below the package's root.
     pub fn folder(path: &str) -> Reading {
+        Reading::folder_with(path, &|text| text)
+    }
+
+    /// The same, each file changed as it is read.
+    pub fn folder_with(path: &str, change: &dyn Fn(String) -> String) -> Reading {
         let root = Path::new(env!("CARGO_MANIFEST_DIR")).join(path);
         let mut files = BTreeMap::new();
         for entry in std::fs::read_dir(&root).unwrap() {
             let path = entry.unwrap().path();
             let name = path.file_name().unwrap().to_string_lossy().into_owned();
             if name.ends_with(".toml") {
-                let text = std::fs::read_to_string(&path).unwrap();
+                let text = change(std::fs::read_to_string(&path).unwrap());
                 files.insert(name.clone(), SourceText::new(name, text));
             }
         }

@@ -55,6 +55,7 @@ pub fn empty() -> Plan {
         reliefs: vec![],
         duties: vec![],
         joint: None,
+        if_adopted: Vec::new(),
         overtaken: vec![],
         clashes: vec![],
         breaches: vec![],
@@ -259,6 +260,7 @@ pub fn rich() -> Plan {
             source: "by-law 7, para 5".into(),
         }],
         joint: Some(JointChance { chance: Chance::share(93, 100), tasks: 42, scenarios: 1000 }),
+        if_adopted: Vec::new(),
         overtaken: vec![Overtaken {
             place: "pilot-station".into(),
             adopted: at(18, 22, 0),

@@ -76,7 +76,8 @@ pub fn advisory(points: Vec<ForecastPoint>) -> Advisory {
     }
 }
 
-/// A storm of 60 kt going east along the equator from longitude 0: it is `start_nmi` west of longitude 0 at issue.
+/// A storm of 60 kt going east along the equator from longitude 0: it is `start_nmi` west of longitude 0 at
+/// issue.
 pub fn along_the_equator(speed_kt: f64, gale_nmi: f64, start_nmi: f64, hours: u32) -> Advisory {
     let points = (0..=hours / 12)
         .map(|i| {
@@ -87,8 +88,12 @@ pub fn along_the_equator(speed_kt: f64, gale_nmi: f64, start_nmi: f64, hours: u3
     advisory(points)
 }
 
-pub const SETTINGS: Settings =
-    Settings { intensity_with_size: 0.0, radii_relaxation_h: 36.0, accuracy_divisor: 1.5 };
+pub const SETTINGS: Settings = Settings {
+    intensity_with_size: 0.0,
+    size_follows_intensity: 0.5,
+    radii_relaxation_h: 36.0,
+    accuracy_divisor: 1.5,
+};
 
 /// A table whose errors are constant in time and, with a serial correlation of one, frozen.
 pub fn constant(along: f64, cross: f64) -> ErrorTable {
@@ -106,7 +111,8 @@ pub fn ask_about(key: &str, position: Position, limit_kt: f64) -> Question {
     Question { key: key.to_owned(), position, limit: Knots::new(limit_kt).unwrap() }
 }
 
-/// A hurricane that comes from the east-south-east and passes a coast: made up, in the manner of a full official forecast.
+/// A hurricane that comes from the east-south-east and passes a coast: made up, in the manner of a full
+/// official forecast.
 pub fn full_forecast() -> Advisory {
     // Hour, latitude, longitude, greatest wind, reach of 34, 50 and 64 kt.
     type Row = (f64, f64, f64, f64, [f64; 4], [f64; 4], [f64; 4]);

@@ -8,7 +8,7 @@ use crate::output::wire::task::{TaskOut, task};
 use crate::output::wire::value::{SCHEMA, chance, maybe, time};
 use crate::output::words::{cautions, direction_key, duty_state_key, relief_key, stage_status_key};
 use crate::plan::changes::Changes;
-use crate::plan::sheet::{DutyLine, Overtaken, Plan, Relief, StageLine};
+use crate::plan::sheet::{DutyLine, IfAdopted, Overtaken, Plan, Relief, StageLine};
 use serde::{Deserialize, Serialize};
 use std::collections::BTreeMap;
 
@@ -48,6 +48,8 @@ pub struct PlanOut {
     pub joint: Option<JointOut>,
     /// Adopted arrivals left behind by the computed ones.
     pub overtaken: Vec<OvertakenOut>,
+    /// What an order to adopt the computed arrival would move.
+    pub if_adopted: Vec<IfAdoptedOut>,
     /// Orders that clash.
     pub clashes: Vec<ClashOut>,
     /// What the audit found; empty for a sound plan.
@@ -158,6 +160,36 @@ pub struct OvertakenOut {
     pub endangers: Vec<String>,
 }
 
+/// What an order to adopt the computed arrival would move.
+#[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
+pub struct IfAdoptedOut {
+    /// The place.
+    pub place: String,
+    /// The computed arrival.
+    pub computed: String,
+    /// How many minutes later than the adopted one it is; negative is earlier.
+    pub by_min: i64,
+    /// Stages that would be due at another time.
+    pub stages: Vec<StageShiftOut>,
+    /// How many tasks would start at another time.
+    pub moved: usize,
+    /// Tasks that would no longer fit.
+    pub given_up: Vec<String>,
+    /// Tasks that would fit again.
+    pub relieved: Vec<String>,
+}
+
+/// A stage that would be due at another time.
+#[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
+pub struct StageShiftOut {
+    /// Its id.
+    pub id: String,
+    /// Due now.
+    pub from: Option<String>,
+    /// Due then.
+    pub to: Option<String>,
+}
+
 /// An order that clashes.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
 pub struct ClashOut {
@@ -202,6 +234,7 @@ pub fn plan_out(plan: &Plan, setting: &Setting, since_before: Option<&Changes>) 
             scenarios: joint.scenarios,
         }),
         overtaken: plan.overtaken.iter().map(overtaken).collect(),
+        if_adopted: plan.if_adopted.iter().map(if_adopted).collect(),
         clashes: plan
             .clashes
             .iter()
@@ -266,6 +299,23 @@ pub fn overtaken(overtaken: &Overtaken) -> OvertakenOut {
         adopted: time(overtaken.adopted),
         computed: time(overtaken.computed),
         endangers: overtaken.endangers.clone(),
+    }
+}
+
+fn if_adopted(tried: &IfAdopted) -> IfAdoptedOut {
+    let stages = tried.stages.iter().map(|stage| StageShiftOut {
+        id: stage.id.clone(),
+        from: maybe(stage.from),
+        to: maybe(stage.to),
+    });
+    IfAdoptedOut {
+        place: tried.place.clone(),
+        computed: time(tried.computed),
+        by_min: tried.by.get(),
+        stages: stages.collect(),
+        moved: tried.moved,
+        given_up: tried.given_up.clone(),
+        relieved: tried.relieved.clone(),
     }
 }
 
