@@ -45,6 +45,16 @@ started = { task = "V02/secure", at = "2026-09-17T12:08-03:00" }
 at = "2026-09-17T12:09-03:00"
 by = "Tug office"
 out = { member = "T2", from = "2026-09-18T06:00-03:00" }
+
+[[event]]
+at = "2026-09-17T12:09-03:00"
+by = "Berth foreman"
+not_needed = { task = "Q2/clear" }
+
+[[event]]
+at = "2026-09-17T12:09-03:00"
+by = "Master"
+cannot = { task = "V02/stay" }
 "#;
 
 fn sound() -> &'static (Reading, Plan) {
@@ -139,6 +149,12 @@ names! {
         let start = line(plan, "V01/secure").finish.unwrap() - Minutes::new(1);
         move_to(plan, "V01/sail", start);
     };
+    a_task_planned_after_one_that_is_given_up_is_named: "audit-predecessor-given-up", |plan| {
+        line(plan, "V01/secure").state = TaskState::GivenUp;
+    };
+    a_task_planned_after_one_that_waits_for_a_stage_is_named: "audit-predecessor-waits", |plan| {
+        line(plan, "V01/secure").state = TaskState::Waiting;
+    };
     a_chain_that_does_not_add_up_is_named: "audit-chain", |plan| {
         let line = line(plan, "V01/sail");
         line.chain_from = line.chain_from + Minutes::new(1);
@@ -198,6 +214,12 @@ names! {
         line.start = line.start.map(|start| start + Minutes::new(5));
     };
     an_order_moved_is_named: "audit-order-moved", |plan| move_to(plan, "V02/sail", at("2026-09-17T16:10-03:00"));
+    a_needless_task_planned_all_the_same_is_named: "audit-report-ignored", |plan| {
+        line(plan, "Q2/clear").state = TaskState::Planned;
+    };
+    an_impossible_task_planned_all_the_same_is_named: "audit-report-ignored", |plan| {
+        line(plan, "V02/stay").state = TaskState::Planned;
+    };
     doneness_that_nobody_reported_is_named: "audit-not-reported", |plan| line(plan, "Q1/clear").state = TaskState::Done;
     an_adopted_arrival_changed_is_named: "audit-adopted-changed", |plan| {
         plan.arrivals[0].adopted = plan.arrivals[0].adopted.map(|at| at + Minutes::new(30));

@@ -49,6 +49,20 @@ impl Reading {
                 files.insert(name.clone(), SourceText::new(name, text));
             }
         }
+        let mut reading = Reading::files(files);
+        let advisories = root.join("advisories");
+        if advisories.is_dir() {
+            for entry in std::fs::read_dir(advisories).unwrap() {
+                let path = entry.unwrap().path();
+                let name = format!("advisories/{}", path.file_name().unwrap().to_string_lossy());
+                reading.add_forecast(&name, &std::fs::read_to_string(&path).unwrap());
+            }
+        }
+        reading
+    }
+
+    /// The files of a folder, without its advisories.
+    pub fn files(mut files: BTreeMap<String, SourceText>) -> Reading {
         let events_source = files.remove("events.toml");
         let errors_source = files.remove("forecast-errors.toml");
         let (read, findings) = read_folder(&files);
@@ -59,16 +73,7 @@ impl Reading {
         let shipped =
             || SourceText::new("forecast-errors.toml", include_str!("../../rules/forecast-errors.toml"));
         let tables = read_error_tables(&errors_source.unwrap_or_else(shipped)).unwrap();
-        let mut reading = Reading { port, rules, work, events, forecasts: BTreeMap::new(), tables };
-        let advisories = root.join("advisories");
-        if advisories.is_dir() {
-            for entry in std::fs::read_dir(advisories).unwrap() {
-                let path = entry.unwrap().path();
-                let name = format!("advisories/{}", path.file_name().unwrap().to_string_lossy());
-                reading.add_forecast(&name, &std::fs::read_to_string(&path).unwrap());
-            }
-        }
-        reading
+        Reading { port, rules, work, events, forecasts: BTreeMap::new(), tables }
     }
 
     /// Adds a forecast under a file name.
