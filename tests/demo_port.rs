@@ -1,6 +1,5 @@
 //! The invented port of the demonstration: its files, its storms, and what its plans promise on screen.
 #![allow(clippy::unwrap_used, reason = "a test that cannot read the demo must fail")]
-
 #![expect(clippy::unwrap_used, reason = "helpers of a test file")]
 
 mod common;
