@@ -36,6 +36,6 @@ fn templates_for_different_ships_may_share_an_id() {
 #[test]
 fn two_templates_of_one_id_for_the_same_ship_are_found() {
     let found = findings("{ ships = { ids = [\"V01\"] } }", "{ ships = {} }");
-    let codes: Vec<&str> = found.iter().map(|finding| finding.code.as_ref()).collect();
+    let codes: Vec<&str> = found.iter().map(|finding| finding.code).collect();
     assert_eq!(codes, ["work-double-task"]);
 }
