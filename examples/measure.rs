@@ -17,6 +17,7 @@ use large_port::{EARLY, LATE, large_port};
 use snugdown::arrival::odds::{Draw, ask};
 use snugdown::cli::load::load;
 use snugdown::cli::planning::plans_until;
+use snugdown::cli::port_args::PortArgs;
 use snugdown::plan::fold::{Inputs, plan_at};
 use snugdown::plan::sheet::{Plan, TaskState};
 use snugdown::time::moment::Moment;
@@ -91,7 +92,7 @@ fn told(plan: &Plan) -> String {
 /// Reading a folder and making all plans of its record, up to its exercise clock.
 fn whole_folder(folder: &Path) {
     let (ms, history) = timed(|| {
-        let loaded = load(folder).unwrap_or_else(|failure| panic!("{failure}"));
+        let loaded = load(&PortArgs::of(folder.to_path_buf())).unwrap_or_else(|failure| panic!("{failure}"));
         let now = Moment::at_or_after(loaded.port.exercise.unwrap());
         plans_until(&loaded, now)
     });
