@@ -257,14 +257,18 @@ fn pilots_at_work(plan: &Plan) -> BTreeMap<String, Vec<(Moment, Moment)>> {
 fn every_plan_of_the_exercise_passes_the_audit_and_keeps_pilots_rested() {
     let reading = Reading::folder("demo-port");
     let history = reading.plans("2026-09-18 16:30");
+    let clock = Moment::at_or_after(reading.port.exercise.unwrap());
     let advisories: BTreeSet<_> =
         history.plans.iter().filter_map(|plan| plan.advisory.as_ref()?.number).collect();
     assert_eq!(advisories, (1..=16).collect());
     for plan in &history.plans {
         assert_eq!(plan.breaches, [], "{}", plan.now);
         assert_eq!(plan.clashes, [], "{}", plan.now);
-        let unreported = plan.tasks.iter().filter(|task| task.is_unreported).map(|task| task.id.clone());
-        assert_eq!(ids(unreported), BTreeSet::new(), "{}", plan.now);
+        // Later reports follow the plans of their time; another planner may have planned otherwise.
+        if plan.now <= clock {
+            let unreported = plan.tasks.iter().filter(|task| task.is_unreported);
+            assert_eq!(ids(unreported.map(|task| task.id.clone())), BTreeSet::new(), "{}", plan.now);
+        }
         for (pilot, held) in pilots_at_work(plan) {
             let mut began = held[0].0;
             for pair in held.windows(2) {

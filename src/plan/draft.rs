@@ -104,8 +104,8 @@ pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
 /// Our choice: in a gale's last hours nothing should hang on a single hour.
 pub const LEAST_SPARE: Minutes = Minutes::hours(1);
 
-/// Lets issued tasks that have hardly any spare left, and could go earlier, go earlier; nothing may be given up or late
-/// for it.
+/// Lets issued tasks that have hardly any spare left, and could go earlier, go earlier; nothing else may move, be given
+/// up or be late for it.
 fn with_spare(problem: &mut Problem, schedule: Schedule, effort: Effort) -> Schedule {
     let latest = latest(problem, Limits::Deadlines, &[]).unwrap_or_default();
     let is_tight = |position: usize, placement: &Placement| {
@@ -121,13 +121,19 @@ fn with_spare(problem: &mut Problem, schedule: Schedule, effort: Effort) -> Sche
         return schedule;
     }
     let mut freed = problem.clone();
-    for position in tight {
-        if let Some(task) = freed.tasks.get_mut(position) {
+    for position in &tight {
+        if let Some(task) = freed.tasks.get_mut(*position) {
             task.issued = None;
         }
     }
+    let start = |schedule: &Schedule, position| schedule.placement(position).map(|placed| placed.start);
+    let keeps_the_rest = |earlier: &Schedule| {
+        (0..freed.tasks.len())
+            .filter(|position| !tight.contains(position))
+            .all(|position| start(earlier, position) == start(&schedule, position))
+    };
     match solve(&freed, effort) {
-        Ok(earlier) if earlier.score.classes <= schedule.score.classes => {
+        Ok(earlier) if earlier.score.classes <= schedule.score.classes && keeps_the_rest(&earlier) => {
             *problem = freed;
             earlier
         }
