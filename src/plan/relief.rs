@@ -2,13 +2,16 @@
 
 use crate::plan::adjust::Adjustments;
 use crate::plan::draft::{Draft, DraftInputs, draft};
+use crate::plan::problem::class;
 use crate::plan::sheet::{Plan, Relief, ReliefKind, ReliefStep};
 use crate::rules::task::Leave;
+use crate::schedule::search::Effort;
 use crate::time::moment::{Minutes, Moment};
 use crate::work::graph::{Edge, Task, WorkGraph};
 use petgraph::Direction;
 use petgraph::graph::NodeIndex;
 use petgraph::visit::EdgeRef;
+use std::cmp::Reverse;
 use std::collections::BTreeSet;
 
 /// The choices that the files permit and that make something fit which otherwise does not; none if nothing is missed.
@@ -34,23 +37,46 @@ pub fn permitted(inputs: DraftInputs<'_>, plain: &Draft) -> Adjustments {
     chosen
 }
 
-/// Every relief that was found for the tasks that `plan` gives up, the one to be decided first before the others.
+/// At most so many reliefs are told, those that help most. Our choice: nobody weighs more of them in a night, and for each
+/// its last minute has to be found.
+const MOST_TOLD: usize = 8;
+
+/// Of at most so many tasks the stand-ins are tried, missed ones and weighty ones first. Our choice: where more is missed,
+/// single stand-ins no longer save the plan.
+const MOST_STAND_INS: usize = 24;
+
+/// At most so many tries are made to do with fewer cuts. Our choice: enough to find the few that matter among hundreds;
+/// where dozens matter, some that do not may stay among them.
+const MOST_FEWER: usize = 60;
+
+/// Schedules for each try, times tasks. Our choice: up to 100 tasks a try is searched as long as the plan itself, in a
+/// large port shorter, so that hundreds of tries take seconds. A relief may be missed by it, never invented.
+const TRY_DECODES: u64 = 20_000;
+
+/// The reliefs that were found for the tasks that `plan` gives up, the one to be decided first before the others.
 #[must_use]
 pub fn reliefs(inputs: DraftInputs<'_>, base: &Draft, plan: &Plan) -> Vec<Relief> {
     let missed = base.misses(inputs.work);
     if missed.is_empty() {
         return Vec::new();
     }
+    let tasks = u64::try_from(base.stated.nodes.len()).unwrap_or(u64::MAX);
+    let decodes = inputs.effort.decodes.min((TRY_DECODES / tasks.max(1)).max(1));
+    let inputs = DraftInputs { effort: Effort { decodes, ..inputs.effort }, ..inputs };
     let finder = Finder { inputs, base, plan, missed: &missed };
-    let mut found = Vec::new();
     let cuts = cuttable(inputs, base, &missed, Leave::ByOrder);
     let with_cuts = fewest(inputs, base, cuts);
-    if with_cuts.adjustments != base.adjustments {
-        found.extend(finder.relief(&with_cuts.adjustments));
-    }
-    for choice in finder.single_choices() {
-        found.extend(finder.relief(&choice));
-    }
+    let choices = (with_cuts.adjustments != base.adjustments).then_some(with_cuts.adjustments);
+    let mut helpful: Vec<Draft> = choices
+        .into_iter()
+        .chain(finder.single_choices())
+        .filter_map(|choice| finder.helpful(&choice))
+        .collect();
+    helpful.sort_by(|a, b| {
+        (&a.schedule.score.classes, &a.adjustments).cmp(&(&b.schedule.score.classes, &b.adjustments))
+    });
+    helpful.truncate(MOST_TOLD);
+    let mut found: Vec<Relief> = helpful.iter().map(|tried| finder.relief(tried)).collect();
     found.sort_by(|a, b| (a.decide_by, &a.relieves, &a.steps).cmp(&(b.decide_by, &b.relieves, &b.steps)));
     found.dedup();
     found
@@ -73,8 +99,8 @@ fn cuttable(inputs: DraftInputs<'_>, base: &Draft, missed: &BTreeSet<String>, le
     cuts.into_iter().map(|(_, id)| id).collect()
 }
 
-/// The plan with all of `cuts`, and then with as few of them as give up and delay no more than all do; the plan in hand
-/// if they do not help.
+/// The plan with all of `cuts`, and then with fewer that give up and delay no more than all do; the plan in hand if they
+/// do not help.
 fn fewest(inputs: DraftInputs<'_>, base: &Draft, cuts: Vec<String>) -> Draft {
     let mut adjustments = base.adjustments.clone();
     adjustments.cut.extend(cuts.iter().cloned());
@@ -85,15 +111,26 @@ fn fewest(inputs: DraftInputs<'_>, base: &Draft, cuts: Vec<String>) -> Draft {
     if best.schedule.score.classes >= base.schedule.score.classes {
         return base.clone();
     }
-    for cut in &cuts {
+    // Halves, their halves and so on: where few cuts matter, few tries find them among many.
+    let mut groups = halves(&cuts);
+    for _ in 0..MOST_FEWER {
+        let Some(group) = groups.pop() else { break };
         let mut fewer = best.adjustments.clone();
-        fewer.cut.remove(cut);
+        fewer.cut.retain(|cut| !group.contains(cut));
         let tried = draft(inputs, &fewer);
         if tried.schedule.score.classes <= best.schedule.score.classes {
             best = tried;
+        } else if group.len() > 1 {
+            groups.extend(halves(group));
         }
     }
     best
+}
+
+/// The two halves of a list, the first one last: it is taken first.
+fn halves(cuts: &[String]) -> Vec<&[String]> {
+    let (first, second) = cuts.split_at(cuts.len().div_ceil(2));
+    [second, first].into_iter().filter(|half| !half.is_empty()).collect()
 }
 
 /// The missed tasks and everything they wait for.
@@ -133,12 +170,17 @@ impl Finder<'_> {
             *choice.more.entry(pool).or_insert(0) += 1;
             choices.push(choice);
         }
-        for task in nodes.iter().filter_map(|node| self.inputs.work.task_at(*node)) {
-            if task.or_else.is_some() && !self.base.adjustments.substituted.contains(&task.id) {
-                let mut choice = self.base.adjustments.clone();
-                choice.substituted.insert(task.id.clone());
-                choices.push(choice);
-            }
+        let mut replaceable: Vec<&Task> = nodes
+            .iter()
+            .filter_map(|node| self.inputs.work.task_at(*node))
+            .filter(|task| task.or_else.is_some() && !self.base.adjustments.substituted.contains(&task.id))
+            .collect();
+        replaceable
+            .sort_by_key(|task| (!self.missed.contains(&task.id), class(task.stake), Reverse(task.weight)));
+        for task in replaceable.into_iter().take(MOST_STAND_INS) {
+            let mut choice = self.base.adjustments.clone();
+            choice.substituted.insert(task.id.clone());
+            choices.push(choice);
         }
         for (task, state) in &self.inputs.situation.tasks {
             if state.fixed.is_some() {
@@ -150,26 +192,30 @@ impl Finder<'_> {
         choices
     }
 
-    /// The relief that a choice is, if with it less is given up or late, by weight, than without.
-    fn relief(&self, choice: &Adjustments) -> Option<Relief> {
+    /// The try with a choice, if with it less is given up or late, by weight, than without.
+    fn helpful(&self, choice: &Adjustments) -> Option<Draft> {
         let tried = draft(self.inputs, choice);
         let is_order_lost = tried.clashes.len() > self.base.clashes.len();
         if is_order_lost || tried.schedule.score.classes >= self.base.schedule.score.classes {
             return None;
         }
         let missed = tried.misses(self.inputs.work);
+        let leans_on_missed = self.stand_ins(choice).iter().any(|id| missed.contains(id));
+        (!self.missed.is_subset(&missed) && !leans_on_missed).then_some(tried)
+    }
+
+    /// The relief that a helpful try is, with its last minute.
+    fn relief(&self, tried: &Draft) -> Relief {
+        let missed = tried.misses(self.inputs.work);
         let relieves: BTreeSet<String> = self.missed.difference(&missed).cloned().collect();
-        if relieves.is_empty() || self.stand_ins(choice).iter().any(|id| missed.contains(id)) {
-            return None;
-        }
-        let decide_by = self.decide_by(&tried, &relieves, &missed);
-        Some(Relief {
-            steps: self.steps(choice),
+        let decide_by = self.decide_by(tried, &relieves, &missed);
+        Relief {
+            steps: self.steps(&tried.adjustments),
             relieves: relieves.into_iter().collect(),
             leaves: missed.intersection(self.missed).cloned().collect(),
             gives_up: missed.difference(self.missed).cloned().collect(),
             decide_by,
-        })
+        }
     }
 
     /// The stand-ins of the tasks that a choice substitutes: a relief must not lean on one that does not fit itself.
