@@ -1,5 +1,6 @@
 #!/usr/bin/env bash
-# Makes the stored reference values again with the libraries that they came from, and compares. Needs Python 3 with pip.
+# Makes the stored reference values again with the libraries that they came from, and compares. Needs Python 3.11 or newer
+# with pip and venv, and a package index for pip. Ends with 1 if anything differs, and with an error if anything is missing.
 #
 # The values must come out as they are stored: the versions are pinned, and what a script writes is rounded more coarsely
 # than machines differ. Two exceptions, each below what the tests could notice: a second in the times of the sun, and

@@ -1,11 +1,12 @@
 """Compares the compiled-in time-zone data with a newer IANA release, for 2026 to 2028.
 
-Writes rules/zone-corrections.toml (where the two differ) and tests/data/tzdata/transitions-2026-2028.txt (what the
-newer release says for every zone; the tests compare the corrected clock with it).
+Writes into a folder zone-corrections.toml (where the two differ; the program reads it from rules/) and
+transitions-2026-2028.txt (what the newer release says for every zone; tests/port_clock.rs compares the corrected clock
+with it, from tests/data/tzdata/).
 
     pip install tzdata
     cargo run --example zone_transitions > target/compiled-in.txt
-    python3 tests/outside/zone_corrections.py target/compiled-in.txt
+    python3 tests/outside/zone_corrections.py target/compiled-in.txt target
 """
 
 import os
@@ -98,8 +99,7 @@ checked_until = "{last}"
 
 
 def main():
-    root = os.path.join(os.path.dirname(os.path.abspath(__file__)), "..", "..")
-    old = compiled_in(sys.argv[1])
+    old, folder = compiled_in(sys.argv[1]), sys.argv[2]
     new = {name: stretches_of(name) for name in sorted(zoneinfo.available_timezones())}
     print("only in the newer release:", sorted(set(new) - set(old)))
     print("only compiled in:", sorted(set(old) - set(new)))
@@ -107,7 +107,7 @@ def main():
     same = defaultdict(list)
     for name, stretches in new.items():
         same[tuple(stretches)].append(name)
-    with open(os.path.join(root, "tests/data/tzdata/transitions-2026-2028.txt"), "w", encoding="utf-8") as out:
+    with open(os.path.join(folder, "transitions-2026-2028.txt"), "w", encoding="utf-8") as out:
         for stretches, names in sorted(same.items(), key=lambda item: item[1]):
             out.write(",".join(names) + " " + " ".join(f"{text(s)}={w}" for s, w in stretches) + "\n")
 
@@ -116,7 +116,7 @@ def main():
         found = differences(old[name], new[name])
         if found:
             wrong[tuple(found)].append(name)
-    with open(os.path.join(root, "rules/zone-corrections.toml"), "w", encoding="utf-8") as out:
+    with open(os.path.join(folder, "zone-corrections.toml"), "w", encoding="utf-8") as out:
         out.write(HEAD.format(release=RELEASE, first=text(FIRST), last=text(LAST)))
         for stretches, names in sorted(wrong.items(), key=lambda item: item[1]):
             listed = ", ".join(f'"{name}"' for name in names)
