@@ -12,6 +12,7 @@ use crate::time::moment::Moment;
 use crate::units::speed::Knots;
 use crate::wind::climatology::{radius_of_greatest_wind_nmi, reach_nmi};
 use crate::wind::field::Hemisphere;
+use crate::wind::reach_table::ReachTable;
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, dot, east_and_north, normalised, plus, vector_of};
 use crate::wind::structure::{Expected, Structure};
 use crate::wind::track::Track;
@@ -30,7 +31,7 @@ const DISSIPATED_KT: f64 = 20.0;
 /// Least movement of the centre in 12 h (n mi) that gives a heading; below it the last heading stands.
 const LEAST_MOVEMENT_NMI: f64 = 6.0;
 
-/// The forecast and its errors at one time.
+/// The forecast centre at one time, and how the errors of a scenario add up there.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Step {
     /// Minutes after issue.
@@ -41,27 +42,34 @@ pub struct Step {
     pub along: Vector,
     /// Unit tangent to the right of the motion.
     pub cross: Vector,
-    /// Forecast strength and size.
-    pub expected: Expected,
-    /// Standard deviations of the errors, widened by what was assumed.
-    pub deviation: [f64; 4],
-    /// Their means.
+    /// What the standard errors at the node at or before are multiplied with: deviation, widened by what was
+    /// assumed, times the node's weight; the weights keep a variance of one.
+    pub from_node: [f64; 4],
+    /// The same for the node after.
+    pub from_next: [f64; 4],
+    /// Means of the errors.
     pub bias: [f64; 4],
+}
+
+/// The steps that share their error nodes.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Stretch {
     /// The error node at or before.
     pub node: usize,
-    /// Weights of that node's standard error and the next one's, for each component; their mix keeps a
-    /// variance of one.
-    pub weights: [(f64, f64); 4],
-    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error) for storms of up to 35,
-    /// 40, ... 90 kt.
+    /// Index of the first step.
+    pub first: usize,
+    /// Index after the last one.
+    pub end: usize,
+    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error), up to the first step of the
+    /// next stretch, for storms of up to 35, 40, ... 90 kt.
     bounds: [f64; BOUNDS],
 }
 
 const BOUNDS: usize = 12;
 
-impl Step {
-    /// A bound of the reach of 34 kt, or of the core if that is wider, for a storm of `wind_kt` before its
-    /// size error. A few times cheaper than the reach itself, it keeps far places out of the inner loop.
+impl Stretch {
+    /// A bound of the reach of 34 kt, or of the core if that is wider, for a storm of up to `wind_kt` before its
+    /// size error. Much cheaper than the reach itself, it keeps far places out of the inner loop.
     #[must_use]
     pub fn bound_nmi(&self, wind_kt: f64) -> f64 {
         let class = ((wind_kt - 30.0).max(0.0) / 5.0) as usize;
@@ -75,6 +83,10 @@ pub struct Course {
     /// States at issue, each whole hour after it, at the end of the forecast, and hourly beyond (look-ahead
     /// only).
     pub steps: Vec<Step>,
+    /// Forecast strength and size at each step.
+    pub storms: Vec<ReachTable>,
+    /// The steps by their error nodes, in order.
+    pub stretches: Vec<Stretch>,
     /// Index of the step at the end of the forecast.
     pub end: usize,
     /// Correlation of each component's error at a node with that at the node before; the first is unused.
@@ -123,9 +135,16 @@ impl Course {
         }
         let notes = notes(&forecast.structure, issued, forecast_end);
         let serial = forecast.errors.serial(end_minute as f64 / 60.0);
-        let steps = forecast.steps(&minutes, end_minute as f64, &serial);
+        let (steps, storms) = forecast.steps(&minutes, end_minute as f64, &serial);
+        let nodes: Vec<usize> = minutes
+            .iter()
+            .map(|minute| forecast.errors.node((*minute).min(end_minute) as f64 / 60.0).0)
+            .collect();
+        let stretches = stretches(&nodes, &storms);
         Some(Course {
             steps,
+            storms,
+            stretches,
             end,
             serial,
             intensity_with_size: table.settings().intensity_with_size,
@@ -269,21 +288,22 @@ impl<'a> Errors<'a> {
         (0..=last + 1).map(|node| self.table.at(node as f64 * NODE_H).serial).collect()
     }
 
-    /// The node before an hour and the weights of the two nodes around it.
+    /// The node at or before an hour, and how far the hour lies on the way to the next node, 0..1.
+    fn node(&self, hour: f64) -> (usize, f64) {
+        let position = (hour + self.lead_at_issue_h) / NODE_H;
+        let node = f64::floor(position).max(0.0);
+        (node as usize, position - node)
+    }
+
+    /// The weights of the nodes before and after an hour.
     ///
     /// z = ((1 - s) z0 + s z1) / sqrt((1 - s)^2 + s^2 + 2 s (1 - s) phi): without the root the variance would
     /// dip between nodes.
-    fn weights(&self, hour: f64, serial: &[[f64; 4]]) -> (usize, [(f64, f64); 4]) {
-        let position = (hour + self.lead_at_issue_h) / NODE_H;
-        let node = f64::floor(position).max(0.0);
-        let s = position - node;
-        let node = node as usize;
+    fn weights(&self, hour: f64, serial: &[[f64; 4]]) -> [[f64; 4]; 2] {
+        let (node, s) = self.node(hour);
         let phi = serial.get(node + 1).copied().unwrap_or([1.0; 4]);
-        let weights = phi.map(|phi| {
-            let norm = f64::sqrt((1.0 - s) * (1.0 - s) + s * s + 2.0 * s * (1.0 - s) * phi);
-            ((1.0 - s) / norm, s / norm)
-        });
-        (node, weights)
+        let norm = phi.map(|phi| f64::sqrt((1.0 - s) * (1.0 - s) + s * s + 2.0 * s * (1.0 - s) * phi));
+        [norm.map(|norm| (1.0 - s) / norm), norm.map(|norm| s / norm)]
     }
 }
 
@@ -296,9 +316,10 @@ struct Forecast<'a> {
 }
 
 impl Forecast<'_> {
-    fn steps(&self, minutes: &[i64], end_minute: f64, serial: &[[f64; 4]]) -> Vec<Step> {
+    fn steps(&self, minutes: &[i64], end_minute: f64, serial: &[[f64; 4]]) -> (Vec<Step>, Vec<ReachTable>) {
         let mut heading: Option<Vector> = None;
         let mut steps = Vec::with_capacity(minutes.len());
+        let mut storms = Vec::with_capacity(minutes.len());
         for minute in minutes {
             let minute = *minute as f64;
             // Beyond the end only the centre moves on; everything else stays as it was then.
@@ -316,22 +337,13 @@ impl Forecast<'_> {
             let ratios = self.structure.ratios_at(held);
             let follows = self.errors.table.settings().size_follows_intensity;
             let expected = Expected::new(linear_at(&self.winds, held), latitude, ratios, follows);
+            storms.push(ReachTable::of(expected));
             let (deviation, bias) = self.errors.at(held);
-            let (node, weights) = self.errors.weights(held, serial);
-            steps.push(Step {
-                minute,
-                centre,
-                along,
-                cross,
-                expected,
-                deviation,
-                bias,
-                node,
-                weights,
-                bounds: bounds(&expected),
-            });
+            let [from_node, from_next] =
+                self.errors.weights(held, serial).map(|weights| times(weights, deviation));
+            steps.push(Step { minute, centre, along, cross, from_node, from_next, bias });
         }
-        steps
+        (steps, storms)
     }
 
     /// The direction of motion over the 12 h around an hour; a centre that hardly moves keeps its last heading.
@@ -354,6 +366,28 @@ impl Forecast<'_> {
         };
         normalised(plus(heading, -dot(heading, centre), centre))
     }
+}
+
+fn times(a: [f64; 4], b: [f64; 4]) -> [f64; 4] {
+    [a[0] * b[0], a[1] * b[1], a[2] * b[2], a[3] * b[3]]
+}
+
+/// The steps, given the node of each, by their nodes.
+fn stretches(nodes: &[usize], storms: &[ReachTable]) -> Vec<Stretch> {
+    let mut stretches = Vec::new();
+    let mut first = 0;
+    for same in nodes.chunk_by(|a, b| a == b) {
+        let end = first + same.len();
+        let mut most = [0.0; BOUNDS];
+        for storm in storms.iter().take(end + 1).skip(first) {
+            for (most, bound) in most.iter_mut().zip(bounds(&storm.expected)) {
+                *most = f64::max(*most, bound);
+            }
+        }
+        stretches.extend(same.first().map(|node| Stretch { node: *node, first, end, bounds: most }));
+        first = end;
+    }
+    stretches
 }
 
 fn bounds(expected: &Expected) -> [f64; BOUNDS] {

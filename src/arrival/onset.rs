@@ -11,7 +11,7 @@ use crate::time::moment::{Minutes, Moment};
 use crate::units::bearing::Bearing;
 use crate::units::speed::Knots;
 use crate::wind::field::{Hemisphere, INFLOW_DEGREES, Vortex, wind_from};
-use crate::wind::profile::Profile;
+use crate::wind::profile::{Limit, Profile};
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, bearing_degrees, distance_nmi, dot, plus};
 
 /// When the wind comes.
@@ -61,7 +61,7 @@ impl ScenarioOnset {
 #[derive(Clone, Debug, PartialEq)]
 pub struct Watch {
     place: Vector,
-    limits_kt: Vec<f64>,
+    limits: Vec<Limit>,
     widening: f64,
 }
 
@@ -72,13 +72,14 @@ impl Watch {
         // Winds below 34 kt reach at most (34 / limit)^(1 / 0.4) times as far: 0.4 is the least outer exponent.
         let least = limits_kt.first().copied().unwrap_or(34.0).max(1.0);
         let widening = if least < 34.0 { libm::pow(34.0 / least, 2.5) } else { 1.0 };
-        Watch { place, limits_kt, widening }
+        let limits = limits_kt.into_iter().map(Limit::new).collect();
+        Watch { place, limits, widening }
     }
 
     /// One answer for each limit, in their order.
     #[must_use]
     pub fn follow(&self, course: &Course, scenario: &mut Scenario) -> Vec<ScenarioOnset> {
-        let mut states = vec![State::default(); self.limits_kt.len()];
+        let mut states = vec![State::default(); self.limits.len()];
         let mut deepest = Deepest::default();
         let mut before: Option<Sight> = None;
         let mut next = 0;
@@ -124,7 +125,7 @@ impl Watch {
     }
 
     fn seen(&self, mut sight: Sight) -> Sight {
-        sight.met = sight.count_met(&self.limits_kt);
+        sight.met = sight.count_met(&self.limits);
         sight
     }
 
@@ -147,7 +148,7 @@ impl Watch {
         for sight in [Some(start), Some(end), middle].into_iter().flatten() {
             deepest.note(sight);
         }
-        for (i, (limit, state)) in self.limits_kt.iter().zip(states.iter_mut()).take(most).enumerate() {
+        for (i, (limit, state)) in self.limits.iter().zip(states.iter_mut()).take(most).enumerate() {
             let (starts_in, ends_in) = (i < start.met, i < end.met);
             if starts_in && hour.k == 0 {
                 state.onset = Some(Found { minute: None, bearing: start.bearing });
@@ -162,13 +163,13 @@ impl Watch {
                 (false, false) => (touch.map(|t| [edges[0], t]), touch.map(|t| [t, edges[1]])),
             };
             if let Some(stretch) = comes.filter(|_| !state.is_reached()) {
-                let s = hour.crossing(*limit, stretch);
+                let s = hour.crossing(limit.kt, stretch);
                 state.onset = Some(Found { minute: Some(hour.minute(s)), bearing: hour.look(s).bearing });
             }
             if ends_in {
                 state.until = None;
             } else if let Some(stretch) = goes {
-                state.until = Some(hour.minute(hour.crossing(*limit, stretch)));
+                state.until = Some(hour.minute(hour.crossing(limit.kt, stretch)));
             }
         }
     }
@@ -182,7 +183,7 @@ impl Watch {
             for s in [Some(1.0), hour.closest()].into_iter().flatten() {
                 most = most.max(self.seen(hour.look(s)).met);
             }
-            if most == self.limits_kt.len() {
+            if most == self.limits.len() {
                 break;
             }
         }
@@ -202,32 +203,8 @@ struct Sight {
 
 impl Sight {
     /// How many of the limits, which rise, are met here.
-    fn count_met(&self, limits_kt: &[f64]) -> usize {
-        let [gale, storm, hurricane] = self.profile.reach_nmi;
-        // The given radii decide most cases without the profile's logarithms: below `sure` the limit is met,
-        // above `at_most` it is not.
-        let is_within = |reach: f64| reach > 0.0 && self.distance <= reach;
-        let (sure, at_most) = if is_within(hurricane) {
-            (64.0, f64::INFINITY)
-        } else if is_within(storm) {
-            (50.0, 64.0)
-        } else if is_within(gale) {
-            (34.0, 50.0)
-        } else {
-            (0.0, 34.0)
-        };
-        let mut speed = None;
-        limits_kt
-            .iter()
-            .take_while(|limit| {
-                let limit = **limit;
-                let strong_enough = self.profile.max_wind_kt >= limit;
-                strong_enough
-                    && (limit <= sure
-                        || (limit < at_most
-                            && *speed.get_or_insert_with(|| self.profile.speed_kt(self.distance)) >= limit))
-            })
-            .count()
+    fn count_met(&self, limits: &[Limit]) -> usize {
+        limits.iter().take_while(|limit| self.profile.blows(limit, self.distance)).count()
     }
 
     /// Distance less reach in n mi: negative while the wind is there.
@@ -244,6 +221,8 @@ struct Hour<'a> {
     place: Vector,
     vortices: [&'a Vortex; 2],
     minutes: [f64; 2],
+    /// Where on the way between the ends, drawn on beyond both, the centre is nearest; 0 if it stands still.
+    nearest: f64,
 }
 
 impl<'a> Hour<'a> {
@@ -252,19 +231,24 @@ impl<'a> Hour<'a> {
         let to = scenario.vortex(k + 1).unwrap_or(from);
         let minute = |i: usize| course.steps.get(i).map(|step| step.minute);
         let start = minute(k)?;
-        Some(Hour { k, place, vortices: [from, to], minutes: [start, minute(k + 1).unwrap_or(start)] })
+        let moved = plus(to.centre, -1.0, from.centre);
+        let length2 = dot(moved, moved);
+        let nearest = if length2 > 0.0 { dot(plus(place, -1.0, from.centre), moved) / length2 } else { 0.0 };
+        let minutes = [start, minute(k + 1).unwrap_or(start)];
+        Some(Hour { k, place, vortices: [from, to], minutes, nearest })
     }
 
     fn stand_still(&mut self) {
         self.vortices[1] = self.vortices[0];
         self.minutes[1] = self.minutes[0];
+        self.nearest = 0.0;
     }
 
     /// Whether the centre comes as near as the furthest reach of its gales (times `widening`; at least that
     /// of its core) at either end.
     fn may_reach(&self, widening: f64) -> bool {
         let [from, to] = self.vortices;
-        let s = self.closest_share().clamp(0.0, 1.0);
+        let s = self.nearest.clamp(0.0, 1.0);
         let nearest = plus(from.centre, s, plus(to.centre, -1.0, from.centre));
         let core = if widening > 1.0 { from.core_nmi.max(to.core_nmi) } else { 0.0 };
         let [a, b] = [from, to].map(|vortex| vortex.widest_nmi.max(core));
@@ -274,33 +258,24 @@ impl<'a> Hour<'a> {
         dot(between, between) <= reach * reach
     }
 
+    /// What is seen a share `s` of the way from one end to the other; the centre goes along the chord.
     fn look(&self, s: f64) -> Sight {
         let [from, to] = self.vortices;
-        let between;
-        let vortex = if s <= 0.0 {
-            from
-        } else if s >= 1.0 {
-            to
-        } else {
-            between = from.towards(to, s);
-            &between
-        };
-        let bearing = bearing_degrees(vortex.centre, self.place);
-        let distance = distance_nmi(vortex.centre, self.place);
-        Sight { distance, bearing, profile: vortex.profile(bearing), met: 0 }
+        if s <= 0.0 || s >= 1.0 {
+            let vortex = if s <= 0.0 { from } else { to };
+            let bearing = bearing_degrees(vortex.centre, self.place);
+            let distance = distance_nmi(vortex.centre, self.place);
+            return Sight { distance, bearing, profile: vortex.profile(bearing), met: 0 };
+        }
+        let centre = plus(from.centre, s, plus(to.centre, -1.0, from.centre));
+        let bearing = bearing_degrees(centre, self.place);
+        let profile = from.profile(bearing).towards(&to.profile(bearing), s);
+        Sight { distance: distance_nmi(centre, self.place), bearing, profile, met: 0 }
     }
 
     /// Where between the ends the centre is nearest to the place, if between them.
     fn closest(&self) -> Option<f64> {
-        Some(self.closest_share()).filter(|s| *s > 0.0 && *s < 1.0)
-    }
-
-    /// The same on the line drawn on beyond both ends; 0 if the centre stands still.
-    fn closest_share(&self) -> f64 {
-        let [from, to] = self.vortices;
-        let moved = plus(to.centre, -1.0, from.centre);
-        let length2 = dot(moved, moved);
-        if length2 > 0.0 { dot(plus(self.place, -1.0, from.centre), moved) / length2 } else { 0.0 }
+        Some(self.nearest).filter(|s| *s > 0.0 && *s < 1.0)
     }
 
     fn minute(&self, s: f64) -> f64 {

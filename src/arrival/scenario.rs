@@ -45,15 +45,24 @@ impl Draws {
     }
 }
 
+/// One step of a scenario: how the storm is to be there.
+#[derive(Clone, Copy, Debug)]
+struct State {
+    centre: Vector,
+    wind_kt: f64,
+    /// Natural logarithm of the size error.
+    log_size: f64,
+    /// Square of the way to the next centre, in radians.
+    way2: f64,
+    /// Square of the chord beyond which a place cannot meet 34 kt within the hour that follows.
+    far2: f64,
+}
+
 /// A realised storm at each step of a course. One value is refilled for every scenario.
 #[derive(Clone, Debug, Default)]
 pub struct Scenario {
     errors: Vec<[f64; 4]>,
-    centres: Vec<Vector>,
-    winds_kt: Vec<f64>,
-    sizes: Vec<f64>,
-    /// Square of the chord beyond which a place cannot meet 34 kt within the hour after a step.
-    far2: Vec<f64>,
+    states: Vec<State>,
     /// The greatest bound of the reach of 34 kt, and the longest way of the centre in an hour, in radians.
     widest: f64,
     fastest: f64,
@@ -65,65 +74,74 @@ impl Scenario {
     pub fn draw(&mut self, course: &Course, draws: &Draws, index: usize) {
         let mut errors = std::mem::take(&mut self.errors);
         draws.standard_errors(course, index, &mut errors);
-        self.fill(course, |step, i| {
-            let (now, next) = step.weights[i];
-            let z = |node: usize| errors.get(node).map_or(0.0, |z| z[i]);
-            step.deviation[i] * (now * z(step.node) + next * z(step.node + 1)) + step.bias[i]
+        self.fill(course, |step, node| {
+            let z = |node: usize| errors.get(node).copied().unwrap_or_default();
+            let (now, next) = (z(node), z(node + 1));
+            std::array::from_fn(|i| step.from_node[i] * now[i] + step.from_next[i] * next[i] + step.bias[i])
         });
         self.errors = errors;
     }
 
     /// Fills in the forecast itself, without any error.
     pub fn single_track(&mut self, course: &Course) {
-        self.fill(course, |_, _| 0.0);
+        self.fill(course, |_, _| [0.0; 4]);
     }
 
-    fn fill(&mut self, course: &Course, error: impl Fn(&Step, usize) -> f64) {
-        let [along, cross, intensity, size] = Component::ALL.map(Component::index);
-        self.centres.clear();
-        self.winds_kt.clear();
-        self.sizes.clear();
-        let mut bounds = Vec::with_capacity(course.steps.len());
-        for step in &course.steps {
-            let wind = (step.expected.wind_kt + error(step, intensity)).clamp(0.0, 250.0);
-            let scale = libm::exp(error(step, size));
-            self.centres.push(displaced(
-                step.centre,
-                step.along,
-                step.cross,
-                error(step, along),
-                error(step, cross),
-            ));
-            self.winds_kt.push(wind);
-            self.sizes.push(scale);
-            bounds.push(scale * step.bound_nmi(wind));
+    fn fill(&mut self, course: &Course, error: impl Fn(&Step, usize) -> [f64; 4]) {
+        self.states.clear();
+        for stretch in &course.stretches {
+            let range = stretch.first..stretch.end;
+            let (Some(steps), Some(storms)) = (course.steps.get(range.clone()), course.storms.get(range))
+            else {
+                continue;
+            };
+            for (step, storm) in steps.iter().zip(storms) {
+                let [along, cross, intensity, size] = error(step, stretch.node);
+                let centre = displaced(step.centre, step.along, step.cross, along, cross);
+                if let Some(last) = self.states.last_mut() {
+                    let moved = plus(centre, -1.0, last.centre);
+                    last.way2 = dot(moved, moved);
+                }
+                let wind_kt = (storm.expected.wind_kt + intensity).clamp(0.0, 250.0);
+                self.states.push(State { centre, wind_kt, log_size: size, way2: 0.0, far2: 0.0 });
+            }
         }
-        self.far2.clear();
-        self.widest = bounds.iter().copied().fold(0.0, f64::max) / EARTH_RADIUS_NMI;
-        // Never nothing: a storm that stands still is looked at again after a day or so.
-        self.fastest = 1.0 / EARTH_RADIUS_NMI;
-        for (centres, reach) in self.centres.windows(2).zip(bounds.windows(2)) {
-            let ([from, to], [a, b]) = (centres, reach) else { continue };
-            let moved = plus(*to, -1.0, *from);
-            let way = f64::sqrt(dot(moved, moved));
-            let far = a.max(*b) / EARTH_RADIUS_NMI + way;
-            self.fastest = self.fastest.max(way);
-            self.far2.push(far * far);
-        }
-        let last = bounds.last().copied().unwrap_or(0.0) / EARTH_RADIUS_NMI;
-        self.far2.push(last * last);
+        self.bound(course);
         self.vortices.clear();
         self.vortices.resize(course.steps.len(), None);
+    }
+
+    /// How near the storm must come to a place, with one bound for all steps of a stretch.
+    fn bound(&mut self, course: &Course) {
+        self.widest = 0.0;
+        // Never nothing: a storm that stands still is looked at again after a day or so.
+        self.fastest = 1.0 / EARTH_RADIUS_NMI;
+        for stretch in &course.stretches {
+            let (mut wind_kt, mut log_size, mut way2) = (0.0, f64::MIN, 0.0);
+            // The last hour ends with the first step of the next stretch.
+            for state in self.states.iter().take(stretch.end + 1).skip(stretch.first) {
+                wind_kt = f64::max(wind_kt, state.wind_kt);
+                log_size = f64::max(log_size, state.log_size);
+                way2 = f64::max(way2, state.way2);
+            }
+            let bound = libm::exp(log_size) * stretch.bound_nmi(wind_kt) / EARTH_RADIUS_NMI;
+            let way = f64::sqrt(way2);
+            self.widest = self.widest.max(bound);
+            self.fastest = self.fastest.max(way);
+            for state in self.states.iter_mut().take(stretch.end).skip(stretch.first) {
+                state.far2 = (bound + way) * (bound + way);
+            }
+        }
     }
 
     /// For how many hours from step `k` on no wind can reach `place`, when it reaches at most `widening` times as
     /// far as 34 kt; 0 if it may in the hour after `k`.
     #[must_use]
     pub fn hours_out_of_reach(&self, k: usize, place: Vector, widening: f64) -> usize {
-        let (Some(centre), Some(far2)) = (self.centres.get(k), self.far2.get(k)) else { return 1 };
-        let between = plus(place, -1.0, *centre);
+        let Some(state) = self.states.get(k) else { return 1 };
+        let between = plus(place, -1.0, state.centre);
         let distance2 = dot(between, between);
-        if distance2 <= far2 * widening * widening {
+        if distance2 <= state.far2 * widening * widening {
             return 0;
         }
         // However it goes on, the storm needs this long to come near enough.
@@ -135,12 +153,12 @@ impl Scenario {
     /// needed.
     pub fn prepare(&mut self, course: &Course, k: usize) {
         for at in [k, k + 1] {
-            let (Some(kept), Some(step)) = (self.vortices.get_mut(at), course.steps.get(at)) else {
-                continue;
-            };
-            let state = (self.centres.get(at), self.winds_kt.get(at), self.sizes.get(at));
-            if let (None, (Some(centre), Some(wind), Some(size))) = (&kept, state) {
-                *kept = Some(Vortex::realised(&step.expected, *centre, *wind, *size));
+            if let (Some(kept), Some(state), Some(storm)) =
+                (self.vortices.get_mut(at), self.states.get(at), course.storms.get(at))
+                && kept.is_none()
+            {
+                let size = libm::exp(state.log_size);
+                *kept = Some(Vortex::realised(storm, state.centre, state.wind_kt, size));
             }
         }
     }

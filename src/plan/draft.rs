@@ -78,7 +78,7 @@ pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
         forecast_end,
         effort,
     } = inputs;
-    let roles = roles(RoleInputs { work, timed, situation, before, adjustments, now, carried_out });
+    let roles = roles(RoleInputs { port, work, timed, situation, before, adjustments, now, carried_out });
     let before = carried_out.or(before);
     let problem_inputs =
         ProblemInputs { port, waters, work, timed, situation, before, hints, adjustments, now, forecast_end };

@@ -137,13 +137,24 @@ impl Stater<'_> {
                 let way = self.way(task, *takes, *ordered);
                 let issued =
                     if *is_unreported || ordered.is_some() { None } else { self.issued(index, task, &way) };
-                let soonest =
-                    if *is_unreported { self.inputs.now.ceil_to(LEAST_MOVE) } else { self.inputs.now };
+                let soonest = self.soonest(task, *is_unreported);
                 let release = times.release.unwrap_or(soonest).max(soonest);
                 Some(engine::Task { ways: vec![way], release, issued, ..base })
             }
             Role::Waiting | Role::NotNeeded | Role::Cannot(_) => None,
         }
+    }
+
+    /// Before this a task is not placed anew: not within a least move of the time at which it was to start, and in whole
+    /// steps where nobody has reported.
+    fn soonest(&self, task: &Task, is_unreported: bool) -> Moment {
+        let now = self.inputs.now;
+        if is_unreported {
+            return now.ceil_to(LEAST_MOVE);
+        }
+        let line = self.inputs.before.and_then(|plan| plan.task(&task.id));
+        let passed = line.filter(|line| line.state == TaskState::Planned).and_then(|line| line.start);
+        passed.filter(|start| *start < now).map_or(now, |start| now.max(start + LEAST_MOVE))
     }
 
     fn way(&mut self, task: &Task, takes: Minutes, ordered: Option<Moment>) -> engine::Way {

@@ -2,10 +2,11 @@
 
 use crate::plan::adjust::Adjustments;
 use crate::plan::sheet::{Plan, TaskState};
+use crate::port::harbour::Port;
 use crate::record::situation::{Outcome, Situation, TaskState as Recorded, Way};
 use crate::rules::task::IfGivenUp;
 use crate::time::moment::{Minutes, Moment};
-use crate::work::graph::{Edge, Task, WorkGraph};
+use crate::work::graph::{Edge, Task, TaskNeed, WorkGraph};
 use crate::work::timed::Timed;
 use petgraph::Direction;
 use petgraph::algo::toposort;
@@ -47,6 +48,8 @@ pub enum Role {
 /// Everything that decides roles.
 #[derive(Clone, Copy, Debug)]
 pub struct RoleInputs<'a> {
+    /// The port, for who belongs to which pool.
+    pub port: &'a Port,
     /// The graph.
     pub work: &'a WorkGraph,
     /// Its times.
@@ -86,7 +89,53 @@ pub fn roles(inputs: RoleInputs<'_>) -> BTreeMap<NodeIndex, Role> {
         };
         roles.insert(index, role);
     }
+    free_where_held(&inputs, &mut roles);
     roles
+}
+
+/// One hold of one member, by name.
+type Hold = (String, Moment, Moment);
+
+/// A task that is just being begun, as planned, is placed anew if a report has shown since that one of its members is
+/// still held by other work.
+fn free_where_held(inputs: &RoleInputs<'_>, roles: &mut BTreeMap<NodeIndex, Role>) {
+    let is_beginning = |role: &Role| matches!(role, Role::Stands { state: TaskState::Planned, .. });
+    let mut taken: Vec<Hold> = Vec::new();
+    for (index, role) in roles.iter().filter(|(_, role)| !is_beginning(role)) {
+        taken.extend(holds(inputs, *index, role));
+    }
+    let beginning: Vec<NodeIndex> =
+        roles.iter().filter(|(_, role)| is_beginning(role)).map(|(index, _)| *index).collect();
+    for index in beginning.into_iter().filter(|_| inputs.carried_out.is_none()) {
+        let Some(role @ Role::Stands { start, finish, .. }) = roles.get(&index) else { continue };
+        let own = holds(inputs, index, role);
+        let is_held = own.iter().any(|(name, from, to)| {
+            taken.iter().any(|(other, begins, ends)| other == name && from < ends && begins < to)
+        });
+        if is_held {
+            let takes = *finish - *start;
+            roles.insert(index, Role::Free { takes, ordered: None, is_unreported: false });
+        } else {
+            taken.extend(own);
+        }
+    }
+}
+
+/// Whom a standing task holds, from when to when.
+fn holds(inputs: &RoleInputs<'_>, index: NodeIndex, role: &Role) -> Vec<Hold> {
+    let (Role::Stands { start, finish, members, .. }, Some(task)) = (role, inputs.work.task_at(index)) else {
+        return Vec::new();
+    };
+    let planned = inputs.before.and_then(|plan| plan.task(&task.id));
+    let of_plan = || planned.map(|line| line.members.iter().flat_map(|(_, names)| names.clone()).collect());
+    let names: Vec<String> = if members.is_empty() { of_plan().unwrap_or_default() } else { members.clone() };
+    let of_need = |need: &TaskNeed| {
+        let pool = inputs.port.pools.get(need.pool);
+        let is_in = |name: &&String| pool.is_some_and(|pool| pool.members.iter().any(|m| m.id == **name));
+        let (from, to) = (*start - need.before, *finish + need.after);
+        names.iter().filter(is_in).map(|name| (name.clone(), from, to)).collect::<Vec<Hold>>()
+    };
+    task.needs.iter().flat_map(of_need).collect()
 }
 
 fn own_role(inputs: &RoleInputs<'_>, index: NodeIndex, task: &Task) -> Role {

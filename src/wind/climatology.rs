@@ -7,7 +7,7 @@
 /// degrees of latitude); further on they would let the gale radius shrink from 126 to 100 n mi at 120 kt.
 /// Observed are 125, 121, 130, 139 n mi in storms of 90-99, 100-109, 110-119, 120-129 kt (our own calculation
 /// from HURDAT2, Atlantic, 2006-2015, US National Hurricane Center, public domain).
-const GROWS_WITHIN_KT: f64 = 53.0;
+pub const GROWS_WITHIN_KT: f64 = 53.0;
 
 /// Exponent x of the modified Rankine vortex.
 ///

@@ -4,8 +4,8 @@ use crate::units::bearing::Bearing;
 use crate::units::speed::Knots;
 use crate::wind::climatology::{radius_of_greatest_wind_nmi, rankine_exponent};
 use crate::wind::profile::{Profile, sector};
-use crate::wind::sphere::{Vector, bearing_degrees, distance_nmi, plus};
-use crate::wind::structure::Expected;
+use crate::wind::reach_table::ReachTable;
+use crate::wind::sphere::{Vector, bearing_degrees, distance_nmi};
 
 /// How far the surface wind is turned inwards from the circle around the centre, in degrees, over the sea.
 ///
@@ -65,12 +65,13 @@ pub struct Vortex {
 
 impl Vortex {
     /// The storm with its centre there, of greatest wind `wind_kt` and with the size error `size` (1 for
-    /// none), where `expected` was forecast.
+    /// none), where what `table` holds was forecast.
     #[must_use]
-    pub fn realised(expected: &Expected, centre: Vector, wind_kt: f64, size: f64) -> Vortex {
+    pub fn realised(table: &ReachTable, centre: Vector, wind_kt: f64, size: f64) -> Vortex {
+        let expected = &table.expected;
         let mean = expected.ratios[0].iter().sum::<f64>() / 4.0;
         let mean = if mean > 0.0 { mean } else { 1.0 };
-        let reach_nmi = expected.reach(wind_kt, size);
+        let reach_nmi = table.reach(wind_kt, size);
         Vortex {
             centre,
             max_wind_kt: wind_kt,
@@ -78,27 +79,6 @@ impl Vortex {
             widest_nmi: reach_nmi[0].into_iter().fold(0.0, f64::max),
             exponent: rankine_exponent(wind_kt, expected.latitude).max(LEAST_EXPONENT),
             core_nmi: mean * size * radius_of_greatest_wind_nmi(wind_kt, expected.latitude),
-        }
-    }
-
-    /// The state a share `s` (0..1) of the way from `self` to `next`; the centre goes along the chord and is
-    /// not brought back to length one.
-    #[must_use]
-    pub fn towards(&self, next: &Vortex, s: f64) -> Vortex {
-        let mix = |a: f64, b: f64| a + (b - a) * s;
-        let mut reach_nmi = self.reach_nmi;
-        for (row, other) in reach_nmi.iter_mut().zip(&next.reach_nmi) {
-            for (a, b) in row.iter_mut().zip(other) {
-                *a = mix(*a, *b);
-            }
-        }
-        Vortex {
-            centre: plus(self.centre, s, plus(next.centre, -1.0, self.centre)),
-            max_wind_kt: mix(self.max_wind_kt, next.max_wind_kt),
-            reach_nmi,
-            widest_nmi: mix(self.widest_nmi, next.widest_nmi),
-            exponent: mix(self.exponent, next.exponent),
-            core_nmi: mix(self.core_nmi, next.core_nmi),
         }
     }
 

@@ -19,6 +19,51 @@ const JUST_BELOW_KT: f64 = 0.1;
 /// ln(50 / 34).
 const LOG_50_OVER_34: f64 = 0.385_662_480_811_984_73;
 
+/// ln(64 / 50).
+const LOG_64_OVER_50: f64 = 0.246_860_077_931_525_8;
+
+/// gale radius / storm radius at which the outer exponent is at its upper and at its lower bound: (50 / 34)^(1/x).
+const STEEPEST_RATIO: f64 = 50.0 / 34.0;
+const FLATTEST_RATIO: f64 = 2.622_573_800_133_358_7;
+
+/// A wind speed, ready to be compared with many profiles.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Limit {
+    /// The speed in kt.
+    pub kt: f64,
+    /// How far its logarithm lies from that of 34 kt, as a share of that from 34 to 50 kt; above 50 kt from 50 kt
+    /// as a share of that from 50 to 64 kt.
+    share: f64,
+}
+
+impl Limit {
+    /// A speed of `kt`, above zero.
+    #[must_use]
+    pub fn new(kt: f64) -> Limit {
+        let share = if kt > 50.0 {
+            libm::log(kt / 50.0) / LOG_64_OVER_50
+        } else {
+            libm::log(kt / 34.0) / LOG_50_OVER_34
+        };
+        Limit { kt, share }
+    }
+}
+
+/// Whether ln a <= share x ln b, for a and b from 1 up.
+///
+/// 2 (v - 1) / (v + 1) <= ln v <= (v - 1) / sqrt v decides nearly always, several times faster than the logarithms.
+fn log_is_within(a: f64, share: f64, b: f64) -> bool {
+    let at_least = |v: f64| 2.0 * (v - 1.0) / (v + 1.0);
+    let at_most = |v: f64| (v - 1.0) / f64::sqrt(v);
+    if at_most(a) <= share * at_least(b) {
+        true
+    } else if at_least(a) > share * at_most(b) {
+        false
+    } else {
+        libm::log(a) <= share * libm::log(b)
+    }
+}
+
 /// The exponent x of v = c r^-x through (r1, v1) and (r2, v2): x = ln(v2 / v1) / ln(r1 / r2).
 #[must_use]
 pub fn exponent_between(r1_nmi: f64, v1_kt: f64, r2_nmi: f64, v2_kt: f64) -> f64 {
@@ -56,6 +101,19 @@ pub struct Profile {
 }
 
 impl Profile {
+    /// The profile a share `s` (0..1) of the way from `self` to `next`.
+    #[must_use]
+    pub fn towards(&self, next: &Profile, s: f64) -> Profile {
+        let mix = |a: f64, b: f64| a + (b - a) * s;
+        let ([a0, a1, a2], [b0, b1, b2]) = (self.reach_nmi, next.reach_nmi);
+        Profile {
+            max_wind_kt: mix(self.max_wind_kt, next.max_wind_kt),
+            reach_nmi: [mix(a0, b0), mix(a1, b1), mix(a2, b2)],
+            exponent: mix(self.exponent, next.exponent),
+            core_nmi: mix(self.core_nmi, next.core_nmi),
+        }
+    }
+
     /// How far a wind of `speed_kt` or more reaches on this bearing in n mi; zero if it does not blow. The
     /// calm of the eye is not cut out.
     #[must_use]
@@ -123,6 +181,53 @@ impl Profile {
         }
     }
 
+    /// Whether the wind at `r_nmi` from the centre is `limit` or more: what [`Profile::speed_kt`] says, mostly
+    /// without its logarithms.
+    #[must_use]
+    pub fn blows(&self, limit: &Limit, r_nmi: f64) -> bool {
+        let [gale, storm, hurricane] = self.reach_nmi;
+        let kt = limit.kt;
+        if self.max_wind_kt < kt {
+            return false;
+        }
+        if r_nmi > gale || gale <= 0.0 {
+            return kt < 34.0 && self.blows_outside(limit, r_nmi);
+        }
+        // Inside the nearest given radius that is known, and outside the next: ln R is linear in ln v between them.
+        let (sure, at_most, outer, inner) = if r_nmi <= hurricane {
+            (64.0, f64::INFINITY, hurricane, 0.0)
+        } else if r_nmi <= storm {
+            (50.0, 64.0, storm, hurricane)
+        } else {
+            (34.0, 50.0, gale, storm)
+        };
+        if kt <= sure {
+            true
+        } else if kt >= at_most || inner >= outer {
+            false
+        } else if inner > 0.0 {
+            !log_is_within(outer / r_nmi, limit.share, outer / inner)
+        } else {
+            self.speed_kt(r_nmi) >= kt
+        }
+    }
+
+    /// The same outside the gales.
+    fn blows_outside(&self, limit: &Limit, r_nmi: f64) -> bool {
+        let [gale, storm, _] = self.reach_nmi;
+        let (radius, speed) = self.outer_start();
+        if limit.kt > 34.0 - JUST_BELOW_KT {
+            false
+        } else if r_nmi <= radius {
+            true
+        } else if speed < 34.0 || storm <= 0.0 || gale <= storm {
+            self.speed_kt(r_nmi) >= limit.kt
+        } else {
+            let ratio = (gale / storm).clamp(STEEPEST_RATIO, FLATTEST_RATIO);
+            log_is_within(r_nmi / radius, -limit.share, ratio)
+        }
+    }
+
     /// R = R1 (v1 / v)^(1/x) towards the core, with the mean vortex's x, up to the greatest wind.
     fn inner_reach(&self, r1_nmi: f64, v1_kt: f64, speed_kt: f64) -> f64 {
         r1_nmi * libm::exp(libm::log(v1_kt / speed_kt) / self.exponent)
@@ -158,7 +263,10 @@ impl Profile {
 
 #[cfg(test)]
 mod tests {
-    use super::{LOG_50_OVER_34, Profile, around, exponent_between};
+    use super::{
+        FLATTEST_RATIO, LOG_50_OVER_34, LOG_64_OVER_50, Limit, OUTER_EXPONENT, Profile, around,
+        exponent_between,
+    };
     use approx::assert_abs_diff_eq;
     use proptest::prelude::{prop_assert, proptest};
 
@@ -166,6 +274,8 @@ mod tests {
     fn between_two_radii_the_wind_is_straight_in_log_log() {
         assert_abs_diff_eq!(exponent_between(120.0, 34.0, 60.0, 50.0), 0.5564, epsilon = 5e-5);
         assert_abs_diff_eq!(LOG_50_OVER_34, libm::log(50.0 / 34.0), epsilon = 1e-16);
+        assert_abs_diff_eq!(LOG_64_OVER_50, libm::log(64.0 / 50.0), epsilon = 1e-16);
+        assert_abs_diff_eq!(FLATTEST_RATIO, libm::pow(50.0 / 34.0, 1.0 / OUTER_EXPONENT.0), epsilon = 1e-15);
         let profile =
             Profile { max_wind_kt: 55.0, reach_nmi: [120.0, 60.0, 0.0], exponent: 0.5, core_nmi: 30.0 };
         assert_abs_diff_eq!(profile.speed_kt(90.0), 39.90, epsilon = 5e-3);
@@ -209,6 +319,10 @@ mod tests {
             let profile = Profile {
                 max_wind_kt: wind, reach_nmi: [gale, storm, hurricane], exponent: 0.1147 + 0.0055 * wind, core_nmi: core,
             };
+            for r in [0.1, 0.3, 0.9, 1.1, 2.0, 5.0].map(|times| times * core.max(gale)) {
+                let wind = profile.speed_kt(r);
+                prop_assert!((wind - speed).abs() < 1e-9 || profile.blows(&Limit::new(speed), r) == (wind >= speed));
+            }
             let limit = profile.reach_nmi(speed);
             if limit > 0.1 {
                 prop_assert!(profile.speed_kt(limit * 0.999) >= speed - 0.11, "inside");

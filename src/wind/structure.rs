@@ -135,6 +135,21 @@ impl Expected {
     /// storm's mean ratio come up to it.
     #[must_use]
     pub fn reach(&self, wind_kt: f64, size: f64) -> [[f64; 4]; 3] {
+        self.reach_scaled(wind_kt, |i| size * self.scale(i, wind_kt))
+    }
+
+    /// U^(1 - g) x M^g of [`Expected::reach`] in n mi for the given speed number `i`, the weakest being 0, in a
+    /// storm that has that wind.
+    #[must_use]
+    pub fn scale(&self, i: usize, wind_kt: f64) -> f64 {
+        let usual = self.log_usual[i];
+        let grown = log_reach(GIVEN_SPEEDS_KT[i], wind_kt, self.latitude) - usual;
+        libm::exp(usual + self.follows * grown)
+    }
+
+    /// The reach where `scale` gives size x U^(1 - g) x M^g for each given speed; see [`Expected::reach`].
+    #[must_use]
+    pub fn reach_scaled(&self, wind_kt: f64, scale: impl Fn(usize) -> f64) -> [[f64; 4]; 3] {
         let stronger = ((wind_kt - self.wind_kt) / FILLED_AT_KT).clamp(0.0, 1.0);
         let mut reach = [[0.0; 4]; 3];
         let mut outside = [f64::INFINITY; 4];
@@ -142,9 +157,7 @@ impl Expected {
             if wind_kt < speed {
                 break;
             }
-            let (own, usual) = (self.ratios[i], self.log_usual[i]);
-            let grown = log_reach(speed, wind_kt, self.latitude) - usual;
-            let scale = size * libm::exp(usual + self.follows * grown);
+            let (own, scale) = (self.ratios[i], scale(i));
             let mean = own.iter().sum::<f64>() / 4.0;
             let filled = own.map(|ratio| (ratio + stronger * (mean - ratio).max(0.0)) * scale);
             // A stronger wind never reaches beyond a weaker one.
