@@ -23,7 +23,7 @@ if [ "${1:-}" = all ]; then
   say "outside references, made again"
   bash tests/outside/run.sh
   say "long runs"
-  SNUGDOWN_LONG=1 cargo test --locked --release -- long
+  SNUGDOWN_LONG=1 cargo test --locked --release --test demo_port
   say "benches"
   cargo bench --locked
 fi
