@@ -1,10 +1,10 @@
 //! One try at a plan: roles, problem and schedule under given choices.
 
 use crate::plan::adjust::Adjustments;
+use crate::plan::calendar::Calendar;
 use crate::plan::problem::{Hints, LEAST_MOVE, ProblemInputs, Stated, state};
 use crate::plan::roles::{Role, RoleInputs, roles};
 use crate::plan::sheet::{Clash, Plan, TaskState};
-use crate::plan::waters::Waters;
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::schedule::latest::{Limits, latest};
@@ -22,8 +22,8 @@ use std::collections::{BTreeMap, BTreeSet};
 pub struct DraftInputs<'a> {
     /// The port.
     pub port: &'a Port,
-    /// Its tide and daylight.
-    pub waters: &'a Waters,
+    /// Its tide, daylight and shifts.
+    pub calendar: &'a Calendar,
     /// The graph.
     pub work: &'a WorkGraph,
     /// Its times.
@@ -67,7 +67,7 @@ pub struct Draft {
 pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
     let DraftInputs {
         port,
-        waters,
+        calendar,
         work,
         timed,
         situation,
@@ -80,8 +80,18 @@ pub fn draft(inputs: DraftInputs<'_>, adjustments: &Adjustments) -> Draft {
     } = inputs;
     let roles = roles(RoleInputs { port, work, timed, situation, before, adjustments, now, carried_out });
     let before = carried_out.or(before);
-    let problem_inputs =
-        ProblemInputs { port, waters, work, timed, situation, before, hints, adjustments, now, forecast_end };
+    let problem_inputs = ProblemInputs {
+        port,
+        calendar,
+        work,
+        timed,
+        situation,
+        before,
+        hints,
+        adjustments,
+        now,
+        forecast_end,
+    };
     let mut stated = state(problem_inputs, &roles);
     let mut clashes = Vec::new();
     let mut schedule = solved(&stated.problem, effort, &mut clashes);

@@ -5,9 +5,9 @@ use crate::arrival::errors::ErrorTables;
 use crate::arrival::odds::{Answers, Draw, ask};
 use crate::plan::audit::audit;
 use crate::plan::audit_case::AuditInputs;
+use crate::plan::calendar::{Calendar, LONGEST_RECORD, REACH};
 use crate::plan::make::{Forecast, MakeInputs, make};
 use crate::plan::sheet::{Breach, Plan};
-use crate::plan::waters::{LONGEST_RECORD, REACH, Waters};
 use crate::port::harbour::Port;
 use crate::record::event::Event;
 use crate::record::situation::{Situation, situation};
@@ -75,12 +75,12 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     let first = moments.first().copied().unwrap_or(now);
     // A record that begins long ago (or in a mistyped year) must not fill the memory with tides.
     let from = (first - REACH.0).max(now - LONGEST_RECORD);
-    let waters = Waters::of(inputs.port, from, now + REACH.1);
+    let calendar = Calendar::of(inputs.port, from, now + REACH.1);
     let mut plans: Vec<Plan> = Vec::with_capacity(moments.len());
     let end = moments.len();
     for (number, moment) in (1..).zip(moments) {
         let then = situation(inputs.events, moment.to_utc());
-        let plan = plan_then(inputs, (&odds, &waters), &then, plans.last(), number == end);
+        let plan = plan_then(inputs, (&odds, &calendar), &then, plans.last(), number == end);
         plans.push(plan);
     }
     History { plans }
@@ -88,7 +88,7 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
 
 fn plan_then(
     inputs: &Inputs<'_>,
-    (odds, waters): (&BTreeMap<String, Answers>, &Waters),
+    (odds, calendar): (&BTreeMap<String, Answers>, &Calendar),
     then: &Situation,
     before: Option<&Plan>,
     with_reliefs: bool,
@@ -97,7 +97,7 @@ fn plan_then(
     let book = arrival_book(inputs, odds, then, forecast.as_ref());
     make(MakeInputs {
         port: inputs.port,
-        waters,
+        calendar,
         rules: inputs.rules,
         work: inputs.work,
         situation: then,

@@ -6,12 +6,12 @@ use crate::plan::adjust::Adjustments;
 use crate::plan::adoption::if_adopted;
 use crate::plan::audit::audit;
 use crate::plan::audit_case::AuditInputs;
+use crate::plan::calendar::Calendar;
 use crate::plan::draft::{Draft, DraftInputs, draft};
 use crate::plan::heads;
 use crate::plan::lines::{LineInputs, lines};
 use crate::plan::relief::{permitted, reliefs};
 use crate::plan::sheet::{AdvisoryInForce, Clash, Plan};
-use crate::plan::waters::Waters;
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
 use crate::rules::stage::Rules;
@@ -43,8 +43,8 @@ pub struct Forecast<'a> {
 pub struct MakeInputs<'a> {
     /// The port.
     pub port: &'a Port,
-    /// Its tide and daylight.
-    pub waters: &'a Waters,
+    /// Its tide, daylight and shifts.
+    pub calendar: &'a Calendar,
     /// Its rules.
     pub rules: &'a Rules,
     /// The graph of its tasks and stages.
@@ -66,14 +66,14 @@ pub struct MakeInputs<'a> {
 /// Makes the plan. Pure: the same inputs give the same plan.
 #[must_use]
 pub fn make(inputs: MakeInputs<'_>) -> Plan {
-    let MakeInputs { port, waters, rules, work, situation, forecast, book, before, effort, with_reliefs } =
+    let MakeInputs { port, calendar, rules, work, situation, forecast, book, before, effort, with_reliefs } =
         inputs;
     let now = Moment::at_or_after(situation.now);
     let timed = timed(work, rules, book, situation);
     let forecast_end = forecast.map(|f| Moment::at_or_after(f.advisory.last_valid()));
     let draft_inputs = DraftInputs {
         port,
-        waters,
+        calendar,
         work,
         timed: &timed,
         situation,

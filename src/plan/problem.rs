@@ -1,22 +1,20 @@
 //! From the timed work graph to the engine's whole-minute problem.
 
 use crate::plan::adjust::Adjustments;
+use crate::plan::calendar::Calendar;
 use crate::plan::roles::Role;
 use crate::plan::sheet::{Plan, TaskState};
-use crate::plan::waters::Waters;
 use crate::port::harbour::Port;
-use crate::port::means::{Member as PortMember, Shift};
+use crate::port::means::Member as PortMember;
 use crate::record::situation::Situation;
 use crate::rules::task::{DaylightNeed, IfGivenUp, LinkKind, Stake, TideNeed};
 use crate::schedule::problem as engine;
-use crate::time::local::LocalTime;
 use crate::time::moment::{Minutes, Moment};
 use crate::time::span::Span;
 use crate::time::windows::WindowSet;
 use crate::units::length::Metres;
 use crate::work::graph::{Edge, Task, TaskNeed, WorkGraph};
 use crate::work::timed::Timed;
-use chrono::{DateTime, Duration, Utc};
 use petgraph::graph::NodeIndex;
 use petgraph::visit::EdgeRef;
 use std::collections::BTreeMap;
@@ -47,8 +45,8 @@ pub type Hints = BTreeMap<NodeIndex, engine::Issued>;
 pub struct ProblemInputs<'a> {
     /// The port.
     pub port: &'a Port,
-    /// Its tide and daylight.
-    pub waters: &'a Waters,
+    /// Its tide, daylight and shifts.
+    pub calendar: &'a Calendar,
     /// The graph.
     pub work: &'a WorkGraph,
     /// Its times.
@@ -71,8 +69,7 @@ pub struct ProblemInputs<'a> {
 #[must_use]
 pub fn state(inputs: ProblemInputs<'_>, roles: &BTreeMap<NodeIndex, Role>) -> Stated {
     let horizon = inputs.forecast_end.unwrap_or(inputs.now).max(inputs.now + Minutes::hours(72)) + BEYOND;
-    let mut stater =
-        Stater { inputs, horizon, windows: Vec::new(), window_words: Vec::new(), keys: BTreeMap::new() };
+    let mut stater = Stater { inputs, windows: Vec::new(), window_words: Vec::new(), keys: BTreeMap::new() };
     let mut tasks = Vec::new();
     let mut nodes = Vec::new();
     for (rank, (index, task)) in (0..).zip(inputs.work.tasks()) {
@@ -98,7 +95,6 @@ pub fn state(inputs: ProblemInputs<'_>, roles: &BTreeMap<NodeIndex, Role>) -> St
 
 struct Stater<'a> {
     inputs: ProblemInputs<'a>,
-    horizon: Moment,
     windows: Vec<WindowSet>,
     window_words: Vec<String>,
     /// Window sets by what they are, so that tasks share them.
@@ -262,15 +258,15 @@ impl Stater<'_> {
     }
 
     fn tide_window(&mut self, need: &TideNeed, draught: Metres) -> usize {
-        let ProblemInputs { port, waters, .. } = self.inputs;
+        let ProblemInputs { port, calendar, .. } = self.inputs;
         let words = format!("the tide in {} for {draught}", need.channel);
         let key = format!("{words} {} {}", need.from.get(), need.until.get());
-        self.window(key, words, || waters.starts_afloat(port, need, draught))
+        self.window(key, words, || calendar.starts_afloat(port, need, draught))
     }
 
     fn daylight_window(&mut self) -> usize {
-        let waters = self.inputs.waters;
-        self.window(String::from("daylight"), String::from("daylight"), || waters.daylight().clone())
+        let calendar = self.inputs.calendar;
+        self.window(String::from("daylight"), String::from("daylight"), || calendar.daylight().clone())
     }
 
     fn window(&mut self, key: String, words: String, make: impl FnOnce() -> WindowSet) -> usize {
@@ -310,11 +306,7 @@ impl Stater<'_> {
 
     /// When a member is on call and in service.
     fn available(&self, member: &PortMember) -> WindowSet {
-        let shifts = if member.shifts.is_empty() {
-            WindowSet::always()
-        } else {
-            WindowSet::from_spans(member.shifts.iter().flat_map(|shift| self.shift_spans(shift)))
-        };
+        let shifts = self.inputs.calendar.on_call(&member.id);
         let outages = self.inputs.situation.means.get(&member.id).map(Vec::as_slice).unwrap_or_default();
         let out = WindowSet::from_spans(outages.iter().filter_map(|outage| {
             let until = outage.until.map_or(Moment::LATEST, Moment::at_or_after);
@@ -323,48 +315,11 @@ impl Stater<'_> {
         shifts.overlap(&out.gaps())
     }
 
-    fn shift_spans(&self, shift: &Shift) -> Vec<Span> {
-        match shift {
-            Shift::Once { from, to } => {
-                Span::new(Moment::at_or_after(*from), Moment::at_or_before(*to)).into_iter().collect()
-            }
-            Shift::Daily { from, to } => {
-                let clock = &self.inputs.port.clock;
-                let begins = |local| Moment::at_or_after(instant(clock.local_at(local), Side::Late));
-                let ends = |local| Moment::at_or_before(instant(clock.local_at(local), Side::Early));
-                let first = (self.inputs.now - Minutes::hours(72)).to_utc().date_naive();
-                let days = (self.horizon - self.inputs.now).get() / 1440 + 6;
-                (0..days)
-                    .filter_map(|day| {
-                        let date = first.checked_add_signed(Duration::days(day))?;
-                        let end = if to > from { date } else { date.succ_opt()? };
-                        Span::new(begins(date.and_time(*from)), ends(end.and_time(*to)))
-                    })
-                    .collect()
-            }
-        }
-    }
-
     fn lanes(&self) -> Vec<engine::Lane> {
         let channels = self.inputs.port.channels.iter();
         channels
             .map(|channel| engine::Lane { spacing: channel.spacing.clone(), clearance: channel.clearance })
             .collect()
-    }
-}
-
-/// Which of two instants to take where clocks are put back.
-enum Side {
-    Early,
-    Late,
-}
-
-/// The instant of a local time; on the day clocks change, the side that makes a shift shorter.
-fn instant(local: LocalTime, side: Side) -> DateTime<Utc> {
-    match (local, side) {
-        (LocalTime::Once(at) | LocalTime::Never { at, .. }, _) => at,
-        (LocalTime::Twice { first, .. }, Side::Early) => first,
-        (LocalTime::Twice { second, .. }, Side::Late) => second,
     }
 }
 

@@ -19,7 +19,7 @@ impl Choices {
     }
 }
 
-/// The seeds, the most promising first: the issued plan before all else, then the tasks by class and latest finish;
+/// Where the search starts, the most promising first: the issued plan before all else, then the tasks by class and latest finish;
 /// the same without regard to the issued plan; by latest start; by weight; by earliest start.
 pub(crate) fn seeds(model: &Model, bound: &Bound, wanted: &[i64]) -> Vec<Choices> {
     let class = inherited_class(model, bound);
