@@ -8,6 +8,7 @@ use crate::plan::audit_case::AuditInputs;
 use crate::plan::calendar::{Calendar, LONGEST_RECORD, REACH};
 use crate::plan::make::{Forecast, MakeInputs, make};
 use crate::plan::sheet::{Breach, Plan};
+use crate::plan::threads::each;
 use crate::port::harbour::Port;
 use crate::record::event::Event;
 use crate::record::situation::{Situation, situation};
@@ -163,24 +164,9 @@ fn all_odds(inputs: &Inputs<'_>, last: &Situation) -> BTreeMap<String, Answers> 
         .filter_map(|taken| Some((taken.file.as_str(), inputs.forecasts.get(&taken.file)?)))
         .collect();
     let jobs: Vec<(&str, &Advisory)> = taken.into_iter().collect();
-    let threads = std::thread::available_parallelism().map_or(1, usize::from).min(jobs.len()).max(1);
-    let answer = |advisory: &Advisory| {
+    let answers = each(&jobs, |(file, advisory)| {
         let asked = questions(inputs.port, inputs.rules, inputs.work, advisory.averaging);
-        ask(advisory, &inputs.tables.for_advisory(advisory), &asked, inputs.draw)
-    };
-    std::thread::scope(|scope| {
-        let workers: Vec<_> = (0..threads)
-            .map(|first| {
-                let share: Vec<(&str, &Advisory)> =
-                    jobs.iter().copied().skip(first).step_by(threads).collect();
-                scope.spawn(move || {
-                    share
-                        .into_iter()
-                        .map(|(file, advisory)| (file.to_owned(), answer(advisory)))
-                        .collect::<Vec<_>>()
-                })
-            })
-            .collect();
-        workers.into_iter().filter_map(|worker| worker.join().ok()).flatten().collect()
-    })
+        ((*file).to_owned(), ask(advisory, &inputs.tables.for_advisory(advisory), &asked, inputs.draw))
+    });
+    answers.into_iter().collect()
 }

@@ -21,3 +21,4 @@ pub mod problem;
 pub mod relief;
 pub mod roles;
 pub mod sheet;
+pub mod threads;

@@ -4,6 +4,7 @@ use crate::plan::adjust::Adjustments;
 use crate::plan::draft::{Draft, DraftInputs, draft};
 use crate::plan::problem::class;
 use crate::plan::sheet::{Plan, Relief, ReliefKind, ReliefStep};
+use crate::plan::threads::each;
 use crate::rules::task::Leave;
 use crate::schedule::search::Effort;
 use crate::time::moment::{Minutes, Moment};
@@ -67,16 +68,14 @@ pub fn reliefs(inputs: DraftInputs<'_>, base: &Draft, plan: &Plan) -> Vec<Relief
     let cuts = cuttable(inputs, base, &missed, Leave::ByOrder);
     let with_cuts = fewest(inputs, base, cuts);
     let choices = (with_cuts.adjustments != base.adjustments).then_some(with_cuts.adjustments);
-    let mut helpful: Vec<Draft> = choices
-        .into_iter()
-        .chain(finder.single_choices())
-        .filter_map(|choice| finder.helpful(&choice))
-        .collect();
+    let choices: Vec<Adjustments> = choices.into_iter().chain(finder.single_choices()).collect();
+    let mut helpful: Vec<Draft> =
+        each(&choices, |choice| finder.helpful(choice)).into_iter().flatten().collect();
     helpful.sort_by(|a, b| {
         (&a.schedule.score.classes, &a.adjustments).cmp(&(&b.schedule.score.classes, &b.adjustments))
     });
     helpful.truncate(MOST_TOLD);
-    let mut found: Vec<Relief> = helpful.iter().map(|tried| finder.relief(tried)).collect();
+    let mut found: Vec<Relief> = each(&helpful, |tried| finder.relief(tried));
     found.sort_by(|a, b| (a.decide_by, &a.relieves, &a.steps).cmp(&(b.decide_by, &b.relieves, &b.steps)));
     found.dedup();
     found
