@@ -21,6 +21,10 @@ use chrono::{DateTime, Utc};
 /// Hours between the nodes at which errors are drawn; between them they are interpolated.
 pub const NODE_H: f64 = 12.0;
 
+/// Hours from stop to stop. Our choice: with it one onset in ten thousand is missed that every hour would show, as
+/// a wind may come and go within them; see `arrival::onset`.
+const STRIDE: usize = 3;
+
 /// Hours for which the storm is carried on beyond its forecast, to tell winds that are still coming from
 /// winds that never come.
 const LOOK_AHEAD_H: usize = 24;
@@ -49,26 +53,28 @@ pub struct Step {
     pub from_next: [f64; 4],
     /// Means of the errors.
     pub bias: [f64; 4],
-}
-
-/// The steps that share their error nodes.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Stretch {
     /// The error node at or before.
     pub node: usize,
-    /// Index of the first step.
-    pub first: usize,
-    /// Index after the last one.
-    pub end: usize,
-    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error), up to the first step of the
-    /// next stretch, for storms of up to 35, 40, ... 90 kt.
+}
+
+/// The forecast's strength and size at one time.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Storm {
+    /// Reach of the winds for any strength.
+    pub table: ReachTable,
+    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error) for storms of up to 35,
+    /// 40, ... 90 kt.
     bounds: [f64; BOUNDS],
 }
 
 const BOUNDS: usize = 12;
 
-impl Stretch {
-    /// A bound of the reach of 34 kt, or of the core if that is wider, for a storm of up to `wind_kt` before its
+impl Storm {
+    fn of(expected: Expected) -> Storm {
+        Storm { bounds: bounds(&expected), table: ReachTable::of(expected) }
+    }
+
+    /// A bound of the reach of 34 kt, or of the core if that is wider, for a storm of `wind_kt` before its
     /// size error. Much cheaper than the reach itself, it keeps far places out of the inner loop.
     #[must_use]
     pub fn bound_nmi(&self, wind_kt: f64) -> f64 {
@@ -84,9 +90,10 @@ pub struct Course {
     /// only).
     pub steps: Vec<Step>,
     /// Forecast strength and size at each step.
-    pub storms: Vec<ReachTable>,
-    /// The steps by their error nodes, in order.
-    pub stretches: Vec<Stretch>,
+    pub storms: Vec<Storm>,
+    /// Steps from one of which to the next a place is followed at a stride, rising: the first, every third, the end
+    /// of the forecast, every third after it, the last.
+    pub stops: Vec<usize>,
     /// Index of the step at the end of the forecast.
     pub end: usize,
     /// Correlation of each component's error at a node with that at the node before; the first is unused.
@@ -136,15 +143,11 @@ impl Course {
         let notes = notes(&forecast.structure, issued, forecast_end);
         let serial = forecast.errors.serial(end_minute as f64 / 60.0);
         let (steps, storms) = forecast.steps(&minutes, end_minute as f64, &serial);
-        let nodes: Vec<usize> = minutes
-            .iter()
-            .map(|minute| forecast.errors.node((*minute).min(end_minute) as f64 / 60.0).0)
-            .collect();
-        let stretches = stretches(&nodes, &storms);
+        let stops = stops(end, steps.len());
         Some(Course {
             steps,
             storms,
-            stretches,
+            stops,
             end,
             serial,
             intensity_with_size: table.settings().intensity_with_size,
@@ -316,7 +319,7 @@ struct Forecast<'a> {
 }
 
 impl Forecast<'_> {
-    fn steps(&self, minutes: &[i64], end_minute: f64, serial: &[[f64; 4]]) -> (Vec<Step>, Vec<ReachTable>) {
+    fn steps(&self, minutes: &[i64], end_minute: f64, serial: &[[f64; 4]]) -> (Vec<Step>, Vec<Storm>) {
         let mut heading: Option<Vector> = None;
         let mut steps = Vec::with_capacity(minutes.len());
         let mut storms = Vec::with_capacity(minutes.len());
@@ -337,11 +340,12 @@ impl Forecast<'_> {
             let ratios = self.structure.ratios_at(held);
             let follows = self.errors.table.settings().size_follows_intensity;
             let expected = Expected::new(linear_at(&self.winds, held), latitude, ratios, follows);
-            storms.push(ReachTable::of(expected));
+            storms.push(Storm::of(expected));
             let (deviation, bias) = self.errors.at(held);
             let [from_node, from_next] =
                 self.errors.weights(held, serial).map(|weights| times(weights, deviation));
-            steps.push(Step { minute, centre, along, cross, from_node, from_next, bias });
+            let (node, _) = self.errors.node(held);
+            steps.push(Step { minute, centre, along, cross, from_node, from_next, bias, node });
         }
         (steps, storms)
     }
@@ -372,22 +376,12 @@ fn times(a: [f64; 4], b: [f64; 4]) -> [f64; 4] {
     [a[0] * b[0], a[1] * b[1], a[2] * b[2], a[3] * b[3]]
 }
 
-/// The steps, given the node of each, by their nodes.
-fn stretches(nodes: &[usize], storms: &[ReachTable]) -> Vec<Stretch> {
-    let mut stretches = Vec::new();
-    let mut first = 0;
-    for same in nodes.chunk_by(|a, b| a == b) {
-        let end = first + same.len();
-        let mut most = [0.0; BOUNDS];
-        for storm in storms.iter().take(end + 1).skip(first) {
-            for (most, bound) in most.iter_mut().zip(bounds(&storm.expected)) {
-                *most = f64::max(*most, bound);
-            }
-        }
-        stretches.extend(same.first().map(|node| Stretch { node: *node, first, end, bounds: most }));
-        first = end;
-    }
-    stretches
+/// The stops of a course of `count` steps whose forecast ends with step `end`.
+fn stops(end: usize, count: usize) -> Vec<usize> {
+    let last = count.saturating_sub(1);
+    let mut stops: Vec<usize> = (0..end).step_by(STRIDE).chain((end..last).step_by(STRIDE)).collect();
+    stops.push(last);
+    stops
 }
 
 fn bounds(expected: &Expected) -> [f64; BOUNDS] {

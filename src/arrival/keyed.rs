@@ -9,6 +9,9 @@
 /// sampling: McKay, Beckman & Conover 1979, Technometrics 21:239-245).
 pub const BLOCK: usize = 1000;
 
+/// The bits that hold a scenario's number within its block.
+const NUMBER: u64 = 1023;
+
 /// What a number disturbs.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Component {
@@ -59,13 +62,15 @@ impl Keyed {
     pub fn normals(self, component: Component, node: usize, block: usize) -> Vec<f64> {
         let stream = mixed(mixed(self.0 ^ (component.index() as u64 + 1)) ^ ((node as u64 + 1) << 20));
         let first = block * BLOCK;
-        // Ranking hashes gives each scenario of the block its own thousandth, in random order.
-        let mut order: Vec<(u64, usize)> =
-            (0..BLOCK).map(|i| (mixed(stream ^ (((first + i) as u64) << 1)), i)).collect();
+        let hash = |i: usize| mixed(stream ^ (((first + i) as u64) << 1));
+        // Ranking hashes gives each scenario of the block its own thousandth, in random order. The hash's last bits
+        // make room for the scenario, as single numbers are sorted faster than pairs.
+        let mut order: Vec<u64> = (0..BLOCK).map(|i| (hash(i) & !NUMBER) | i as u64).collect();
         order.sort_unstable();
         let mut normals = vec![0.0; BLOCK];
-        for (rank, (hash, scenario)) in order.into_iter().enumerate() {
-            let within = (mixed(hash ^ 1) >> 11) as f64 + 0.5;
+        for (rank, ordered) in order.into_iter().enumerate() {
+            let scenario = (ordered & NUMBER) as usize;
+            let within = (mixed(hash(scenario) ^ 1) >> 11) as f64 + 0.5;
             let share = (rank as f64 + within / (1_u64 << 53) as f64) / BLOCK as f64;
             if let Some(out) = normals.get_mut(scenario) {
                 *out = normal_quantile(share);

@@ -4,6 +4,7 @@ pub mod course;
 pub mod errors;
 pub mod errors_reader;
 pub mod keyed;
+pub mod leg;
 pub mod odds;
 pub mod onset;
 pub mod question;

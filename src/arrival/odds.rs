@@ -330,7 +330,7 @@ impl<'a> Drawing<'a> {
         for index in 0..count {
             self.realise(index);
             for group in &self.groups {
-                let told = group.watch.follow(self.course, &mut self.scenario);
+                let told = group.watch.follow(self.course, &self.scenario);
                 for (question, onset) in group.questions.iter().zip(told) {
                     if let Some(onsets) = self.onsets.get_mut(*question) {
                         onsets.push(onset);
@@ -357,7 +357,7 @@ impl<'a> Drawing<'a> {
             for index in start..end {
                 self.realise(index);
                 for (group, questions) in &lacking {
-                    let told = group.watch.follow(self.course, &mut self.scenario);
+                    let told = group.watch.follow(self.course, &self.scenario);
                     for (question, onset) in group.questions.iter().zip(told) {
                         if let Some(onsets) = self.onsets.get_mut(*question)
                             && questions.contains(question)
@@ -397,7 +397,7 @@ impl<'a> Drawing<'a> {
         let mut singles = vec![ScenarioOnset::NEVER; self.onsets.len()];
         self.scenario.single_track(self.course);
         for group in &self.groups {
-            let told = group.watch.follow(self.course, &mut self.scenario);
+            let told = group.watch.follow(self.course, &self.scenario);
             for (question, onset) in group.questions.iter().zip(told) {
                 if let Some(single) = singles.get_mut(*question) {
                     *single = onset;

@@ -1,18 +1,19 @@
 //! When, in one scenario, a wind is first and last passed at a place.
 //!
-//! Between hourly states the storm moves straight and changes evenly. The wind is there while the distance
-//! from the centre is within the reach of the limit on the place's bearing (a calm eye does not end it). Each
-//! hour is tested at both ends and at the closest approach between, so that a storm that brushes a place for
-//! some minutes is not missed; the moment itself is found by root finding to within a second or two.
+//! The storm is looked at from stop to stop of its course, at both ends of each leg and at the closest approach between,
+//! so that a storm that brushes a place for some minutes is not missed; where it lies deepest in the storm and a wind is
+//! near that is not met, every hour is looked at. The moment itself is found to a second or so.
 
 use crate::arrival::course::Course;
+use crate::arrival::leg::{Leg, Sight};
 use crate::arrival::scenario::Scenario;
 use crate::time::moment::{Minutes, Moment};
 use crate::units::bearing::Bearing;
 use crate::units::speed::Knots;
-use crate::wind::field::{Hemisphere, INFLOW_DEGREES, Vortex, wind_from};
-use crate::wind::profile::{Limit, Profile};
-use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, bearing_degrees, distance_nmi, dot, plus};
+use crate::wind::field::{Hemisphere, INFLOW_DEGREES, wind_from};
+use crate::wind::profile::Limit;
+use crate::wind::sphere::Vector;
+use std::ops::Range;
 
 /// When the wind comes.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -62,8 +63,13 @@ impl ScenarioOnset {
 pub struct Watch {
     place: Vector,
     limits: Vec<Limit>,
+    /// Somewhat weaker winds than the limits: where they do not blow, the limits are not near.
+    nearly: Vec<Limit>,
     widening: f64,
 }
+
+/// A wind of this share of a limit tells that the limit is near. Our choice.
+const NEARLY: f64 = 0.9;
 
 impl Watch {
     /// A place with limits in kt, rising.
@@ -72,250 +78,189 @@ impl Watch {
         // Winds below 34 kt reach at most (34 / limit)^(1 / 0.4) times as far: 0.4 is the least outer exponent.
         let least = limits_kt.first().copied().unwrap_or(34.0).max(1.0);
         let widening = if least < 34.0 { libm::pow(34.0 / least, 2.5) } else { 1.0 };
+        let nearly = limits_kt.iter().map(|kt| Limit::new(kt * NEARLY)).collect();
         let limits = limits_kt.into_iter().map(Limit::new).collect();
-        Watch { place, limits, widening }
+        Watch { place, limits, nearly, widening }
     }
 
     /// One answer for each limit, in their order.
     #[must_use]
-    pub fn follow(&self, course: &Course, scenario: &mut Scenario) -> Vec<ScenarioOnset> {
-        let mut states = vec![State::default(); self.limits.len()];
-        let mut deepest = Deepest::default();
-        let mut before: Option<Sight> = None;
+    pub fn follow(&self, course: &Course, scenario: &Scenario) -> Vec<ScenarioOnset> {
+        let mut passage = Passage { states: vec![State::default(); self.limits.len()], deepest: None };
+        let mut before: Option<Passed> = None;
         let mut next = 0;
-        while next < course.end.max(1) {
-            let start = before.take();
-            let Some(mut hour) = self.next_hour(course, scenario, &mut next) else { continue };
-            if course.end == 0 {
-                // A forecast of a single moment: nothing after it belongs to the forecast.
-                hour.stand_still();
+        let last = course.stops.partition_point(|step| *step < course.end);
+        // A forecast of a single moment has one leg, from there to there: nothing after it belongs to it.
+        while next < last.max(1) {
+            let earlier = before.take();
+            let Some(leg) = self.next_leg(course, scenario, &mut next, last) else { continue };
+            let start = earlier.as_ref().map(|passed| passed.end);
+            let Some(start) = start.or_else(|| Some(self.seen(leg.look(leg.from)?, 0))) else { continue };
+            let Some(end) = leg.look(leg.to).map(|sight| self.seen(sight, start.met)) else { continue };
+            self.pass(&leg, [&start, &end], 0..self.limits.len(), &mut passage);
+            let passed = Passed { from: leg.from, start, end };
+            if let Some(earlier) = earlier.filter(|earlier| earlier.deepens() && !passed.deepens()) {
+                self.look_closely(course, scenario, [&earlier, &passed], &mut passage);
             }
-            let start = start.unwrap_or_else(|| self.seen(hour.look(0.0)));
-            let end = self.seen(hour.look(1.0));
-            before = Some(end);
-            self.pass(&hour, [start, end], &mut states, &mut deepest);
+            before = Some(passed);
         }
-        let reached = states.iter().filter(|state| state.is_reached()).count();
-        let all = reached == states.len();
+        let reached = passage.states.iter().filter(|state| state.onset.is_some()).count();
+        let all = reached == self.limits.len();
         let cut_off = if all { reached } else { self.still_coming(course, scenario).max(reached) };
-        states
-            .iter()
-            .enumerate()
-            .map(|(i, state)| state.told(course, &deepest, (reached..cut_off).contains(&i)))
-            .collect()
+        passage.told(course, reached..cut_off)
     }
 
-    /// The hour after step `next`, if any limit can be met in it; moves `next` on by that hour, or by all hours
-    /// in which none can.
-    fn next_hour<'a>(
+    /// The leg from stop number `next` on, to stop `last` at most, if any limit can be met on it; moves `next` on by
+    /// that leg, or by all in which none can.
+    fn next_leg<'a>(
         &self,
-        course: &Course,
-        scenario: &'a mut Scenario,
+        course: &'a Course,
+        scenario: &'a Scenario,
         next: &mut usize,
-    ) -> Option<Hour<'a>> {
-        let k = *next;
-        let out_of_reach = scenario.hours_out_of_reach(k, self.place, self.widening);
+        last: usize,
+    ) -> Option<Leg<'a>> {
+        let stop = *next;
+        let out_of_reach = scenario.stops_out_of_reach(stop, self.place, self.widening);
         *next += out_of_reach.max(1);
         if out_of_reach > 0 {
             return None;
         }
-        scenario.prepare(course, k);
-        let hour = Hour::new(course, scenario, k, self.place)?;
-        hour.may_reach(self.widening).then_some(hour)
+        let steps = [*course.stops.get(stop)?, *course.stops.get((stop + 1).min(last))?];
+        Leg::new(course, scenario, steps, self.place).filter(|leg| leg.may_reach(self.widening))
     }
 
-    fn seen(&self, mut sight: Sight) -> Sight {
-        sight.met = sight.count_met(&self.limits);
-        sight
+    /// A sight and the number of limits met there; `likely` is how many that is likely to be.
+    fn seen(&self, sight: Sight, likely: usize) -> Seen {
+        let (below, above) = self.limits.split_at_checked(likely).unwrap_or((&self.limits, &[]));
+        // They are nested: where one is met, every lower one is.
+        let fails = below.iter().rev().take_while(|limit| !sight.meets(limit)).count();
+        let more = if fails > 0 { 0 } else { above.iter().take_while(|limit| sight.meets(limit)).count() };
+        Seen { sight, met: below.len() - fails + more }
     }
 
-    /// One hour for all limits. They are nested: where a limit is met, every lower one is.
-    fn pass(&self, hour: &Hour<'_>, [start, end]: [Sight; 2], states: &mut [State], deepest: &mut Deepest) {
-        let closest = hour.closest();
-        if closest.is_none() && start.met == end.met && hour.k > 0 {
-            // Most hours: the wind neither comes nor goes.
+    /// One leg for the limits in `range`.
+    fn pass(&self, leg: &Leg<'_>, [start, end]: [&Seen; 2], range: Range<usize>, passage: &mut Passage) {
+        if leg.closest.is_none() && start.met == end.met && leg.from > 0.0 {
+            // Most legs: the wind neither comes nor goes.
             if end.met > 0 {
-                deepest.note(end);
+                passage.note(&end.sight);
             }
             return;
         }
-        let middle = closest.map(|s| self.seen(hour.look(s)));
-        let dips = middle.map_or(0, |sight| sight.met);
+        let touch = leg.closest.and_then(|t| Some((t, self.seen(leg.look(t)?, end.met))));
+        let dips = touch.as_ref().map_or(0, |(_, seen)| seen.met);
         let most = start.met.max(end.met).max(dips);
         if most == 0 {
             return;
         }
-        for sight in [Some(start), Some(end), middle].into_iter().flatten() {
-            deepest.note(sight);
+        for seen in [Some(start), Some(end), touch.as_ref().map(|(_, seen)| seen)].into_iter().flatten() {
+            passage.note(&seen.sight);
         }
-        for (i, (limit, state)) in self.limits.iter().zip(states.iter_mut()).take(most).enumerate() {
-            let (starts_in, ends_in) = (i < start.met, i < end.met);
-            if starts_in && hour.k == 0 {
-                state.onset = Some(Found { minute: None, bearing: start.bearing });
-            }
-            // The stretch over which the wind comes, and the one over which it goes.
-            let touch = closest.zip(middle).filter(|_| i < dips);
-            let edges = [(0.0, start), (1.0, end)];
-            let (comes, goes) = match (starts_in, ends_in) {
-                (true, true) => (None, None),
-                (false, true) => (Some([edges[0], touch.unwrap_or(edges[1])]), None),
-                (true, false) => (None, Some([touch.unwrap_or(edges[0]), edges[1]])),
-                (false, false) => (touch.map(|t| [edges[0], t]), touch.map(|t| [t, edges[1]])),
-            };
-            if let Some(stretch) = comes.filter(|_| !state.is_reached()) {
-                let s = hour.crossing(limit.kt, stretch);
-                state.onset = Some(Found { minute: Some(hour.minute(s)), bearing: hour.look(s).bearing });
-            }
-            if ends_in {
-                state.until = None;
-            } else if let Some(stretch) = goes {
-                state.until = Some(hour.minute(hour.crossing(limit.kt, stretch)));
-            }
+        let limits = self.limits.iter().zip(passage.states.iter_mut()).enumerate();
+        for (i, (limit, state)) in limits.take(most.min(range.end)).skip(range.start) {
+            let touch = touch.as_ref().filter(|_| i < dips).map(|(t, seen)| (*t, &seen.sight));
+            let ends = [(leg.from, &start.sight), (leg.to, &end.sight)];
+            state.pass(leg, limit, ends, [i < start.met, i < end.met], touch);
+        }
+    }
+
+    /// Where the place lies deepest in the storm, between the two legs, a wind that is nearly met may come and go
+    /// between the stops: for such limits every hour of both legs is looked at.
+    fn look_closely(
+        &self,
+        course: &Course,
+        scenario: &Scenario,
+        [earlier, later]: [&Passed; 2],
+        passage: &mut Passage,
+    ) {
+        let met = earlier.start.met.max(earlier.end.met).max(later.end.met);
+        let nearly = self.nearly.get(met..).unwrap_or_default();
+        let near = nearly.iter().take_while(|limit| later.start.sight.meets(limit)).count();
+        if near == 0 {
+            return;
+        }
+        let mut start = earlier.start;
+        let mut k = earlier.from as usize;
+        let steps = course.stops.iter().filter(|stop| **stop > k).nth(1).copied().unwrap_or(k);
+        while k < steps {
+            let Some(hour) = Leg::new(course, scenario, [k, k + 1], self.place) else { break };
+            let Some(end) = hour.look(hour.to).map(|sight| self.seen(sight, start.met)) else { break };
+            self.pass(&hour, [&start, &end], met..met + near, passage);
+            start = end;
+            k += 1;
         }
     }
 
     /// How many limits, the lowest first, would be met in the look-ahead beyond the forecast.
-    fn still_coming(&self, course: &Course, scenario: &mut Scenario) -> usize {
+    fn still_coming(&self, course: &Course, scenario: &Scenario) -> usize {
         let mut most = 0;
-        let mut next = course.end;
-        while next + 1 < course.steps.len() {
-            let Some(hour) = self.next_hour(course, scenario, &mut next) else { continue };
-            for s in [Some(1.0), hour.closest()].into_iter().flatten() {
-                most = most.max(self.seen(hour.look(s)).met);
-            }
-            if most == self.limits.len() {
-                break;
+        let mut next = course.stops.partition_point(|step| *step < course.end);
+        let last = course.stops.len().saturating_sub(1);
+        while next < last && most < self.limits.len() {
+            let Some(leg) = self.next_leg(course, scenario, &mut next, last) else { continue };
+            for sight in [Some(leg.to), leg.closest].into_iter().flatten().filter_map(|t| leg.look(t)) {
+                most = most.max(self.seen(sight, most).met);
             }
         }
         most
     }
 }
 
-/// What is seen from the centre towards the place.
+/// What is seen at some time, and how many of the limits are met.
 #[derive(Clone, Copy, Debug)]
-struct Sight {
-    distance: f64,
-    bearing: f64,
-    profile: Profile,
-    /// How many of the limits are met.
+struct Seen {
+    sight: Sight,
     met: usize,
 }
 
-impl Sight {
-    /// How many of the limits, which rise, are met here.
-    fn count_met(&self, limits: &[Limit]) -> usize {
-        limits.iter().take_while(|limit| self.profile.blows(limit, self.distance)).count()
-    }
+/// A leg that was passed.
+#[derive(Clone, Copy, Debug)]
+struct Passed {
+    from: f64,
+    start: Seen,
+    end: Seen,
+}
 
-    /// Distance less reach in n mi: negative while the wind is there.
-    fn gap(&self, limit_kt: f64) -> f64 {
-        let reach = self.profile.reach_nmi(limit_kt);
-        // A storm without that wind is as far away as its centre, and never touches.
-        if reach > 0.0 { self.distance - reach } else { self.distance.max(1.0) }
+impl Passed {
+    fn deepens(&self) -> bool {
+        self.end.sight.depth < self.start.sight.depth
     }
 }
 
-/// The stretch between two steps of a scenario, seen from a place.
-struct Hour<'a> {
-    k: usize,
-    place: Vector,
-    vortices: [&'a Vortex; 2],
-    minutes: [f64; 2],
-    /// Where on the way between the ends, drawn on beyond both, the centre is nearest; 0 if it stands still.
-    nearest: f64,
+/// All that was found on the way so far.
+#[derive(Clone, Debug)]
+struct Passage {
+    /// One for each limit.
+    states: Vec<State>,
+    /// Where the place lies deepest in the storm while any limit is met: there its wind is greatest.
+    deepest: Option<Sight>,
 }
 
-impl<'a> Hour<'a> {
-    fn new(course: &Course, scenario: &'a Scenario, k: usize, place: Vector) -> Option<Hour<'a>> {
-        let from = scenario.vortex(k)?;
-        let to = scenario.vortex(k + 1).unwrap_or(from);
-        let minute = |i: usize| course.steps.get(i).map(|step| step.minute);
-        let start = minute(k)?;
-        let moved = plus(to.centre, -1.0, from.centre);
-        let length2 = dot(moved, moved);
-        let nearest = if length2 > 0.0 { dot(plus(place, -1.0, from.centre), moved) / length2 } else { 0.0 };
-        let minutes = [start, minute(k + 1).unwrap_or(start)];
-        Some(Hour { k, place, vortices: [from, to], minutes, nearest })
-    }
-
-    fn stand_still(&mut self) {
-        self.vortices[1] = self.vortices[0];
-        self.minutes[1] = self.minutes[0];
-        self.nearest = 0.0;
-    }
-
-    /// Whether the centre comes as near as the furthest reach of its gales (times `widening`; at least that
-    /// of its core) at either end.
-    fn may_reach(&self, widening: f64) -> bool {
-        let [from, to] = self.vortices;
-        let s = self.nearest.clamp(0.0, 1.0);
-        let nearest = plus(from.centre, s, plus(to.centre, -1.0, from.centre));
-        let core = if widening > 1.0 { from.core_nmi.max(to.core_nmi) } else { 0.0 };
-        let [a, b] = [from, to].map(|vortex| vortex.widest_nmi.max(core));
-        // One n mi for the bend of the earth within the hour.
-        let reach = (a.max(b) * widening + 1.0) / EARTH_RADIUS_NMI;
-        let between = plus(self.place, -1.0, nearest);
-        dot(between, between) <= reach * reach
-    }
-
-    /// What is seen a share `s` of the way from one end to the other; the centre goes along the chord.
-    fn look(&self, s: f64) -> Sight {
-        let [from, to] = self.vortices;
-        if s <= 0.0 || s >= 1.0 {
-            let vortex = if s <= 0.0 { from } else { to };
-            let bearing = bearing_degrees(vortex.centre, self.place);
-            let distance = distance_nmi(vortex.centre, self.place);
-            return Sight { distance, bearing, profile: vortex.profile(bearing), met: 0 };
+impl Passage {
+    fn note(&mut self, sight: &Sight) {
+        if self.deepest.is_none_or(|deepest| sight.depth < deepest.depth) {
+            self.deepest = Some(*sight);
         }
-        let centre = plus(from.centre, s, plus(to.centre, -1.0, from.centre));
-        let bearing = bearing_degrees(centre, self.place);
-        let profile = from.profile(bearing).towards(&to.profile(bearing), s);
-        Sight { distance: distance_nmi(centre, self.place), bearing, profile, met: 0 }
     }
 
-    /// Where between the ends the centre is nearest to the place, if between them.
-    fn closest(&self) -> Option<f64> {
-        Some(self.nearest).filter(|s| *s > 0.0 && *s < 1.0)
+    /// The answers; the limits in `cut_off` would be met in the look-ahead only.
+    fn told(&self, course: &Course, cut_off: Range<usize>) -> Vec<ScenarioOnset> {
+        let peak = self.deepest.map_or(0.0, |sight| sight.profile.speed_kt(sight.distance));
+        let peak = Knots::clamped(peak);
+        let has_lull = self.deepest.is_some_and(|sight| sight.distance < sight.profile.core_nmi / 2.0);
+        let told = |(i, state): (usize, &State)| match state.told(course) {
+            Some(told) => ScenarioOnset { peak, has_lull, ..told },
+            None => ScenarioOnset { is_cut_off: cut_off.contains(&i), ..ScenarioOnset::NEVER },
+        };
+        self.states.iter().enumerate().map(told).collect()
     }
+}
 
-    fn minute(&self, s: f64) -> f64 {
-        self.minutes[0] + (self.minutes[1] - self.minutes[0]) * s
-    }
-
-    /// Where in the stretch the place passes the limit's edge: regula falsi, halving the value at an end that
-    /// stays twice (the Illinois method, Dowell & Jarratt 1971, BIT 11:168-174), until the slope says that it is
-    /// found to a second. Then a second outwards: an onset is never late, an end never early.
-    fn crossing(
-        &self,
-        limit_kt: f64,
-        [(mut low, low_sight), (mut high, high_sight)]: [(f64, Sight); 2],
-    ) -> f64 {
-        const SECOND: f64 = 1.0 / 3600.0;
-        let (mut at_low, mut at_high) = (low_sight.gap(limit_kt), high_sight.gap(limit_kt));
-        let comes = at_low > 0.0;
-        let slope = ((at_high - at_low) / (high - low)).abs();
-        let mut low_moved = None;
-        let mut cut = if comes { low } else { high };
-        for _ in 0..40 {
-            let next = low + (high - low) * at_low / (at_low - at_high);
-            cut = if next.is_finite() { next.clamp(low, high) } else { f64::midpoint(low, high) };
-            let value = self.look(cut).gap(limit_kt);
-            if value.abs() <= slope * SECOND || high - low < SECOND {
-                break;
-            }
-            let moves_low = (value > 0.0) == comes;
-            let again = low_moved == Some(moves_low);
-            low_moved = Some(moves_low);
-            if moves_low {
-                (low, at_low) = (cut, value);
-                at_high /= if again { 2.0 } else { 1.0 };
-            } else {
-                (high, at_high) = (cut, value);
-                at_low /= if again { 2.0 } else { 1.0 };
-            }
-        }
-        if comes { (cut - SECOND).max(0.0) } else { (cut + SECOND).min(1.0) }
-    }
+/// When one limit is first and last passed.
+#[derive(Clone, Copy, Debug, Default)]
+struct State {
+    onset: Option<Found>,
+    until: Option<f64>,
 }
 
 #[derive(Clone, Copy, Debug)]
@@ -325,59 +270,55 @@ struct Found {
     bearing: f64,
 }
 
-#[derive(Clone, Copy, Debug, Default)]
-struct State {
-    onset: Option<Found>,
-    until: Option<f64>,
-}
-
 impl State {
-    fn is_reached(&self) -> bool {
-        self.onset.is_some()
+    /// Takes in one leg, of which the limit is met at the start, at the end (`met`), or at the closest approach
+    /// between (`touch`).
+    fn pass(
+        &mut self,
+        leg: &Leg<'_>,
+        limit: &Limit,
+        [start, end]: [(f64, &Sight); 2],
+        met: [bool; 2],
+        touch: Option<(f64, &Sight)>,
+    ) {
+        if met[0] && leg.from <= 0.0 {
+            self.onset = Some(Found { minute: None, bearing: start.1.bearing });
+        }
+        // The stretch over which the wind comes, and the one over which it goes.
+        let (comes, goes) = match met {
+            [true, true] => (None, None),
+            [false, true] => (Some([start, touch.unwrap_or(end)]), None),
+            [true, false] => (None, Some([touch.unwrap_or(start), end])),
+            [false, false] => (touch.map(|touch| [start, touch]), touch.map(|touch| [touch, end])),
+        };
+        if let Some(stretch) = comes.filter(|_| self.onset.is_none()) {
+            let (t, bearing) = leg.crossing(limit, stretch);
+            self.onset = Some(Found { minute: Some(leg.minute(t)), bearing });
+        }
+        if met[1] {
+            self.until = None;
+        } else if let Some(stretch) = goes {
+            self.until = Some(leg.minute(leg.crossing(limit, stretch).0));
+        }
     }
 
-    fn told(&self, course: &Course, deepest: &Deepest, is_cut_off: bool) -> ScenarioOnset {
-        let Some(found) = self.onset else { return ScenarioOnset { is_cut_off, ..ScenarioOnset::NEVER } };
+    /// The answer, of which the peak is still to be told; `None` if the wind never comes.
+    fn told(&self, course: &Course) -> Option<ScenarioOnset> {
+        let found = self.onset?;
         let after = |minutes: f64| course.issued + Minutes::new(minutes as i64);
         let northern = wind_from(Bearing::wrapped(found.bearing), Hemisphere::Northern, INFLOW_DEGREES);
-        ScenarioOnset {
+        Some(ScenarioOnset {
             // To the minute, rounded down, a wind that comes within the first minute blows at issue.
             onset: match found.minute {
                 Some(minute) if minute >= 1.0 => Onset::At(after(f64::floor(minute))),
                 Some(_) | None => Onset::Already,
             },
             until: self.until.map(|minute| after(f64::ceil(minute))),
-            peak: deepest.peak(),
             from: match course.hemisphere {
                 Hemisphere::Northern => northern,
                 Hemisphere::Southern => Bearing::wrapped(180.0 - northern.get()),
             },
-            has_lull: deepest.has_lull(),
-            is_cut_off: false,
-        }
-    }
-}
-
-/// Where in its passage the place lies deepest in the storm: there its wind is greatest.
-#[derive(Clone, Copy, Debug, Default)]
-struct Deepest {
-    at: Option<(f64, Sight)>,
-}
-
-impl Deepest {
-    fn note(&mut self, sight: Sight) {
-        // How deep, as the share of the gale radius (or the core's) at which the place lies.
-        let depth = sight.distance / sight.profile.reach_nmi[0].max(sight.profile.core_nmi);
-        if self.at.is_none_or(|(least, _)| depth < least) {
-            self.at = Some((depth, sight));
-        }
-    }
-
-    fn peak(&self) -> Knots {
-        self.at.map_or(Knots::ZERO, |(_, sight)| Knots::clamped(sight.profile.speed_kt(sight.distance)))
-    }
-
-    fn has_lull(&self) -> bool {
-        self.at.is_some_and(|(_, sight)| sight.distance < sight.profile.core_nmi / 2.0)
+            ..ScenarioOnset::NEVER
+        })
     }
 }

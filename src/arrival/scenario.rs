@@ -4,10 +4,11 @@
 //! with e from the standard normal distribution, for each of along, cross, intensity and size; an error is
 //! deviation x z + bias.
 
-use crate::arrival::course::{Course, Step};
+use crate::arrival::course::{Course, Step, Storm};
 use crate::arrival::keyed::{BLOCK, Component, Keyed};
 use crate::wind::field::Vortex;
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, displaced, dot, plus};
+use std::cell::OnceCell;
 
 /// The innovations of one block of scenarios: for each node and component, one number for each scenario.
 #[derive(Clone, Debug)]
@@ -45,127 +46,121 @@ impl Draws {
     }
 }
 
-/// One step of a scenario: how the storm is to be there.
+/// How a storm is to be at one step.
 #[derive(Clone, Copy, Debug)]
 struct State {
     centre: Vector,
     wind_kt: f64,
-    /// Natural logarithm of the size error.
-    log_size: f64,
-    /// Square of the way to the next centre, in radians.
-    way2: f64,
-    /// Square of the chord beyond which a place cannot meet 34 kt within the hour that follows.
+    /// The size error as a factor.
+    size: f64,
+}
+
+impl State {
+    fn of(step: &Step, storm: &Storm, [along, cross, intensity, size]: [f64; 4]) -> State {
+        State {
+            centre: displaced(step.centre, step.along, step.cross, along, cross),
+            wind_kt: (storm.table.expected.wind_kt + intensity).clamp(0.0, 250.0),
+            size: libm::exp(size),
+        }
+    }
+}
+
+/// The storm at one stop of the course.
+#[derive(Clone, Copy, Debug)]
+struct Stop {
+    centre: Vector,
+    /// A bound of the reach of 34 kt, in radians.
+    bound: f64,
+    /// Square of the chord beyond which a place cannot meet 34 kt on the way to the next stop.
     far2: f64,
 }
 
-/// A realised storm at each step of a course. One value is refilled for every scenario.
+/// A realised storm at each step of a course. One value is refilled for every scenario; what lies between stops is
+/// only worked out where it is looked at.
 #[derive(Clone, Debug, Default)]
 pub struct Scenario {
+    /// Standard errors at the nodes; none for the forecast's own track.
     errors: Vec<[f64; 4]>,
-    states: Vec<State>,
-    /// The greatest bound of the reach of 34 kt, and the longest way of the centre in an hour, in radians.
+    stops: Vec<Stop>,
+    /// The greatest bound of the reach of 34 kt, and the longest way from stop to stop, in radians.
     widest: f64,
     fastest: f64,
-    vortices: Vec<Option<Vortex>>,
+    vortices: Vec<OnceCell<Vortex>>,
 }
 
 impl Scenario {
     /// Fills in the scenario `index`.
     pub fn draw(&mut self, course: &Course, draws: &Draws, index: usize) {
-        let mut errors = std::mem::take(&mut self.errors);
-        draws.standard_errors(course, index, &mut errors);
-        self.fill(course, |step, node| {
-            let z = |node: usize| errors.get(node).copied().unwrap_or_default();
-            let (now, next) = (z(node), z(node + 1));
-            std::array::from_fn(|i| step.from_node[i] * now[i] + step.from_next[i] * next[i] + step.bias[i])
-        });
-        self.errors = errors;
+        draws.standard_errors(course, index, &mut self.errors);
+        self.fill(course);
     }
 
     /// Fills in the forecast itself, without any error.
     pub fn single_track(&mut self, course: &Course) {
-        self.fill(course, |_, _| [0.0; 4]);
+        self.errors.clear();
+        self.fill(course);
     }
 
-    fn fill(&mut self, course: &Course, error: impl Fn(&Step, usize) -> [f64; 4]) {
-        self.states.clear();
-        for stretch in &course.stretches {
-            let range = stretch.first..stretch.end;
-            let (Some(steps), Some(storms)) = (course.steps.get(range.clone()), course.storms.get(range))
-            else {
-                continue;
-            };
-            for (step, storm) in steps.iter().zip(storms) {
-                let [along, cross, intensity, size] = error(step, stretch.node);
-                let centre = displaced(step.centre, step.along, step.cross, along, cross);
-                if let Some(last) = self.states.last_mut() {
-                    let moved = plus(centre, -1.0, last.centre);
-                    last.way2 = dot(moved, moved);
-                }
-                let wind_kt = (storm.expected.wind_kt + intensity).clamp(0.0, 250.0);
-                self.states.push(State { centre, wind_kt, log_size: size, way2: 0.0, far2: 0.0 });
-            }
+    /// The errors along, across, in intensity and size at a step.
+    fn error(&self, step: &Step) -> [f64; 4] {
+        match (self.errors.get(step.node), self.errors.get(step.node + 1)) {
+            (Some(now), Some(next)) => std::array::from_fn(|i| {
+                step.from_node[i] * now[i] + step.from_next[i] * next[i] + step.bias[i]
+            }),
+            _ => [0.0; 4],
         }
-        self.bound(course);
-        self.vortices.clear();
-        self.vortices.resize(course.steps.len(), None);
     }
 
-    /// How near the storm must come to a place, with one bound for all steps of a stretch.
-    fn bound(&mut self, course: &Course) {
+    fn state<'a>(&self, course: &'a Course, k: usize) -> Option<(State, &'a Storm)> {
+        let (step, storm) = (course.steps.get(k)?, course.storms.get(k)?);
+        Some((State::of(step, storm, self.error(step)), storm))
+    }
+
+    fn fill(&mut self, course: &Course) {
+        self.vortices.clear();
+        self.vortices.resize_with(course.steps.len(), OnceCell::new);
+        self.stops.clear();
         self.widest = 0.0;
         // Never nothing: a storm that stands still is looked at again after a day or so.
         self.fastest = 1.0 / EARTH_RADIUS_NMI;
-        for stretch in &course.stretches {
-            let (mut wind_kt, mut log_size, mut way2) = (0.0, f64::MIN, 0.0);
-            // The last hour ends with the first step of the next stretch.
-            for state in self.states.iter().take(stretch.end + 1).skip(stretch.first) {
-                wind_kt = f64::max(wind_kt, state.wind_kt);
-                log_size = f64::max(log_size, state.log_size);
-                way2 = f64::max(way2, state.way2);
-            }
-            let bound = libm::exp(log_size) * stretch.bound_nmi(wind_kt) / EARTH_RADIUS_NMI;
-            let way = f64::sqrt(way2);
+        for k in &course.stops {
+            let Some((state, storm)) = self.state(course, *k) else { continue };
+            let bound = state.size * storm.bound_nmi(state.wind_kt) / EARTH_RADIUS_NMI;
             self.widest = self.widest.max(bound);
-            self.fastest = self.fastest.max(way);
-            for state in self.states.iter_mut().take(stretch.end).skip(stretch.first) {
-                state.far2 = (bound + way) * (bound + way);
+            if let Some(last) = self.stops.last_mut() {
+                let moved = plus(state.centre, -1.0, last.centre);
+                let way = f64::sqrt(dot(moved, moved));
+                self.fastest = self.fastest.max(way);
+                let far = bound.max(last.bound) + way;
+                last.far2 = far * far;
             }
+            self.stops.push(Stop { centre: state.centre, bound, far2: bound * bound });
         }
     }
 
-    /// For how many hours from step `k` on no wind can reach `place`, when it reaches at most `widening` times as
-    /// far as 34 kt; 0 if it may in the hour after `k`.
+    /// For how many stops from number `stop` on no wind can reach `place`, when it reaches at most `widening` times
+    /// as far as 34 kt; 0 if it may on the way to the next.
     #[must_use]
-    pub fn hours_out_of_reach(&self, k: usize, place: Vector, widening: f64) -> usize {
-        let Some(state) = self.states.get(k) else { return 1 };
-        let between = plus(place, -1.0, state.centre);
+    pub fn stops_out_of_reach(&self, stop: usize, place: Vector, widening: f64) -> usize {
+        let Some(stop) = self.stops.get(stop) else { return 1 };
+        let between = plus(place, -1.0, stop.centre);
         let distance2 = dot(between, between);
-        if distance2 <= state.far2 * widening * widening {
+        if distance2 <= stop.far2 * widening * widening {
             return 0;
         }
         // However it goes on, the storm needs this long to come near enough.
-        let hours = (f64::sqrt(distance2) - self.widest * widening) / self.fastest;
-        (hours as usize).max(1)
+        let stops = (f64::sqrt(distance2) - self.widest * widening) / self.fastest;
+        (stops as usize).max(1)
     }
 
-    /// Makes sure that the realised storms at step `k` and at the next are there; they are made when first
-    /// needed.
-    pub fn prepare(&mut self, course: &Course, k: usize) {
-        for at in [k, k + 1] {
-            if let (Some(kept), Some(state), Some(storm)) =
-                (self.vortices.get_mut(at), self.states.get(at), course.storms.get(at))
-                && kept.is_none()
-            {
-                let size = libm::exp(state.log_size);
-                *kept = Some(Vortex::realised(storm, state.centre, state.wind_kt, size));
-            }
-        }
-    }
-
-    /// The realised storm at step `k`; `None` if it was not prepared.
+    /// The realised storm at step `k`; `None` beyond the last step.
     #[must_use]
-    pub fn vortex(&self, k: usize) -> Option<&Vortex> {
-        self.vortices.get(k)?.as_ref()
+    pub fn vortex(&self, course: &Course, k: usize) -> Option<&Vortex> {
+        let kept = self.vortices.get(k)?;
+        if let Some(vortex) = kept.get() {
+            return Some(vortex);
+        }
+        let (state, storm) = self.state(course, k)?;
+        Some(kept.get_or_init(|| Vortex::realised(&storm.table, state.centre, state.wind_kt, state.size)))
     }
 }

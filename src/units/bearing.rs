@@ -28,6 +28,9 @@ impl Bearing {
     /// ```
     #[must_use]
     pub fn wrapped(degrees: f64) -> Bearing {
+        if (0.0..360.0).contains(&degrees) {
+            return Bearing(degrees);
+        }
         if !degrees.is_finite() {
             return Bearing(0.0);
         }

@@ -114,41 +114,51 @@ impl Profile {
         }
     }
 
-    /// How far a wind of `speed_kt` or more reaches on this bearing in n mi; zero if it does not blow. The
-    /// calm of the eye is not cut out.
+    /// How far a wind of the limit or more reaches on this bearing in n mi; zero if it does not blow. The calm of
+    /// the eye is not cut out.
     #[must_use]
-    pub fn reach_nmi(&self, speed_kt: f64) -> f64 {
-        if self.max_wind_kt < speed_kt {
+    pub fn reach_nmi(&self, limit: &Limit) -> f64 {
+        if self.max_wind_kt < limit.kt {
             return 0.0;
         }
         let [gale, storm, hurricane] = self.reach_nmi;
-        if speed_kt < 34.0 {
-            let (radius, speed) = self.outer_start();
-            return radius * libm::exp(libm::log(speed / speed_kt) / self.outer_exponent());
+        if limit.kt < 34.0 {
+            return self.outer_reach(limit);
         }
-        let between = |r1: f64, v1: f64, r2: f64, v2: f64| {
+        let between = |r1: f64, v1: f64, r2: f64| {
             if r1 <= 0.0 {
                 0.0
             } else if r2 > 0.0 {
                 // ln R is linear in ln v between the two given winds.
-                r1 * libm::exp(libm::log(r2 / r1) * (libm::log(speed_kt / v1) / libm::log(v2 / v1)))
+                r1 * libm::exp(libm::log(r2 / r1) * limit.share)
             } else {
-                self.inner_reach(r1, v1, speed_kt)
+                self.inner_reach(r1, v1, limit.kt)
             }
         };
-        if speed_kt <= 34.0 {
+        if limit.kt <= 34.0 {
             gale
-        } else if speed_kt < 50.0 {
-            between(gale, 34.0, storm, 50.0)
-        } else if speed_kt <= 50.0 {
+        } else if limit.kt < 50.0 {
+            between(gale, 34.0, storm)
+        } else if limit.kt <= 50.0 {
             storm
-        } else if speed_kt < 64.0 {
-            between(storm, 50.0, hurricane, 64.0)
+        } else if limit.kt < 64.0 {
+            between(storm, 50.0, hurricane)
         } else if hurricane > 0.0 {
-            self.inner_reach(hurricane, 64.0, speed_kt)
+            self.inner_reach(hurricane, 64.0, limit.kt)
         } else {
             0.0
         }
+    }
+
+    /// R = R1 (v1 / v)^(1/x) outside the gales.
+    fn outer_reach(&self, limit: &Limit) -> f64 {
+        let (radius, speed) = self.outer_start();
+        let log_beyond = match self.outer_ratio() {
+            // 1/x = ln(gale / storm) / ln(50 / 34), of which the limit knows the divisor.
+            Some(ratio) if speed >= 34.0 => -limit.share * libm::log(ratio),
+            _ => libm::log(speed / limit.kt) / self.outer_exponent(),
+        };
+        radius * libm::exp(log_beyond)
     }
 
     /// The wind in kt at `r_nmi` from the centre on this bearing; the calm of the eye is not cut out.
@@ -214,17 +224,16 @@ impl Profile {
 
     /// The same outside the gales.
     fn blows_outside(&self, limit: &Limit, r_nmi: f64) -> bool {
-        let [gale, storm, _] = self.reach_nmi;
         let (radius, speed) = self.outer_start();
         if limit.kt > 34.0 - JUST_BELOW_KT {
-            false
-        } else if r_nmi <= radius {
-            true
-        } else if speed < 34.0 || storm <= 0.0 || gale <= storm {
-            self.speed_kt(r_nmi) >= limit.kt
-        } else {
-            let ratio = (gale / storm).clamp(STEEPEST_RATIO, FLATTEST_RATIO);
-            log_is_within(r_nmi / radius, -limit.share, ratio)
+            return false;
+        }
+        if r_nmi <= radius {
+            return true;
+        }
+        match self.outer_ratio() {
+            Some(ratio) if speed >= 34.0 => log_is_within(r_nmi / radius, -limit.share, ratio),
+            _ => self.speed_kt(r_nmi) >= limit.kt,
         }
     }
 
@@ -250,14 +259,17 @@ impl Profile {
     /// The last exponent known, within its bounds: between the 34- and 50-kt radii where both are there, else
     /// the mean vortex's.
     fn outer_exponent(&self) -> f64 {
+        match self.outer_ratio() {
+            Some(ratio) => LOG_50_OVER_34 / libm::log(ratio),
+            None => self.exponent.clamp(OUTER_EXPONENT.0, OUTER_EXPONENT.1),
+        }
+    }
+
+    /// The gale radius over the storm radius, held where the exponent between them is within its bounds; `None`
+    /// if they are not both there.
+    fn outer_ratio(&self) -> Option<f64> {
         let [gale, storm, _] = self.reach_nmi;
-        let last = if storm > 0.0 && gale > storm {
-            // The exponent between the two given winds; ln(50 / 34) is written out, as this is the inner loop.
-            LOG_50_OVER_34 / libm::log(gale / storm)
-        } else {
-            self.exponent
-        };
-        last.clamp(OUTER_EXPONENT.0, OUTER_EXPONENT.1)
+        (storm > 0.0 && gale > storm).then(|| (gale / storm).clamp(STEEPEST_RATIO, FLATTEST_RATIO))
     }
 }
 
@@ -279,7 +291,7 @@ mod tests {
         let profile =
             Profile { max_wind_kt: 55.0, reach_nmi: [120.0, 60.0, 0.0], exponent: 0.5, core_nmi: 30.0 };
         assert_abs_diff_eq!(profile.speed_kt(90.0), 39.90, epsilon = 5e-3);
-        assert_abs_diff_eq!(profile.reach_nmi(40.0), 89.60, epsilon = 5e-3);
+        assert_abs_diff_eq!(profile.reach_nmi(&Limit::new(40.0)), 89.60, epsilon = 5e-3);
     }
 
     #[test]
@@ -323,7 +335,7 @@ mod tests {
                 let wind = profile.speed_kt(r);
                 prop_assert!((wind - speed).abs() < 1e-9 || profile.blows(&Limit::new(speed), r) == (wind >= speed));
             }
-            let limit = profile.reach_nmi(speed);
+            let limit = profile.reach_nmi(&Limit::new(speed));
             if limit > 0.1 {
                 prop_assert!(profile.speed_kt(limit * 0.999) >= speed - 0.11, "inside");
             }
