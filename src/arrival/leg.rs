@@ -54,6 +54,11 @@ pub struct Leg<'a> {
     pub to: f64,
     /// Square of the chord between centre and place at the nearer end.
     nearer2: f64,
+    /// The furthest reach of gales and of the core at either end in n mi.
+    widest_nmi: f64,
+    core_nmi: f64,
+    /// The way of the centre in n mi.
+    way_nmi: f64,
     /// When the centre is nearest to the place, if between the ends.
     pub closest: Option<f64>,
 }
@@ -67,12 +72,21 @@ impl<'a> Leg<'a> {
         [first, last]: [usize; 2],
         place: Vector,
     ) -> Option<Leg<'a>> {
-        let (start, end) = (scenario.vortex(course, first)?.centre, scenario.vortex(course, last)?.centre);
-        let (to_start, to_end, moved) =
-            (plus(place, -1.0, start), plus(place, -1.0, end), plus(end, -1.0, start));
-        let nearer2 = f64::min(dot(to_start, to_start), dot(to_end, to_end));
-        let mut leg =
-            Leg { course, scenario, place, from: first as f64, to: last as f64, nearer2, closest: None };
+        let (start, end) = (scenario.vortex(course, first)?, scenario.vortex(course, last)?);
+        let (to_start, to_end) = (plus(place, -1.0, start.centre), plus(place, -1.0, end.centre));
+        let moved = plus(end.centre, -1.0, start.centre);
+        let mut leg = Leg {
+            course,
+            scenario,
+            place,
+            from: first as f64,
+            to: last as f64,
+            nearer2: f64::min(dot(to_start, to_start), dot(to_end, to_end)),
+            widest_nmi: start.widest_nmi.max(end.widest_nmi),
+            core_nmi: start.core_nmi.max(end.core_nmi),
+            way_nmi: f64::sqrt(dot(moved, moved)) * EARTH_RADIUS_NMI,
+            closest: None,
+        };
         // Only a storm that draws near at first and draws away at last is nearest in between.
         if dot(to_start, moved) > 0.0 && dot(to_end, moved) < 0.0 {
             leg.closest = leg.nearest(first, last).filter(|t| *t > leg.from && *t < leg.to);
@@ -103,13 +117,9 @@ impl<'a> Leg<'a> {
     /// that of its core) at either end, or is nearest in between.
     #[must_use]
     pub fn may_reach(&self, widening: f64) -> bool {
-        let reach = |t: f64| {
-            self.scenario.vortex(self.course, t as usize).map_or(0.0, |vortex| {
-                vortex.widest_nmi.max(if widening > 1.0 { vortex.core_nmi } else { 0.0 })
-            })
-        };
+        let furthest = if widening > 1.0 { self.widest_nmi.max(self.core_nmi) } else { self.widest_nmi };
         // One n mi for the bend of the earth.
-        let reach = (f64::max(reach(self.from), reach(self.to)) * widening + 1.0) / EARTH_RADIUS_NMI;
+        let reach = (furthest * widening + 1.0) / EARTH_RADIUS_NMI;
         self.closest.is_some() || self.nearer2 <= reach * reach
     }
 
@@ -142,37 +152,28 @@ impl<'a> Leg<'a> {
 
     /// When in a stretch the place passes the limit's edge, and the bearing then.
     ///
-    /// Regula falsi, halving the value at an end that stays twice (the Illinois method, Dowell & Jarratt 1971, BIT
-    /// 11:168-174), until the slope says that it is found to some seconds; the straight line through the last two
-    /// values leaves less than one. Then a second outwards: an onset is never late, an end never early.
+    /// Starts from where it would be if the centre went straight and the reach changed evenly all the way. Then regula
+    /// falsi, halving the value at an end that stays twice (the Illinois method, Dowell & Jarratt 1971, BIT
+    /// 11:168-174), until the slope says that it is found to some seconds, of which a last step along the slope leaves
+    /// less than one. Then a second outwards: an onset is never late, an end never early.
     #[must_use]
-    pub fn crossing(
-        &self,
-        limit: &Limit,
-        [(mut low, low_sight), (mut high, high_sight)]: [(f64, &Sight); 2],
-    ) -> (f64, f64) {
+    pub fn crossing(&self, limit: &Limit, [start, end]: [(f64, &Sight); 2]) -> (f64, f64) {
         const SECOND: f64 = 1.0 / 3600.0;
-        const SOME_SECONDS: f64 = 15.0 * SECOND;
-        let (mut at_low, mut at_high) = (low_sight.gap(limit), high_sight.gap(limit));
+        const SOME_SECONDS: f64 = 20.0 * SECOND;
+        let (mut low, mut high) = (start.0, end.0);
+        let (mut at_low, mut at_high) = (start.1.gap(limit), end.1.gap(limit));
         let comes = at_low > 0.0;
-        let slope = ((at_high - at_low) / (high - low)).abs();
+        let (guess, slope) = self.straight_crossing([start, end], [at_low, at_high]);
         let mut low_moved = None;
-        let mut last = if comes { (low, at_low) } else { (high, at_high) };
-        let (mut cut, mut bearing) = (last.0, if comes { low_sight.bearing } else { high_sight.bearing });
+        let (mut cut, mut bearing) = (guess, start.1.bearing);
         for _ in 0..40 {
-            let next = low + (high - low) * at_low / (at_low - at_high);
-            cut = if next.is_finite() { next.clamp(low, high) } else { f64::midpoint(low, high) };
             let Some(sight) = self.look(cut) else { break };
             let value = sight.gap(limit);
             bearing = sight.bearing;
-            if value.abs() <= slope * SOME_SECONDS || high - low < SECOND {
-                let step = value * (cut - last.0) / (value - last.1);
-                if step.abs() <= 2.0 * SOME_SECONDS {
-                    cut -= step;
-                }
+            if value.abs() <= slope.abs() * SOME_SECONDS || high - low < SECOND {
+                cut = (cut - (value / slope).clamp(-SOME_SECONDS, SOME_SECONDS)).clamp(low, high);
                 break;
             }
-            last = (cut, value);
             let moves_low = (value > 0.0) == comes;
             let again = low_moved == Some(moves_low);
             low_moved = Some(moves_low);
@@ -183,8 +184,29 @@ impl<'a> Leg<'a> {
                 (high, at_high) = (cut, value);
                 at_low /= if again { 2.0 } else { 1.0 };
             }
+            let next = low + (high - low) * at_low / (at_low - at_high);
+            cut = if next.is_finite() { next.clamp(low, high) } else { f64::midpoint(low, high) };
         }
         let outwards = if comes { (cut - SECOND).max(self.from) } else { (cut + SECOND).min(self.to) };
         (outwards, bearing)
+    }
+
+    /// When the gap between two sights would close if the centre went straight and the reach changed evenly, and the
+    /// gap's slope there in n mi a step.
+    ///
+    /// At a share u of the way L between, d(u)^2 = (1 - u) d0^2 + u d1^2 - u (1 - u) L^2 (Stewart's theorem) is to be
+    /// R(u)^2 = (R0 + u (R1 - R0))^2: a u^2 + b u + c = 0, with a root between 0 and 1 as the signs differ there.
+    fn straight_crossing(&self, [start, end]: [(f64, &Sight); 2], gaps: [f64; 2]) -> (f64, f64) {
+        let [(low, d0), (high, d1)] = [(start.0, start.1.distance), (end.0, end.1.distance)];
+        let (r0, r1) = (d0 - gaps[0], d1 - gaps[1]);
+        let way = self.way_nmi * (high - low) / (self.to - self.from);
+        let a = way * way - (r1 - r0) * (r1 - r0);
+        let b = d1 * d1 - d0 * d0 - way * way - 2.0 * r0 * (r1 - r0);
+        let c = d0 * d0 - r0 * r0;
+        let root = f64::sqrt((b * b - 4.0 * a * c).max(0.0));
+        let q = -0.5 * (b + if b < 0.0 { -root } else { root });
+        let share = [c / q, q / a].into_iter().find(|u| (0.0..=1.0).contains(u)).unwrap_or(0.5);
+        let slope = (2.0 * a * share + b) / (2.0 * (d0 - gaps[0] + share * (r1 - r0))).max(1.0);
+        (low + (high - low) * share, slope / (high - low))
     }
 }

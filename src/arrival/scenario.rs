@@ -139,18 +139,24 @@ impl Scenario {
     }
 
     /// For how many stops from number `stop` on no wind can reach `place`, when it reaches at most `widening` times
-    /// as far as 34 kt; 0 if it may on the way to the next.
+    /// as far as 34 kt; 0 if it may there, at the next stop or on the way.
     #[must_use]
     pub fn stops_out_of_reach(&self, stop: usize, place: Vector, widening: f64) -> usize {
-        let Some(stop) = self.stops.get(stop) else { return 1 };
-        let between = plus(place, -1.0, stop.centre);
-        let distance2 = dot(between, between);
-        if distance2 <= stop.far2 * widening * widening {
-            return 0;
+        let Some(here) = self.stops.get(stop) else { return 1 };
+        let from_here = plus(place, -1.0, here.centre);
+        let distance2 = dot(from_here, from_here);
+        if distance2 > here.far2 * widening * widening {
+            // However it goes on, the storm needs this long to come near enough.
+            let stops = (f64::sqrt(distance2) - self.widest * widening) / self.fastest;
+            return (stops as usize).max(1);
         }
-        // However it goes on, the storm needs this long to come near enough.
-        let stops = (f64::sqrt(distance2) - self.widest * widening) / self.fastest;
-        (stops as usize).max(1)
+        let Some(next) = self.stops.get(stop + 1) else { return 0 };
+        let from_next = plus(place, -1.0, next.centre);
+        let reach = here.bound.max(next.bound) * widening;
+        let nearer2 = distance2.min(dot(from_next, from_next));
+        let moved = plus(next.centre, -1.0, here.centre);
+        let passes = dot(from_here, moved) > 0.0 && dot(from_next, moved) < 0.0;
+        usize::from(nearer2 > reach * reach && !passes)
     }
 
     /// The realised storm at step `k`; `None` beyond the last step.

@@ -69,8 +69,6 @@ impl Vortex {
     #[must_use]
     pub fn realised(table: &ReachTable, centre: Vector, wind_kt: f64, size: f64) -> Vortex {
         let expected = &table.expected;
-        let mean = expected.ratios[0].iter().sum::<f64>() / 4.0;
-        let mean = if mean > 0.0 { mean } else { 1.0 };
         let reach_nmi = table.reach(wind_kt, size);
         Vortex {
             centre,
@@ -78,7 +76,9 @@ impl Vortex {
             reach_nmi,
             widest_nmi: reach_nmi[0].into_iter().fold(0.0, f64::max),
             exponent: rankine_exponent(wind_kt, expected.latitude).max(LEAST_EXPONENT),
-            core_nmi: mean * size * radius_of_greatest_wind_nmi(wind_kt, expected.latitude),
+            core_nmi: expected.mean_gale_ratio
+                * size
+                * radius_of_greatest_wind_nmi(wind_kt, expected.latitude),
         }
     }
 

@@ -109,6 +109,10 @@ pub struct Expected {
     /// Natural logarithms of the reach (n mi) of the three given speeds in the mean storm of this strength.
     log_usual: [f64; 3],
     follows: f64,
+    /// By how much each ratio lies below the mean of its four; zero above it.
+    lacks: Ratios,
+    /// The mean ratio of 34 kt; 1 if there is none.
+    pub mean_gale_ratio: f64,
 }
 
 impl Expected {
@@ -117,7 +121,10 @@ impl Expected {
     #[must_use]
     pub fn new(wind_kt: f64, latitude: f64, ratios: Ratios, follows: f64) -> Expected {
         let log_usual = GIVEN_SPEEDS_KT.map(|speed| log_reach(speed, wind_kt.max(speed), latitude));
-        Expected { wind_kt, latitude, ratios, log_usual, follows }
+        let means = ratios.map(|row| row.iter().sum::<f64>() / 4.0);
+        let lacks = std::array::from_fn(|i| ratios[i].map(|ratio| (means[i] - ratio).max(0.0)));
+        let mean_gale_ratio = if means[0] > 0.0 { means[0] } else { 1.0 };
+        Expected { wind_kt, latitude, ratios, log_usual, follows, lacks, mean_gale_ratio }
     }
 
     /// The mean reach of 34 kt as forecast, at least that of a storm just of gale force, n mi.
@@ -157,9 +164,9 @@ impl Expected {
             if wind_kt < speed {
                 break;
             }
-            let (own, scale) = (self.ratios[i], scale(i));
-            let mean = own.iter().sum::<f64>() / 4.0;
-            let filled = own.map(|ratio| (ratio + stronger * (mean - ratio).max(0.0)) * scale);
+            let scale = scale(i);
+            let filled =
+                pairwise(self.ratios[i], self.lacks[i], |ratio, lacks| (ratio + stronger * lacks) * scale);
             // A stronger wind never reaches beyond a weaker one.
             *out = pairwise(filled, outside, f64::min);
             outside = *out;
