@@ -50,6 +50,15 @@ const MOST_STAND_INS: usize = 24;
 /// where dozens matter, some that do not may stay among them.
 const MOST_FEWER: usize = 60;
 
+/// Up to so many tasks all of these tries are made; in a larger port fewer, in proportion, for each costs more. Our
+/// choice: reliefs for an overloaded port of 2,000 tasks should come in about a second.
+const ALL_TRIES_UP_TO: usize = 200;
+
+/// How many of `most` tries are made in a port of so many tasks; at least one.
+fn tries(most: usize, tasks: usize) -> usize {
+    (most * ALL_TRIES_UP_TO / tasks.max(ALL_TRIES_UP_TO)).max(1)
+}
+
 /// Schedules for each try, times tasks. Our choice: up to 100 tasks a try is searched as long as the plan itself, in a
 /// large port shorter, so that hundreds of tries take seconds. A relief may be missed by it, never invented.
 const TRY_DECODES: u64 = 20_000;
@@ -74,7 +83,7 @@ pub fn reliefs(inputs: DraftInputs<'_>, base: &Draft, plan: &Plan) -> Vec<Relief
     helpful.sort_by(|a, b| {
         (&a.schedule.score.classes, &a.adjustments).cmp(&(&b.schedule.score.classes, &b.adjustments))
     });
-    helpful.truncate(MOST_TOLD);
+    helpful.truncate(tries(MOST_TOLD, base.stated.nodes.len()));
     let mut found: Vec<Relief> = each(&helpful, |tried| finder.relief(tried));
     found.sort_by(|a, b| (a.decide_by, &a.relieves, &a.steps).cmp(&(b.decide_by, &b.relieves, &b.steps)));
     found.dedup();
@@ -112,7 +121,7 @@ fn fewest(inputs: DraftInputs<'_>, base: &Draft, cuts: Vec<String>) -> Draft {
     }
     // Halves, their halves and so on: where few cuts matter, few tries find them among many.
     let mut groups = halves(&cuts);
-    for _ in 0..MOST_FEWER {
+    for _ in 0..tries(MOST_FEWER, base.stated.nodes.len()) {
         let Some(group) = groups.pop() else { break };
         let mut fewer = best.adjustments.clone();
         fewer.cut.retain(|cut| !group.contains(cut));
@@ -176,7 +185,7 @@ impl Finder<'_> {
             .collect();
         replaceable
             .sort_by_key(|task| (!self.missed.contains(&task.id), class(task.stake), Reverse(task.weight)));
-        for task in replaceable.into_iter().take(MOST_STAND_INS) {
+        for task in replaceable.into_iter().take(tries(MOST_STAND_INS, self.base.stated.nodes.len())) {
             let mut choice = self.base.adjustments.clone();
             choice.substituted.insert(task.id.clone());
             choices.push(choice);
