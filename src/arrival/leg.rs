@@ -206,7 +206,11 @@ impl<'a> Leg<'a> {
         let root = f64::sqrt((b * b - 4.0 * a * c).max(0.0));
         let q = -0.5 * (b + if b < 0.0 { -root } else { root });
         let share = [c / q, q / a].into_iter().find(|u| (0.0..=1.0).contains(u)).unwrap_or(0.5);
-        let slope = (2.0 * a * share + b) / (2.0 * (d0 - gaps[0] + share * (r1 - r0))).max(1.0);
+        let slope = (2.0 * a * share + b) / (2.0 * (r0 + share * (r1 - r0)));
+        // Near the centre, and where a wind sets in at once, the straight way tells little.
+        let mean = gaps[1] - gaps[0];
+        let ratio = slope / mean;
+        let slope = if (1.0 / 3.0..3.0).contains(&ratio) { slope } else { mean };
         (low + (high - low) * share, slope / (high - low))
     }
 }
