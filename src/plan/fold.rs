@@ -1,45 +1,15 @@
 //! From the record's first event to now: each plan starts from the one before.
 
-use crate::advisory::forecast::Advisory;
-use crate::arrival::errors::ErrorTables;
-use crate::arrival::odds::{Answers, Draw, ask};
 use crate::plan::audit::audit;
 use crate::plan::audit_case::AuditInputs;
 use crate::plan::calendar::{Calendar, LONGEST_RECORD, REACH};
+use crate::plan::inputs::Inputs;
 use crate::plan::make::{Forecast, MakeInputs, make};
+use crate::plan::odds::AllOdds;
 use crate::plan::sheet::{Breach, Plan};
-use crate::plan::threads::each;
-use crate::port::harbour::Port;
-use crate::record::event::Event;
 use crate::record::situation::{Situation, situation};
-use crate::rules::stage::Rules;
-use crate::schedule::search::Effort;
 use crate::time::moment::Moment;
-use crate::work::graph::WorkGraph;
-use crate::work::questions::questions;
 use crate::work::reckoned::{AdoptedArrival, ArrivalBook};
-use std::collections::BTreeMap;
-
-/// Everything that plans depend on: what stands in the port's folder.
-#[derive(Clone, Copy, Debug)]
-pub struct Inputs<'a> {
-    /// The port.
-    pub port: &'a Port,
-    /// Its rules.
-    pub rules: &'a Rules,
-    /// The graph of its tasks and stages; see [`crate::work::expand::expand`].
-    pub work: &'a WorkGraph,
-    /// The record.
-    pub events: &'a [Event],
-    /// Forecasts by file name.
-    pub forecasts: &'a BTreeMap<String, Advisory>,
-    /// The error tables of the odds.
-    pub tables: &'a ErrorTables,
-    /// How many scenarios.
-    pub draw: Draw,
-    /// How long to search for each plan.
-    pub effort: Effort,
-}
 
 /// All plans up to a moment.
 #[derive(Clone, Debug)]
@@ -69,7 +39,7 @@ impl History {
 #[must_use]
 pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     let last = situation(inputs.events, now.to_utc());
-    let odds = all_odds(inputs, &last);
+    let odds = AllOdds::of(inputs, &last);
     let mut moments: Vec<Moment> = last.changes.iter().map(|known| Moment::at_or_after(*known)).collect();
     moments.push(now);
     moments.dedup();
@@ -77,24 +47,26 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     // A record that begins long ago (or in a mistyped year) must not fill the memory with tides.
     let from = (first - REACH.0).max(now - LONGEST_RECORD);
     let calendar = Calendar::of(inputs.port, from, now + REACH.1);
-    let mut plans: Vec<Plan> = Vec::with_capacity(moments.len());
     let end = moments.len();
-    for (number, moment) in (1..).zip(moments) {
-        let then = situation(inputs.events, moment.to_utc());
-        let plan = plan_then(inputs, (&odds, &calendar), &then, plans.last(), number == end);
-        plans.push(plan);
-    }
-    History { plans }
+    odds.ahead_of(|| {
+        let mut plans: Vec<Plan> = Vec::with_capacity(end);
+        for (number, moment) in (1..).zip(moments) {
+            let then = situation(inputs.events, moment.to_utc());
+            let plan = plan_then(inputs, (&odds, &calendar), &then, plans.last(), number == end);
+            plans.push(plan);
+        }
+        History { plans }
+    })
 }
 
 fn plan_then(
     inputs: &Inputs<'_>,
-    (odds, calendar): (&BTreeMap<String, Answers>, &Calendar),
+    (odds, calendar): (&AllOdds<'_>, &Calendar),
     then: &Situation,
     before: Option<&Plan>,
     with_reliefs: bool,
 ) -> Plan {
-    let forecast = forecast_in_force(inputs.forecasts, odds, then);
+    let forecast = forecast_in_force(inputs, odds, then);
     let book = arrival_book(inputs, odds, then, forecast.as_ref());
     make(MakeInputs {
         port: inputs.port,
@@ -114,8 +86,8 @@ fn plan_then(
 #[must_use]
 pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
     let then = situation(inputs.events, plan.now.to_utc());
-    let odds = all_odds(inputs, &then);
-    let forecast = forecast_in_force(inputs.forecasts, &odds, &then);
+    let odds = AllOdds::of(inputs, &then);
+    let forecast = forecast_in_force(inputs, &odds, &then);
     let book = arrival_book(inputs, &odds, &then, forecast.as_ref());
     let Inputs { port, rules, work, .. } = *inputs;
     audit(AuditInputs { port, rules, work, situation: &then, book: &book }, plan)
@@ -123,7 +95,7 @@ pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
 
 fn arrival_book<'a>(
     inputs: &Inputs<'a>,
-    odds: &'a BTreeMap<String, Answers>,
+    odds: &'a AllOdds<'_>,
     then: &Situation,
     forecast: Option<&Forecast<'a>>,
 ) -> ArrivalBook<'a> {
@@ -142,31 +114,15 @@ fn arrival_book<'a>(
 
 /// The newest of the advisories taken: by issue time, a correction after what it corrects, then as they were taken.
 fn forecast_in_force<'a>(
-    forecasts: &'a BTreeMap<String, Advisory>,
-    odds: &'a BTreeMap<String, Answers>,
+    inputs: &Inputs<'a>,
+    odds: &'a AllOdds<'_>,
     then: &'a Situation,
 ) -> Option<Forecast<'a>> {
     let taken = then.advisories.iter().filter_map(|taken| {
-        let advisory = forecasts.get(&taken.file)?;
+        let advisory = inputs.forecasts.get(&taken.file)?;
         let answers = odds.get(&taken.file)?;
         let known = Moment::at_or_after(taken.said.known);
         Some(Forecast { advisory, answers, file: &taken.file, known })
     });
     taken.max_by_key(|forecast| (forecast.advisory.issued, forecast.advisory.is_corrected, forecast.known))
-}
-
-/// The odds of every advisory that was taken; the work is shared among threads, each advisory a piece of its own, so
-/// that their number changes nothing but the time.
-fn all_odds(inputs: &Inputs<'_>, last: &Situation) -> BTreeMap<String, Answers> {
-    let taken: BTreeMap<&str, &Advisory> = last
-        .advisories
-        .iter()
-        .filter_map(|taken| Some((taken.file.as_str(), inputs.forecasts.get(&taken.file)?)))
-        .collect();
-    let jobs: Vec<(&str, &Advisory)> = taken.into_iter().collect();
-    let answers = each(&jobs, |(file, advisory)| {
-        let asked = questions(inputs.port, inputs.rules, inputs.work, advisory.averaging);
-        ((*file).to_owned(), ask(advisory, &inputs.tables.for_advisory(advisory), &asked, inputs.draw))
-    });
-    answers.into_iter().collect()
 }
