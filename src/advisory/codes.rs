@@ -1,7 +1,7 @@
 //! The codes of this room's findings, each with its meaning in one line.
 
 /// Code and meaning, in the order of the alphabet.
-pub const CODES: [(&str, &str); 58] = [
+pub const CODES: [(&str, &str); 59] = [
     ("advisory-after-the-end", "A forecast time follows the line that ends the storm; it is left out."),
     ("advisory-binary", "The file is no text: a PDF document, a picture, an archive."),
     ("advisory-centre", "The sentence that says where the storm is now is missing or damaged."),
@@ -38,6 +38,7 @@ pub const CODES: [(&str, &str); 58] = [
     ("advisory-reach-range", "A wind reaches farther than 600 n mi."),
     ("advisory-repeat-differs", "The repeated centre differs from the first; the first is used."),
     ("advisory-rising-inland", "The wind rises while the centre is inland."),
+    ("advisory-seas", "The line of high seas is damaged; their reach is left out."),
     ("advisory-sharp-turn", "The track turns by more than 60 degrees in 6 h."),
     ("advisory-speed", "The centre would have to move faster than 70 kt."),
     ("advisory-speed-tropical", "The centre moves faster than 40 kt below 25 degrees of latitude."),

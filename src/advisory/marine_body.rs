@@ -5,11 +5,11 @@
 //! like a figure: what no recogniser takes is never passed over silently.
 
 use crate::advisory::cursor::{Cursor, is_coordinate, is_numeric, is_quadrant_distance};
-use crate::advisory::forecast::{Motion, Quadrants};
+use crate::advisory::forecast::{Motion, Quadrants, Seas};
 use crate::advisory::marine_state::{Body, State, is_at_key, take_motion, take_qualifier, threshold};
 use crate::advisory::notes::Notes;
 use crate::advisory::words::{DOTS, Word};
-use crate::units::length::NauticalMiles;
+use crate::units::length::{METRES_PER_FOOT, Metres, NauticalMiles};
 use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
 use std::ops::Range;
@@ -252,8 +252,8 @@ impl Reader<'_, '_, '_> {
         let mut ahead = self.cursor.clone();
         let is_named = ahead.take("RADIUS IN NM OF");
         let wind = ahead.quantity("KT");
-        let seas = if wind.is_none() { ahead.quantity("FT").or_else(|| ahead.quantity("M")) } else { None };
-        let is_seas = seas.is_some() && ahead.take("SEAS");
+        let height = if wind.is_none() { seas_height(&mut ahead) } else { None };
+        let is_seas = height.is_some() && ahead.take("SEAS");
         if !is_seas && wind.is_none() {
             return false;
         }
@@ -265,10 +265,11 @@ impl Reader<'_, '_, '_> {
         }
         let quadrants = ahead.quadrants();
         self.cursor = ahead;
-        if is_seas {
+        let range = self.cursor.range_since(at);
+        if let Some(height) = height.filter(|_| is_seas) {
+            self.keep_seas(height, quadrants, range);
             return true;
         }
-        let range = self.cursor.range_since(at);
         match (quadrants, wind.and_then(threshold)) {
             (None, _) => {
                 let found = format!("\"{}\" does not give four radii", self.notes.quote(range.clone()));
@@ -284,6 +285,19 @@ impl Reader<'_, '_, '_> {
             (Some(quadrants), Some(index)) => self.keep_radii(index, quadrants, range),
         }
         true
+    }
+
+    /// The first line of a state counts; a damaged one is told, as the pilots' limit may hang on it.
+    fn keep_seas(&mut self, height: Metres, quadrants: Option<Quadrants>, range: Range<usize>) {
+        let Some(reach) = quadrants else {
+            let found = format!("\"{}\" does not give four distances", self.notes.quote(range.clone()));
+            let to_do = "the reach of the seas is left out: fetch the text again";
+            self.notes.warning("advisory-seas", range, found, to_do);
+            return;
+        };
+        if let Some(state) = self.body.states.last_mut() {
+            state.seas.get_or_insert(Seas { height, reach });
+        }
     }
 
     fn keep_radii(&mut self, index: usize, quadrants: Quadrants, range: Range<usize>) {
@@ -436,4 +450,10 @@ impl Reader<'_, '_, '_> {
             "fetch the whole text",
         );
     }
+}
+
+/// Takes "12 FT" or "4 M".
+fn seas_height(cursor: &mut Cursor) -> Option<Metres> {
+    let feet = cursor.quantity("FT").map(|feet| feet * METRES_PER_FOOT);
+    Metres::new(feet.or_else(|| cursor.quantity("M"))?).ok()
 }

@@ -1,7 +1,7 @@
 //! What the sentences of a Forecast/Advisory say, before months and rules are applied.
 
 use crate::advisory::cursor::{Cursor, DayTime, is_numeric};
-use crate::advisory::forecast::{Motion, Quadrants};
+use crate::advisory::forecast::{Motion, Quadrants, Seas};
 use crate::advisory::words::DOTS;
 use crate::geo::position::Position;
 use crate::units::bearing::Bearing;
@@ -70,6 +70,8 @@ pub struct State {
     pub is_damaged: bool,
     /// Radii lines of 34, 50 and 64 kt, and their bytes.
     pub radii: [Option<(Quadrants, Range<usize>)>; 3],
+    /// The line of high seas.
+    pub seas: Option<Seas>,
 }
 
 impl State {
@@ -85,6 +87,7 @@ impl State {
             gust: None,
             is_damaged: false,
             radii: [const { None }; 3],
+            seas: None,
         }
     }
 }

@@ -11,3 +11,4 @@ pub mod reach_table;
 pub mod sphere;
 pub mod structure;
 pub mod track;
+pub mod turning;

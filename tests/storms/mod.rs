@@ -44,6 +44,7 @@ pub fn point(hour: f64, position: Position, wind_kt: f64, gale_nmi: f64) -> Fore
         max_wind: Knots::new(wind_kt).unwrap(),
         gust: None,
         radii,
+        seas: None,
         qualifier: String::new(),
         place: Place { file: "made by hand".to_owned(), line: 1, column: 1, start: 0, end: 0 },
     }
