@@ -293,6 +293,7 @@ impl Reader<'_, '_, '_> {
             let found = format!("\"{}\" does not give four distances", self.notes.quote(range.clone()));
             let to_do = "the reach of the seas is left out: fetch the text again";
             self.notes.warning("advisory-seas", range, found, to_do);
+            self.skip_damaged();
             return;
         };
         if let Some(state) = self.body.states.last_mut() {

@@ -9,4 +9,5 @@ pub mod odds;
 pub mod onset;
 pub mod question;
 pub mod scenario;
+pub mod seas;
 pub mod series;

@@ -5,12 +5,13 @@ use crate::arrival::course::Course;
 use crate::arrival::errors::ErrorTable;
 use crate::arrival::keyed::{BLOCK, Keyed};
 use crate::arrival::onset::{Onset, ScenarioOnset, Watch};
-use crate::arrival::question::Question;
+use crate::arrival::question::{Question, Sought};
+use crate::arrival::seas::HighSeas;
 use crate::arrival::scenario::{Draws, Scenario};
 use crate::geo::position::Position;
 use crate::time::moment::Moment;
 use crate::units::chance::Chance;
-use crate::units::speed::Knots;
+use crate::wind::sphere::Vector;
 use std::collections::BTreeMap;
 
 /// Below this many onsets no quantile is given: a 10 % point of fewer hangs on two or three scenarios. The
@@ -59,8 +60,8 @@ pub struct Answer {
     pub key: String,
     /// Where.
     pub position: Position,
-    /// The wind asked about.
-    pub limit: Knots,
+    /// What was looked for there.
+    pub sought: Sought,
     /// Issue time of the advisory.
     pub issued: Moment,
     /// End of its forecast.
@@ -201,7 +202,7 @@ fn point(sorted: &[Moment], beyond: usize, p: Chance) -> Quantile {
 /// All answers of one ask, in the order of the questions.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Answers {
-    /// One for each question.
+    /// One for each question that the advisory allows to answer.
     pub answers: Vec<Answer>,
     /// How many scenarios, the first ones, are common to all answers.
     pub joint: usize,
@@ -228,8 +229,8 @@ pub fn ask(advisory: &Advisory, table: &ErrorTable, questions: &[Question], draw
     notes.extend(advisory.assumed.iter().map(|assumption| assumption.what.clone()));
     let Some(course) = Course::of(advisory, table) else {
         let issued = Moment::at_or_before(advisory.issued);
-        let answers = questions
-            .iter()
+        let winds = questions.iter().filter(|question| question.sought != Sought::Seas);
+        let answers = winds
             .map(|q| answer(q, (issued, issued), vec![ScenarioOnset::NEVER; joint], ScenarioOnset::NEVER))
             .collect();
         return Answers { answers, joint, notes };
@@ -239,10 +240,15 @@ pub fn ask(advisory: &Advisory, table: &ErrorTable, questions: &[Question], draw
     drawing.draw(joint);
     drawing.draw_more(joint, draw.most);
     let singles = drawing.single_track();
+    if drawing.high_seas.is_none() && !drawing.seas.is_empty() {
+        notes.push("the advisory does not give the reach of high seas: limits of seas are not answered".to_owned());
+    }
     let answers = questions
         .iter()
         .zip(drawing.onsets)
         .zip(singles)
+        // What the advisory says nothing about has no answer; "never" would be one.
+        .filter(|((_, onsets), _)| !onsets.is_empty())
         .map(|((q, onsets), single)| answer(q, (course.issued, course.forecast_end), onsets, single))
         .collect();
     Answers { answers, joint, notes }
@@ -270,7 +276,7 @@ fn answer(
     Answer {
         key: question.key.clone(),
         position: question.position,
-        limit: question.limit,
+        sought: question.sought,
         issued,
         forecast_end,
         already: onsets.iter().filter(|scenario| scenario.onset == Onset::Already).count(),
@@ -293,6 +299,10 @@ struct Drawing<'a> {
     course: &'a Course,
     keyed: Keyed,
     groups: Vec<Group>,
+    /// `None` where the advisory does not give their reach: questions about them stay without onsets.
+    high_seas: Option<HighSeas>,
+    /// Places of the questions about high seas, with their indices.
+    seas: Vec<(Vector, usize)>,
     onsets: Vec<Vec<ScenarioOnset>>,
     scenario: Scenario,
     block: Option<(usize, Draws)>,
@@ -301,9 +311,13 @@ struct Drawing<'a> {
 impl<'a> Drawing<'a> {
     fn new(course: &'a Course, advisory: &Advisory, questions: &[Question]) -> Drawing<'a> {
         let mut places: BTreeMap<(u64, u64), Vec<(f64, usize)>> = BTreeMap::new();
+        let mut seas = Vec::new();
         for (index, question) in questions.iter().enumerate() {
             let place = (question.position.latitude().to_bits(), question.position.longitude().to_bits());
-            places.entry(place).or_default().push((question.limit.get(), index));
+            match question.sought {
+                Sought::Wind(limit) => places.entry(place).or_default().push((limit.get(), index)),
+                Sought::Seas => seas.push((course.vector(question.position), index)),
+            }
         }
         let groups = places
             .into_values()
@@ -319,6 +333,8 @@ impl<'a> Drawing<'a> {
             course,
             keyed: Keyed::storm(storm),
             groups,
+            high_seas: HighSeas::of(advisory, course),
+            seas,
             onsets: vec![Vec::new(); questions.len()],
             scenario: Scenario::default(),
             block: None,
@@ -336,6 +352,17 @@ impl<'a> Drawing<'a> {
                         onsets.push(onset);
                     }
                 }
+            }
+            self.draw_seas();
+        }
+    }
+
+    /// The high seas of the scenario in hand.
+    fn draw_seas(&mut self) {
+        let Some(high_seas) = &self.high_seas else { return };
+        for (place, question) in &self.seas {
+            if let Some(onsets) = self.onsets.get_mut(*question) {
+                onsets.push(high_seas.follow(self.course, &self.scenario, *place));
             }
         }
     }
@@ -402,6 +429,11 @@ impl<'a> Drawing<'a> {
                 if let Some(single) = singles.get_mut(*question) {
                     *single = onset;
                 }
+            }
+        }
+        for (place, question) in &self.seas {
+            if let (Some(single), Some(high_seas)) = (singles.get_mut(*question), &self.high_seas) {
+                *single = high_seas.follow(self.course, &self.scenario, *place);
             }
         }
         singles

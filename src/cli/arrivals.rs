@@ -4,7 +4,7 @@ use crate::advisory::forecast::Advisory;
 use crate::advisory::read::read_forecast;
 use crate::arrival::errors::ErrorTables;
 use crate::arrival::odds::{Answers, Draw, ask};
-use crate::arrival::question::Question;
+use crate::arrival::question::{Question, Sought};
 use crate::cli::clock::{port_now, zoned_time};
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::folder::read_bytes;
@@ -142,7 +142,7 @@ fn answers(advisory: &Advisory, places: &[NamedPlace], tables: &ErrorTables) -> 
     let questions: Vec<Question> = (0..)
         .zip(places)
         .flat_map(|(number, place)| {
-            WINDS.map(|limit| Question { key: key(number, limit), position: place.position, limit })
+            WINDS.map(|limit| Question { key: key(number, limit), position: place.position, sought: Sought::Wind(limit) })
         })
         .collect();
     ask(advisory, &tables.for_advisory(advisory), &questions, Draw::default())

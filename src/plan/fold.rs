@@ -96,7 +96,7 @@ pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
 fn arrival_book<'a>(
     inputs: &Inputs<'a>,
     odds: &'a AllOdds<'_>,
-    then: &Situation,
+    then: &'a Situation,
     forecast: Option<&Forecast<'a>>,
 ) -> ArrivalBook<'a> {
     let adopted = then.adopted.iter().map(|(place, adopted)| {
@@ -106,6 +106,7 @@ fn arrival_book<'a>(
     });
     ArrivalBook {
         port: inputs.port,
+        situation: then,
         answers: forecast.map(|forecast| forecast.answers),
         adopted: adopted.collect(),
         usual: inputs.rules.reckoning,

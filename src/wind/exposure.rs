@@ -58,6 +58,30 @@ pub fn open_sea_limit(exposure: &Exposure, limit: &WindLimit, advisory: Averagin
     OpenSeaLimit { speed: Knots::clamped(limit.speed.get() / factor), factor, class, is_least_of_several }
 }
 
+/// Whether a wind measured at a place, 10 m above it, meets a limit there; `None` if it is averaged over less time than
+/// the limit, as a gust says little about a mean.
+///
+/// measured x [`conversion`] to the limit's averaging x factor of the limit's height >= limit, with the greatest product of
+/// all exposures of the place.
+#[must_use]
+pub fn observed_meets(
+    exposure: &Exposure,
+    (measured, averaging): (Knots, Averaging),
+    limit: &WindLimit,
+) -> Option<bool> {
+    if averaging.seconds() < limit.averaging.seconds() {
+        return None;
+    }
+    let factor = |class| {
+        conversion(class, averaging, limit.averaging) * height_factor(class, limit.averaging, limit.height)
+    };
+    let greatest = exposure.classes().into_iter().map(factor).fold(0.0, f64::max);
+    Some(measured.get() * greatest >= limit.speed.get() - SAME_KT)
+}
+
+/// Speeds nearer than this are the same: far below what anybody measures, above the errors of arithmetic.
+const SAME_KT: f64 = 1e-6;
+
 /// What turns the wind over the open sea into the wind at one place, whatever its direction.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Shelter<'a> {
@@ -108,13 +132,17 @@ fn place_factor(class: ExposureClass, averaging: Averaging, height: Metres, advi
                 * conversion(class, Averaging::Minute10, averaging)
         }
     };
-    let height_factor = match averaging {
+    at_ten_metres * height_factor(class, averaging, height)
+}
+
+/// A wind at a height as a multiple of that at 10 m.
+fn height_factor(class: ExposureClass, averaging: Averaging, height: Metres) -> f64 {
+    match averaging {
         Averaging::Gust3s => gust_factor(height),
         Averaging::Minute1 | Averaging::Minute2 | Averaging::Minute3 | Averaging::Minute10 => {
             mean_factor(class, height)
         }
-    };
-    at_ten_metres * height_factor
+    }
 }
 
 #[cfg(test)]

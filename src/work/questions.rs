@@ -1,8 +1,8 @@
 //! Which winds at which places the plan has to know about.
 
-use crate::arrival::question::Question;
+use crate::arrival::question::{Question, Sought};
 use crate::port::harbour::Port;
-use crate::rules::limit::{Anchor, Deadline, WindAt};
+use crate::rules::limit::{Anchor, Deadline, Limit, LimitAt};
 use crate::rules::stage::{Rules, Trigger};
 use crate::units::speed::Knots;
 use crate::units::wind::{Averaging, WindLimit, standard_height};
@@ -15,8 +15,8 @@ pub const HEAD_WINDS: [Knots; 3] = [Knots::GALE, Knots::STORM, Knots::HURRICANE]
 
 /// The name under which a wind at a place is asked and answered.
 #[must_use]
-pub fn question_key(wind: &WindAt) -> String {
-    let limit = &wind.limit;
+pub fn question_key(wind: &LimitAt) -> String {
+    let Limit::Wind(limit) = &wind.limit else { return format!("{} high seas", wind.place) };
     let (speed, seconds, height) = (limit.speed.get(), limit.averaging.seconds(), limit.height.get());
     format!("{} {speed:.2} kt {seconds} s {height:.1} m", wind.place)
 }
@@ -43,20 +43,23 @@ pub fn questions(port: &Port, rules: &Rules, work: &WorkGraph, averaging: Averag
     for place in &port.places {
         for wind in HEAD_WINDS {
             let key = head_key(&place.id, wind);
-            asked.insert(key.clone(), Question { key, position: place.position, limit: wind });
+            asked.insert(key.clone(), Question { key, position: place.position, sought: Sought::Wind(wind) });
         }
     }
     for wind in winds(rules, work) {
         let key = question_key(wind);
         let Some(place) = port.place(&wind.place) else { continue };
-        let limit = open_sea_limit(&place.exposure, &wind.limit, averaging).speed;
-        asked.entry(key.clone()).or_insert(Question { key, position: place.position, limit });
+        let sought = match &wind.limit {
+            Limit::Wind(limit) => Sought::Wind(open_sea_limit(&place.exposure, limit, averaging).speed),
+            Limit::Seas => Sought::Seas,
+        };
+        asked.entry(key.clone()).or_insert(Question { key, position: place.position, sought });
     }
     asked.into_values().collect()
 }
 
 /// Every wind at a place that a trigger, a deadline or a working limit names; with repeats.
-fn winds<'a>(rules: &'a Rules, work: &'a WorkGraph) -> impl Iterator<Item = &'a WindAt> {
+fn winds<'a>(rules: &'a Rules, work: &'a WorkGraph) -> impl Iterator<Item = &'a LimitAt> {
     let triggers = rules.stages.iter().flat_map(|stage| &stage.any).filter_map(|trigger| match trigger {
         Trigger::Forecast { wind, .. } | Trigger::WindOver { wind, .. } => Some(wind),
         Trigger::Observed { .. } | Trigger::Stage { .. } => None,
@@ -67,7 +70,7 @@ fn winds<'a>(rules: &'a Rules, work: &'a WorkGraph) -> impl Iterator<Item = &'a 
     triggers.chain(duties).chain(tasks)
 }
 
-fn wind_of(deadline: &Deadline) -> Option<&WindAt> {
+fn wind_of(deadline: &Deadline) -> Option<&LimitAt> {
     match &deadline.anchor {
         Anchor::Wind(wind) => Some(wind),
         Anchor::Stage(_) | Anchor::Clock(_) => None,
