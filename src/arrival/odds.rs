@@ -6,8 +6,8 @@ use crate::arrival::errors::ErrorTable;
 use crate::arrival::keyed::{BLOCK, Keyed};
 use crate::arrival::onset::{Onset, ScenarioOnset, Watch};
 use crate::arrival::question::{Question, Sought};
-use crate::arrival::seas::HighSeas;
 use crate::arrival::scenario::{Draws, Scenario};
+use crate::arrival::seas::HighSeas;
 use crate::geo::position::Position;
 use crate::time::moment::Moment;
 use crate::units::chance::Chance;
@@ -241,7 +241,9 @@ pub fn ask(advisory: &Advisory, table: &ErrorTable, questions: &[Question], draw
     drawing.draw_more(joint, draw.most);
     let singles = drawing.single_track();
     if drawing.high_seas.is_none() && !drawing.seas.is_empty() {
-        notes.push("the advisory does not give the reach of high seas: limits of seas are not answered".to_owned());
+        notes.push(
+            "the advisory does not give the reach of high seas: limits of seas are not answered".to_owned(),
+        );
     }
     let answers = questions
         .iter()

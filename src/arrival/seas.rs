@@ -65,7 +65,13 @@ impl HighSeas {
 
     /// Distance of the place from the centre less the reach of the seas, n mi; and on which true bearing from the place
     /// the storm lies, from where its seas come.
-    fn gap_nmi(&self, course: &Course, scenario: &Scenario, k: usize, place: Vector) -> Option<(f64, Bearing)> {
+    fn gap_nmi(
+        &self,
+        course: &Course,
+        scenario: &Scenario,
+        k: usize,
+        place: Vector,
+    ) -> Option<(f64, Bearing)> {
         let (centre, gale) = scenario.gale_reach_nmi(course, k)?;
         let reach = around(self.share, bearing_degrees(centre, place)) * gale;
         let back = bearing_degrees(place, centre);

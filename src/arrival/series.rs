@@ -223,9 +223,8 @@ fn hour(at: Moment, samples: &[Sample]) -> HourWind {
 
 /// The greatest of each scenario's values.
 fn peaks(seen: &[Vec<Sample>], count: usize, value: impl Fn(&Sample) -> f64) -> Vec<f64> {
-    let greatest = |scenario| {
-        seen.iter().filter_map(|samples| samples.get(scenario)).map(&value).fold(0.0, f64::max)
-    };
+    let greatest =
+        |scenario| seen.iter().filter_map(|samples| samples.get(scenario)).map(&value).fold(0.0, f64::max);
     (0..count).map(greatest).collect()
 }
 

@@ -142,7 +142,11 @@ fn answers(advisory: &Advisory, places: &[NamedPlace], tables: &ErrorTables) -> 
     let questions: Vec<Question> = (0..)
         .zip(places)
         .flat_map(|(number, place)| {
-            WINDS.map(|limit| Question { key: key(number, limit), position: place.position, sought: Sought::Wind(limit) })
+            WINDS.map(|limit| Question {
+                key: key(number, limit),
+                position: place.position,
+                sought: Sought::Wind(limit),
+            })
         })
         .collect();
     ask(advisory, &tables.for_advisory(advisory), &questions, Draw::default())

@@ -16,3 +16,4 @@ pub mod planning;
 pub mod port_args;
 pub mod run;
 pub mod screen;
+pub mod wind;

@@ -52,9 +52,7 @@ fn stage_due(inputs: AuditInputs<'_>, stage: &Stage, depth: usize) -> Option<Mom
             let arrival = inputs.book.arrival(wind, reckoning.unwrap_or(inputs.rules.reckoning))?;
             Some(arrival.at - *within)
         }
-        Trigger::Observed { wind } => {
-            first_met(wind, inputs.port, &inputs.situation.observed)
-        }
+        Trigger::Observed { wind } => first_met(wind, inputs.port, &inputs.situation.observed),
         Trigger::Stage { stage: other, after } => {
             let other = find_stage(inputs.rules, other)?;
             stage_time(inputs, other, depth + 1).map(|at| at + *after)

@@ -1,7 +1,7 @@
 //! Readiness stages, what triggers them, and the duties that hang on them.
 
 use crate::finding::fault::Place;
-use crate::rules::limit::{Deadline, Reckoning, LimitAt};
+use crate::rules::limit::{Deadline, LimitAt, Reckoning};
 use crate::rules::pick::Pick;
 use crate::rules::task::{LinkSpec, TaskSpec};
 use crate::time::moment::Minutes;

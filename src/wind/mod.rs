@@ -10,5 +10,6 @@ pub mod profile;
 pub mod reach_table;
 pub mod sphere;
 pub mod structure;
+pub mod swell;
 pub mod track;
 pub mod turning;

@@ -90,7 +90,8 @@ impl ArrivalBook<'_> {
     /// that is earlier.
     #[must_use]
     pub fn arrival(&self, limit: &LimitAt, reckoning: Reckoning) -> Option<WorkingArrival> {
-        let seen = met_since(limit, self.port, &self.situation.observed, Moment::at_or_after(self.situation.now));
+        let seen =
+            met_since(limit, self.port, &self.situation.observed, Moment::at_or_after(self.situation.now));
         let seen = seen.map(|at| WorkingArrival { at, basis: Basis::Observed });
         let told = self.told(limit, reckoning);
         // What is observed never delays.

@@ -143,7 +143,9 @@ fn due_of(
         Trigger::Forecast { wind, within, reckoning } => book
             .arrival(wind, reckoning.unwrap_or(rules.reckoning))
             .map(|arrival| (arrival.at - *within, arrival.basis)),
-        Trigger::Observed { wind } => first_met(wind, book.port, &situation.observed).map(|at| (at, Basis::Observed)),
+        Trigger::Observed { wind } => {
+            first_met(wind, book.port, &situation.observed).map(|at| (at, Basis::Observed))
+        }
         Trigger::Stage { stage, after } => {
             stage_anchor(stage, rules, stages).map(|(at, basis)| (at + *after, basis))
         }
@@ -293,7 +295,9 @@ impl Clockwork<'_> {
                 let (at, basis) = stage_anchor(stage, self.rules, self.stages)?;
                 Some((at, format!("stage {stage}"), basis))
             }
-            Anchor::Clock(time) => Some((Moment::at_or_before(*time), String::from("a fixed time"), Basis::Computed)),
+            Anchor::Clock(time) => {
+                Some((Moment::at_or_before(*time), String::from("a fixed time"), Basis::Computed))
+            }
         }
     }
 
