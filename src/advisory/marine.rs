@@ -53,6 +53,8 @@ pub fn read_marine(words: &[Word], title: Title, notes: &mut Notes) -> Option<Ad
         points: track.points,
         ends: track.ends,
         quoted_track_errors: body.quoted_track_errors,
+        circles: Vec::new(),
+        is_drill: false,
         assumed: Vec::new(),
         storm: head.storm,
     })
