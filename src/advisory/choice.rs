@@ -63,3 +63,47 @@ pub fn parse_cycle(text: &str) -> Option<DateTime<Utc>> {
     let year = i32::try_from(part(0, 4)?).ok()?;
     crate::advisory::cursor::instant(year, part(4, 6)?, part(6, 8)?, part(8, 10)?, 0)
 }
+
+/// Whether a storm is the one that somebody wanted: by its id ("AL062018"), the id without its year ("AL06", "06L") or
+/// its name; capitals or not.
+#[must_use]
+pub fn matches_storm(wanted: &str, id: &str, name: &str) -> bool {
+    let wanted = wanted.trim().to_uppercase();
+    let short = id.get(..4).unwrap_or(id);
+    let by_letter = match wanted.split_at_checked(2) {
+        Some((number, letter)) if letter.len() == 1 => {
+            basin_of_letter(letter).is_some_and(|basin| short == format!("{basin}{number}"))
+        }
+        _ => false,
+    };
+    wanted == id || wanted == short || by_letter || (!name.is_empty() && wanted == name.to_uppercase())
+}
+
+/// The basin of a storm's letter, as in "22W": L Atlantic, E and C Pacific, W west Pacific, A and B north Indian Ocean, S
+/// and P southern, Q south Atlantic.
+#[must_use]
+pub fn basin_of_letter(letter: &str) -> Option<&'static str> {
+    match letter {
+        "L" => Some("AL"),
+        "E" => Some("EP"),
+        "C" => Some("CP"),
+        "W" => Some("WP"),
+        "A" | "B" => Some("IO"),
+        "S" | "P" => Some("SH"),
+        "Q" => Some("SL"),
+        _ => None,
+    }
+}
+
+/// At most this many things are listed in a message; a file of best tracks holds two thousand storms.
+const LISTED: usize = 12;
+
+/// "a, b and 3 more".
+#[must_use]
+pub fn listed(names: &[String]) -> String {
+    let shown = names.iter().take(LISTED).map(String::as_str).collect::<Vec<&str>>().join(", ");
+    match names.len().saturating_sub(LISTED) {
+        0 => shown,
+        more => format!("{shown} and {more} more"),
+    }
+}

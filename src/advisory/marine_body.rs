@@ -6,8 +6,9 @@
 
 use crate::advisory::cursor::{Cursor, is_coordinate, is_numeric, is_quadrant_distance};
 use crate::advisory::forecast::{Motion, Quadrants};
-use crate::advisory::marine_state::{Body, State, is_at_key, take_motion, take_qualifier, threshold};
+use crate::advisory::marine_state::{Body, State, is_at_key, take_motion, take_qualifier};
 use crate::advisory::notes::Notes;
+use crate::advisory::reach_rule::threshold;
 use crate::advisory::words::{DOTS, Word};
 use crate::units::length::NauticalMiles;
 use crate::units::pressure::HectoPascals;

@@ -125,9 +125,3 @@ pub fn take_motion(cursor: &mut Cursor) -> Option<Motion> {
     // A storm that moves at 0 kt has no direction, whatever the text prints beside it.
     Some(if speed > Knots::ZERO { Motion::Towards(bearing, speed) } else { Motion::Stationary })
 }
-
-/// Which of the winds of 34, 50 and 64 kt this is, if any: radii of others are not used.
-#[must_use]
-pub fn threshold(knots: f64) -> Option<usize> {
-    [Knots::GALE, Knots::STORM, Knots::HURRICANE].iter().position(|speed| (speed.get() - knots).abs() < 0.5)
-}
