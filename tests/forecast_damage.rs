@@ -3,19 +3,53 @@
 
 use proptest::prelude::{any, proptest};
 use proptest::test_runner::Config;
-use snugdown::advisory::read::{LONGEST, Reading, read_forecast};
+use snugdown::advisory::choice::{Choice, parse_cycle};
+use snugdown::advisory::read::{LONGEST, Reading, read_chosen, read_forecast};
 use snugdown::finding::fault::has_error;
 use std::fs;
 
 fn texts() -> Vec<Vec<u8>> {
-    let mut paths: Vec<_> = ["tests/data/forecast-advisory", "tests/data/typed-forecast"]
+    let folders = [
+        "tests/data/forecast-advisory",
+        "tests/data/typed-forecast",
+        "tests/data/joint-warning",
+        "tests/data/deck",
+        "tests/data/best-track",
+    ];
+    let mut paths: Vec<_> = folders
         .iter()
         .flat_map(|folder| fs::read_dir(folder).unwrap().map(|entry| entry.unwrap().path()))
-        .filter(|path| path.extension().is_some_and(|end| end == "txt" || end == "toml"))
+        .filter(|path| path.extension().is_some_and(|end| end == "txt" || end == "toml" || end == "dat"))
         .collect();
     paths.sort();
     assert!(paths.len() >= 15);
-    paths.iter().map(|path| fs::read(path).unwrap()).collect()
+    let mut texts: Vec<Vec<u8>> = paths.iter().map(|path| fs::read(path).unwrap()).collect();
+    texts.push(TOKYO.as_bytes().to_vec());
+    texts
+}
+
+/// An invented advisory in the layout of RSMC Tokyo.
+const TOKYO: &str = "WTPQ50 RJTD 301800\nRSMC TROPICAL CYCLONE ADVISORY\nNAME  TY 2611 ODA (2611)\nANALYSIS\n\
+    PSTN  301800UTC 24.6N 131.2E GOOD\nMOVE  NNW 11KT\nPRES  950HPA\nMXWD  080KT\nGUST  115KT\n\
+    50KT  110NM EAST 80NM WEST\n30KT  300NM NORTHEAST 240NM SOUTHWEST\nFORECAST\n\
+    24HF  311800UTC 28.4N 129.9E 45NM 70%\nMOVE  N SLOWLY\nPRES  950HPA\nMXWD  080KT\nGUST  115KT\n\
+    96HF  031800UTC 40.0N 143.0E 180NM 70% TROPICAL DEPRESSION=\n";
+
+/// Choices under which each of the texts can be read, and none at all.
+fn choices() -> Vec<Choice> {
+    let cycle = |text: &str| Choice { cycle: parse_cycle(text), ..Choice::default() };
+    let storm = |storm: &str, text: &str| Choice { storm: Some(storm.to_owned()), ..cycle(text) };
+    vec![
+        Choice::default(),
+        cycle("2018090300"),
+        cycle("2008082918"),
+        cycle("2013060518"),
+        storm("AL012014", "2014070300"),
+        cycle("2026083018"),
+        cycle("2026090206"),
+        Choice::taken_at(parse_cycle("2026090306").unwrap()),
+        Choice { technique: Some("CARQ".to_owned()), ..Choice::default() },
+    ]
 }
 
 /// What must hold of any reading.
@@ -89,8 +123,8 @@ fn damage(text: &[u8], dice: &mut Dice) -> Vec<u8> {
 
 #[test]
 fn a_damaged_text_is_read_soundly_or_refused() {
-    let texts = texts();
-    for seed in 0..12_000_u64 {
+    let (texts, choices) = (texts(), choices());
+    for seed in 0..16_000_u64 {
         let mut dice = Dice(seed);
         let mut bytes = texts[dice.below(texts.len())].clone();
         for _ in 0..=dice.below(3) {
@@ -98,7 +132,7 @@ fn a_damaged_text_is_read_soundly_or_refused() {
                 bytes = damage(&bytes, &mut dice);
             }
         }
-        assert_sound(&read_forecast("damaged", &bytes));
+        assert_sound(&read_chosen("damaged", &bytes, &choices[dice.below(choices.len())]));
     }
 }
 
@@ -132,7 +166,7 @@ fn a_line_of_wind_or_track_that_is_lost_is_never_lost_silently() {
 #[test]
 fn large_files_are_refused_or_read_in_time() {
     assert_eq!(read_forecast("big", &vec![b'x'; LONGEST + 1]).findings[0].code, "advisory-too-long");
-    let fillers: [&[u8]; 8] = [
+    let fillers: [&[u8]; 10] = [
         b"x",
         b". ",
         b"...",
@@ -141,6 +175,8 @@ fn large_files_are_refused_or_read_in_time() {
         b"[a]\n",
         b"FORECAST/ADVISORY NUMBER 1 ",
         b"<pre>FORECAST VALID ",
+        b"WARNING POSITION: 020600Z --- NEAR 1N 1E WARNING NR ",
+        b"RSMC TROPICAL CYCLONE ADVISORY PSTN ",
     ];
     for filler in fillers {
         let mut bytes = filler.repeat(LONGEST / filler.len());
@@ -156,6 +192,38 @@ proptest! {
     #[test]
     fn any_bytes_are_read_soundly_or_refused(bytes in proptest::collection::vec(any::<u8>(), 0..600)) {
         assert_sound(&read_forecast("bytes", &bytes));
+    }
+
+    #[test]
+    fn any_run_of_rows_and_fields_is_read_soundly_or_refused(
+        picks in proptest::collection::vec(0_usize..22, 0..150),
+        choice in 0_usize..9,
+    ) {
+        let words = [
+            "AL, ", "06, ", "2018090300, ", "03, ", "OFCL, ", "BEST, ", "12, ", "0, ", "128N, ", "179W, ", "65, ", "997, ", "HU, ",
+            "34, ", "NEQ, ", "AAA, ", "\n", "AL062018, FLORENCE, 2,\n", "20180903, 0000, , HU, 12.8N, 17.9W, 65, 997, ",
+            "AL, 06, 2018090300, 03, OFCL, 0, 128N, 179W, 65, 997, HU, 34, NEQ, 30, 30, 20, 30, \n",
+            "AL, 06, 2018090300, 03, OFCL, 24, 138N, 209W, 65, 997, HU, 50, NEQ, 30, 30, 20, 30, \n", "-999, ",
+        ];
+        let text: String = picks.iter().map(|pick| words[*pick]).collect();
+        assert_sound(&read_chosen("rows", text.as_bytes(), &choices()[choice]));
+    }
+
+    #[test]
+    fn any_run_of_the_words_of_warnings_is_read_soundly_or_refused(
+        picks in proptest::collection::vec(0_usize..30, 0..120),
+        choice in 0_usize..9,
+    ) {
+        let words = [
+            "WARNING POSITION:", "WARNING NR 005", "22W (ODA)", "020600Z --- NEAR 23.1N 132.4E", "12 HRS, VALID AT:",
+            "021800Z --- 24.7N 130.9E", "MAX SUSTAINED WINDS - 035 KT, GUSTS 045 KT", "RADIUS OF 034 KT WINDS -",
+            "120 NM NORTHEAST QUADRANT", "090 NM SOUTHEAST QUADRANT", "SEMICIRCLE", "ELSEWHERE", "REMARKS:", "02SEP26.",
+            "NEXT WARNINGS AT 021500Z", "NNNN", "RSMC TROPICAL CYCLONE ADVISORY", "NAME TY 2611 ODA", "PSTN",
+            "301800UTC 24.6N 131.2E", "24HF", "311800UTC 28.4N 129.9E 45NM 70%", "MXWD 080KT", "50KT 110NM EAST 80NM WEST",
+            "30KT 300NM", "MOVE N SLOWLY", "PRES 950HPA", "TROPICAL DEPRESSION=", "1.0N", "99",
+        ];
+        let text: Vec<&str> = picks.iter().map(|pick| words[*pick]).collect();
+        assert_sound(&read_chosen("words", text.join(" ").as_bytes(), &choices()[choice]));
     }
 
     #[test]

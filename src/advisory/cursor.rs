@@ -140,6 +140,16 @@ impl<'a> Cursor<'a> {
         Some(DayTime { day, hour, minute })
     }
 
+    /// Takes "051900Z", "051900UTC" or "051900": day, hour and minute in one.
+    pub fn day_hour_minute(&mut self) -> Option<DayTime> {
+        let word = self.peek(0);
+        let digits = word.strip_suffix("UTC").or(word.strip_suffix('Z')).unwrap_or(word);
+        let (day, clock) = Some(digits).filter(|digits| digits.len() == 6)?.split_at_checked(2)?;
+        let (day, (hour, minute)) = (digits_only(day)?, clock_time(clock)?);
+        self.skip(1);
+        Some(DayTime { day, hour, minute })
+    }
+
     /// Takes the four radii "60NE 150SE 0SW 20NW": each quadrant once, in any order.
     pub fn quadrants(&mut self) -> Option<Quadrants> {
         let mut ahead = self.clone();

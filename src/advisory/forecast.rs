@@ -4,6 +4,7 @@ use crate::finding::fault::Place;
 use crate::geo::position::Position;
 use crate::time::moment::Minutes;
 use crate::units::bearing::Bearing;
+use crate::units::chance::Chance;
 use crate::units::length::{Metres, NauticalMiles};
 use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
@@ -47,6 +48,10 @@ pub struct Advisory {
     pub ends: Option<Ending>,
     /// Mean track errors that the office itself quotes for (day 4, day 5).
     pub quoted_track_errors: Option<(NauticalMiles, NauticalMiles)>,
+    /// Circles within which the office expects the centre, times rising; empty if it publishes none.
+    pub circles: Vec<ProbabilityCircle>,
+    /// Made from what happened, for drills only: no forecast of any office.
+    pub is_drill: bool,
     /// What the reader had to assume; each widens the spread. Empty for a full official text.
     pub assumed: Vec<Assumption>,
 }
@@ -193,6 +198,17 @@ pub enum Ending {
     Absorbed(DateTime<Utc>),
     /// The reader stopped here because the text contradicts itself (see the findings).
     CutShort(DateTime<Utc>),
+}
+
+/// A circle round a forecast centre within which the centre will lie with a stated chance.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct ProbabilityCircle {
+    /// The time of the forecast centre.
+    pub valid: DateTime<Utc>,
+    /// Its radius.
+    pub radius: NauticalMiles,
+    /// The chance, greater than 0 and less than 1.
+    pub chance: Chance,
 }
 
 /// Something that a short, typed-in forecast does not say and that was assumed for it.

@@ -1,6 +1,8 @@
 //! What a text looks like: which of our readers takes it, or what it is instead.
 
 use crate::advisory::cursor::Cursor;
+use crate::advisory::deck_rows::is_deck_line;
+use crate::advisory::hurdat::is_track_head;
 use crate::advisory::marine_head::{Title, titles};
 use crate::advisory::words::{Word, cut};
 use std::ops::Range;
@@ -12,6 +14,14 @@ pub enum Kind {
     Marine(Vec<Word>, Vec<Title>),
     /// A forecast typed in as TOML.
     Typed,
+    /// A deck: rows of many forecasts, or of a best track.
+    Deck,
+    /// Best tracks in the HURDAT2 layout.
+    BestTracks,
+    /// A joint warning centre's warning: its words.
+    Joint(Vec<Word>),
+    /// An advisory of RSMC Tokyo: its words.
+    Tokyo(Vec<Word>),
     /// Something that is refused.
     Other(Refused),
 }
@@ -33,7 +43,7 @@ const FIGURES: &str = "it gives no wind radii by quadrant and no forecast positi
 
 /// Products that can be taken for a forecast: any of the phrases, code, what it is, what it lacks. The first that fits
 /// counts.
-const PRODUCTS: [(&[&str], &str, &str, &str); 9] = [
+const PRODUCTS: [(&[&str], &str, &str, &str); 8] = [
     (
         &["ICAO ADVISORY NUMBER", "TC ADVISORY DTG:", "TCAC:", "FCST PSN"],
         "advisory-other-product",
@@ -41,7 +51,7 @@ const PRODUCTS: [(&[&str], &str, &str, &str); 9] = [
         "it reaches only 24 h ahead and gives no wind radii",
     ),
     (
-        &["DISCUSSION NUMBER", "FORECAST DISCUSSION"],
+        &["DISCUSSION NUMBER", "FORECAST DISCUSSION", "PROGNOSTIC REASONING"],
         "advisory-other-product",
         "a forecaster's discussion",
         FIGURES,
@@ -49,20 +59,20 @@ const PRODUCTS: [(&[&str], &str, &str, &str); 9] = [
     (
         &["WIND SPEED PROBABILITIES", "PROBABILITIES NUMBER"],
         "advisory-other-product",
-        "a table of wind speed probabilities",
-        "it gives chances at named places, not the storm's track and radii",
+        "the official table of wind speed probabilities",
+        "it gives chances at named places, not the storm's track and radii; it can stand beside a forecast",
     ),
     (
-        &["JOINT TYPHOON", "WARNING NR", "WARNING POSITION:", "PGTW"],
-        "advisory-other-centre",
-        "a warning text of a joint warning centre",
-        "its layout is another one",
+        &["JOINT TYPHOON", "WARNING NR", "PGTW", "END PART"],
+        "advisory-other-product",
+        "a part of a joint warning, or another text of that centre",
+        "it has no warning position with forecasts behind it",
     ),
     (
-        &["RSMC TROPICAL CYCLONE", "PSTN", "MXWD"],
+        &["RSMC TROPICAL CYCLONE", "SUBJECTIVE FORECAST", "PSTN", "MXWD", "INITIAL TIME"],
         "advisory-other-centre",
-        "an advisory of a regional specialised centre in its own layout",
-        "its winds are 10-minute means and its layout is another one",
+        "an advisory of a regional centre in its own layout",
+        "of those only RSMC Tokyo's is read",
     ),
     (
         &["TROPICAL CYCLONE UPDATE", "POSITION ESTIMATE", "TROPICAL CYCLONE POSITION"],
@@ -86,12 +96,6 @@ const PRODUCTS: [(&[&str], &str, &str, &str); 9] = [
         "advisory-other-product",
         "a public advisory",
         FIGURES,
-    ),
-    (
-        &["OFCL,", "CARQ,", "BEST,"],
-        "advisory-data-format",
-        "a table for computers of forecasts or best tracks",
-        "the official forecast is the text",
     ),
 ];
 
@@ -127,9 +131,36 @@ pub fn recognise(text: &str) -> Kind {
     if is_toml(trimmed) {
         return Kind::Typed;
     }
+    if first_lines(trimmed).any(is_track_head) {
+        return Kind::BestTracks;
+    }
+    if first_lines(trimmed).any(is_deck_line) {
+        return Kind::Deck;
+    }
     let words = cut(text, 0..text.len(), false);
     let titles = marine_titles(&words);
-    if titles.is_empty() { Kind::Other(product(&words, first_line)) } else { Kind::Marine(words, titles) }
+    let says = |phrase| holds(&words, phrase).is_some();
+    if !titles.is_empty() {
+        Kind::Marine(words, titles)
+    } else if says("WARNING POSITION") && says("WARNING NR") && !says("PROGNOSTIC REASONING") {
+        Kind::Joint(words)
+    } else if says("RSMC TROPICAL CYCLONE ADVISORY") && says("PSTN") {
+        Kind::Tokyo(words)
+    } else {
+        Kind::Other(product(&words, first_line))
+    }
+}
+
+/// Whether a file is a deck or holds best tracks, which may be longer than texts.
+#[must_use]
+pub fn begins_like_a_deck(bytes: &[u8]) -> bool {
+    let start = String::from_utf8_lossy(bytes.get(..bytes.len().min(1000)).unwrap_or(bytes));
+    first_lines(&start).any(|line| is_track_head(line) || is_deck_line(line))
+}
+
+/// The very first lines of a deck may be lost or damaged: one of several is enough to know it.
+fn first_lines(text: &str) -> impl Iterator<Item = &str> {
+    text.lines().map(str::trim).filter(|line| !line.is_empty()).take(5)
 }
 
 /// The titles, if they are those of a Forecast/Advisory.

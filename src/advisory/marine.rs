@@ -9,6 +9,7 @@ use crate::advisory::marine_body::read_body;
 use crate::advisory::marine_head::{Head, Title, read_head};
 use crate::advisory::marine_state::{Body, State};
 use crate::advisory::notes::Notes;
+use crate::advisory::reach_rule::{Oddity, reach_of};
 use crate::advisory::words::Word;
 use crate::units::speed::Knots;
 use crate::units::wind::Averaging;
@@ -53,6 +54,8 @@ pub fn read_marine(words: &[Word], title: Title, notes: &mut Notes) -> Option<Ad
         points: track.points,
         ends: track.ends,
         quoted_track_errors: body.quoted_track_errors,
+        circles: Vec::new(),
+        is_drill: false,
         assumed: Vec::new(),
         storm: head.storm,
     })
@@ -166,30 +169,20 @@ fn point(state: &State, valid: DateTime<Utc>, notes: &mut Notes) -> Option<Forec
     })
 }
 
-/// How far the wind of `speed` reaches where the greatest wind is `wind` and the text gives `given`.
-///
-/// * A line with any radius above zero is taken as it stands; zeros in single quadrants are real.
-/// * Greatest wind below `speed`: that wind blows nowhere, so the reach is none, at every forecast time; that follows
-///   from what "greatest wind" means, and is no guess about a product that carries no radii at that time.
-/// * Greatest wind at or above `speed` and no line: not given. Beyond 36 to 48 h (64 kt) and 72 h (34 and 50 kt) the texts
-///   of 2003 to 2023 never carry the line, however strong the storm, so its absence says nothing.
-/// * Greatest wind at or above `speed` and four zeros: a contradiction; not given, with a warning.
+/// The reach of one wind by [`reach_of`]; what is odd is noted.
 fn reach(speed: Knots, wind: Knots, given: Option<(Quadrants, Range<usize>)>, notes: &mut Notes) -> Reach {
-    let blows = wind >= speed;
-    let Some((quadrants, range)) = given else {
-        return if blows { Reach::NotGiven } else { Reach::Given(Quadrants::NONE) };
-    };
-    let is_none = quadrants == Quadrants::NONE;
-    if is_none && blows {
-        let found = format!("\"{}\" though the greatest wind is {wind}", notes.quote(range.clone()));
-        notes.warning("advisory-zero-radii", range, found, "the reach is taken as not given");
-        return Reach::NotGiven;
+    let (reach, oddity) = reach_of(speed, wind, given.as_ref().map(|(quadrants, _)| *quadrants));
+    let Some((oddity, (_, range))) = oddity.zip(given) else { return reach };
+    let found = format!("\"{}\" though the greatest wind is {wind}", notes.quote(range.clone()));
+    match oddity {
+        Oddity::ZeroThoughItBlows => {
+            notes.warning("advisory-zero-radii", range, found, "the reach is taken as not given");
+        }
+        Oddity::ReachesThoughTooWeak => {
+            notes.warning("advisory-radii-above-wind", range, found, "the radii are used; ask the office");
+        }
     }
-    if !is_none && !blows {
-        let found = format!("\"{}\" though the greatest wind is {wind}", notes.quote(range.clone()));
-        notes.warning("advisory-radii-above-wind", range, found, "the radii are used; ask the office");
-    }
-    Reach::Given(quadrants)
+    reach
 }
 
 /// When the office's forecast hours begin.

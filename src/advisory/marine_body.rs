@@ -6,10 +6,11 @@
 
 use crate::advisory::cursor::{Cursor, is_coordinate, is_numeric, is_quadrant_distance};
 use crate::advisory::forecast::{Motion, Quadrants, Seas};
-use crate::advisory::marine_state::{Body, State, is_at_key, take_motion, take_qualifier, threshold};
+use crate::advisory::marine_state::{Body, State, is_at_key, take_motion, take_qualifier, take_seas_height};
 use crate::advisory::notes::Notes;
+use crate::advisory::reach_rule::threshold;
 use crate::advisory::words::{DOTS, Word};
-use crate::units::length::{METRES_PER_FOOT, Metres, NauticalMiles};
+use crate::units::length::NauticalMiles;
 use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
 use std::ops::Range;
@@ -252,7 +253,7 @@ impl Reader<'_, '_, '_> {
         let mut ahead = self.cursor.clone();
         let is_named = ahead.take("RADIUS IN NM OF");
         let wind = ahead.quantity("KT");
-        let height = if wind.is_none() { seas_height(&mut ahead) } else { None };
+        let height = if wind.is_none() { take_seas_height(&mut ahead) } else { None };
         let is_seas = height.is_some() && ahead.take("SEAS");
         if !is_seas && wind.is_none() {
             return false;
@@ -266,39 +267,33 @@ impl Reader<'_, '_, '_> {
         let quadrants = ahead.quadrants();
         self.cursor = ahead;
         let range = self.cursor.range_since(at);
-        if let Some(height) = height.filter(|_| is_seas) {
-            self.keep_seas(height, quadrants, range);
-            return true;
-        }
-        match (quadrants, wind.and_then(threshold)) {
-            (None, _) => {
-                let found = format!("\"{}\" does not give four radii", self.notes.quote(range.clone()));
-                let to_do = "each of NE, SE, SW and NW must stand there once: fetch the text again";
-                self.notes.error("advisory-radii", range, found, to_do);
-                self.skip_damaged();
+        let seas = height.filter(|_| is_seas);
+        match (quadrants, seas, wind.and_then(threshold)) {
+            (None, _, _) => self.no_quadrants(is_seas, range),
+            (Some(reach), Some(height), _) => {
+                if let Some(state) = self.body.states.last_mut() {
+                    state.seas.get_or_insert(Seas { height, reach });
+                }
             }
-            (Some(_), None) => {
+            (Some(_), None, None) => {
                 let found = format!("radii of another wind: \"{}\"", self.notes.quote(range.clone()));
                 let to_do = "only those of 34, 50 and 64 kt are used";
                 self.notes.warning("advisory-radius-speed", range, found, to_do);
             }
-            (Some(quadrants), Some(index)) => self.keep_radii(index, quadrants, range),
+            (Some(quadrants), None, Some(index)) => self.keep_radii(index, quadrants, range),
         }
         true
     }
 
-    /// The first line of a state counts; a damaged one is told, as the pilots' limit may hang on it.
-    fn keep_seas(&mut self, height: Metres, quadrants: Option<Quadrants>, range: Range<usize>) {
-        let Some(reach) = quadrants else {
-            let found = format!("\"{}\" does not give four distances", self.notes.quote(range.clone()));
-            let to_do = "the reach of the seas is left out: fetch the text again";
+    fn no_quadrants(&mut self, is_seas: bool, range: Range<usize>) {
+        let found = format!("\"{}\" does not give four radii", self.notes.quote(range.clone()));
+        let to_do = "each of NE, SE, SW and NW must stand there once: fetch the text again";
+        if is_seas {
             self.notes.warning("advisory-seas", range, found, to_do);
-            self.skip_damaged();
-            return;
-        };
-        if let Some(state) = self.body.states.last_mut() {
-            state.seas.get_or_insert(Seas { height, reach });
+        } else {
+            self.notes.error("advisory-radii", range, found, to_do);
         }
+        self.skip_damaged();
     }
 
     fn keep_radii(&mut self, index: usize, quadrants: Quadrants, range: Range<usize>) {
@@ -451,10 +446,4 @@ impl Reader<'_, '_, '_> {
             "fetch the whole text",
         );
     }
-}
-
-/// Takes "12 FT" or "4 M".
-fn seas_height(cursor: &mut Cursor) -> Option<Metres> {
-    let feet = cursor.quantity("FT").map(|feet| feet * METRES_PER_FOOT);
-    Metres::new(feet.or_else(|| cursor.quantity("M"))?).ok()
 }

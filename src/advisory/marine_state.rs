@@ -5,7 +5,7 @@ use crate::advisory::forecast::{Motion, Quadrants, Seas};
 use crate::advisory::words::DOTS;
 use crate::geo::position::Position;
 use crate::units::bearing::Bearing;
-use crate::units::length::NauticalMiles;
+use crate::units::length::{METRES_PER_FOOT, Metres, NauticalMiles};
 use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
 use std::ops::Range;
@@ -129,8 +129,8 @@ pub fn take_motion(cursor: &mut Cursor) -> Option<Motion> {
     Some(if speed > Knots::ZERO { Motion::Towards(bearing, speed) } else { Motion::Stationary })
 }
 
-/// Which of the winds of 34, 50 and 64 kt this is, if any: radii of others are not used.
-#[must_use]
-pub fn threshold(knots: f64) -> Option<usize> {
-    [Knots::GALE, Knots::STORM, Knots::HURRICANE].iter().position(|speed| (speed.get() - knots).abs() < 0.5)
+/// Takes "12 FT" or "4 M".
+pub fn take_seas_height(cursor: &mut Cursor) -> Option<Metres> {
+    let feet = cursor.quantity("FT").map(|feet| feet * METRES_PER_FOOT);
+    Metres::new(feet.or_else(|| cursor.quantity("M"))?).ok()
 }

@@ -1,17 +1,28 @@
 //! Forecasts of one tropical cyclone: the model, one reader per kind of product, plausibility.
 
 pub mod assume;
+pub mod best_track;
+pub mod choice;
 pub mod codes;
 pub mod cursor;
+pub mod deck;
+pub mod deck_rows;
 pub mod forecast;
+pub mod hurdat;
+pub mod joint;
+pub mod joint_body;
 pub mod kind;
 pub mod marine;
 pub mod marine_body;
 pub mod marine_head;
 pub mod marine_state;
 pub mod notes;
+pub mod own_spread;
 pub mod plausible;
+pub mod reach_rule;
 pub mod read;
+pub mod tokyo;
+pub mod tokyo_body;
 pub mod typed;
 pub mod typed_table;
 pub mod typed_values;

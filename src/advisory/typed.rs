@@ -101,6 +101,8 @@ pub fn read_typed(text: &str, notes: &mut Notes) -> Option<Advisory> {
         points: completed.points,
         ends: None,
         quoted_track_errors: None,
+        circles: Vec::new(),
+        is_drill: false,
         assumed: completed.assumed,
     })
 }

@@ -6,7 +6,9 @@
 //! odds to the byte.
 
 use crate::advisory::forecast::{Advisory, Ending, ForecastPoint, Motion, Quadrants, Reach, WindRadii};
+use crate::advisory::own_spread::TrackDeviation;
 use crate::arrival::errors::ErrorTable;
+use crate::arrival::own_track::own_factor;
 use crate::geo::position::Position;
 use crate::time::moment::Moment;
 use crate::units::speed::Knots;
@@ -250,6 +252,7 @@ struct Errors<'a> {
     table: &'a ErrorTable,
     lead_at_issue_h: f64,
     start_nmi: Option<f64>,
+    own: Vec<TrackDeviation>,
     widening: [f64; 4],
 }
 
@@ -264,7 +267,7 @@ impl<'a> Errors<'a> {
         }
         let start_nmi = advisory.accuracy.map(|a| a.get() / table.settings().accuracy_divisor);
         let lead_at_issue_h = hours_between(advisory.base, advisory.issued).max(0.0);
-        Errors { table, lead_at_issue_h, start_nmi, widening }
+        Errors { table, lead_at_issue_h, start_nmi, own: advisory.own_track_deviations(), widening }
     }
 
     /// Deviations and biases. The present centre's own accuracy replaces the table's at lead 0 and fades into
@@ -273,6 +276,8 @@ impl<'a> Errors<'a> {
         let lead = hour + self.lead_at_issue_h;
         let row = self.table.at(lead);
         let mut deviation = row.deviation;
+        let own = own_factor(&self.own, self.table, lead);
+        deviation.iter_mut().take(2).for_each(|track| *track *= own);
         if let Some(start) = self.start_nmi {
             let fading = (1.0 - lead / NODE_H).clamp(0.0, 1.0);
             let at_start = self.table.at(0.0).deviation;

@@ -7,6 +7,7 @@ pub mod keyed;
 pub mod leg;
 pub mod odds;
 pub mod onset;
+pub mod own_track;
 pub mod question;
 pub mod scenario;
 pub mod seas;

@@ -1,6 +1,6 @@
 //! A port's folder on disk: its TOML files, and the advisories that its record names.
 
-use crate::advisory::read::LONGEST;
+use crate::advisory::read::{LONGEST, LONGEST_DECK};
 use crate::cli::exit::Failure;
 use crate::finding::fault::Finding;
 use crate::finding::source::SourceText;
@@ -128,7 +128,7 @@ fn read_file(path: &Path) -> std::io::Result<Vec<u8>> {
 /// Enough to see that a file is too long, without filling the memory with it.
 fn at_most_one_more(reader: impl Read) -> std::io::Result<Vec<u8>> {
     let mut bytes = Vec::new();
-    reader.take(LONGEST as u64 + 1).read_to_end(&mut bytes)?;
+    reader.take(LONGEST_DECK as u64 + 1).read_to_end(&mut bytes)?;
     Ok(bytes)
 }
 

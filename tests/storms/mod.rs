@@ -73,6 +73,8 @@ pub fn advisory(points: Vec<ForecastPoint>) -> Advisory {
         points,
         ends: None,
         quoted_track_errors: None,
+        circles: Vec::new(),
+        is_drill: false,
         assumed: Vec::new(),
     }
 }
