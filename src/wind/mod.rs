@@ -6,6 +6,7 @@ pub mod climatology;
 pub mod exposure;
 pub mod field;
 pub mod height;
+pub mod inland;
 pub mod profile;
 pub mod reach_table;
 pub mod sphere;
