@@ -11,6 +11,7 @@
 
 pub mod advisories;
 pub mod best_track;
+pub mod matched;
 pub mod official;
 pub mod table;
 
@@ -24,8 +25,10 @@ use std::path::Path;
 pub struct Archive {
     /// Its advisories, by storm and issue time.
     pub entries: Vec<Entry>,
-    /// Best tracks by storm number ("AL092008").
+    /// Best tracks by the number that the advisories bear ("AL092008").
     pub tracks: BTreeMap<String, BestTrack>,
+    /// Numbers of storms whose best track bears another number, with that one.
+    pub renumbered: Vec<(String, String)>,
     /// Places with a known position.
     pub sites: Vec<Site>,
     /// Official 34-kt odds at those places, by storm and issue time as written.
@@ -36,9 +39,12 @@ impl Archive {
     /// Reads a folder.
     pub fn read(folder: &Path) -> Archive {
         let sites = official::sites(&folder.join("nhc-archive"));
+        let entries = advisories::read(&folder.join("nhc-archive"));
+        let (tracks, renumbered) = matched::tracks(&entries, &best_track::read(&folder.join("hurdat2")));
         Archive {
-            entries: advisories::read(&folder.join("nhc-archive")),
-            tracks: best_track::read(&folder.join("hurdat2")),
+            entries,
+            tracks,
+            renumbered,
             official: official::read(&folder.join("nhc-archive"), &sites),
             sites,
         }

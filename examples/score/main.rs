@@ -67,6 +67,9 @@ fn main() {
     let seasons = archive.seasons();
     recalibrated::fill(&mut rows, &seasons);
     let mut page = String::new();
+    for (advisories, track) in &archive.renumbered {
+        writeln!(page, "The best track of {advisories} bears the number {track}.").unwrap();
+    }
     let storms = resampled::storms(&rows);
     writeln!(
         page,
