@@ -126,6 +126,7 @@ fn entry(row: AdvisoryRow, forecasts: &[ForecastRow], radii: &Radii) -> Option<E
                 storm: reach(50, Knots::STORM),
                 hurricane: reach(64, Knots::HURRICANE),
             },
+            seas: None,
             qualifier: String::new(),
             place: Place { file: "archive".to_owned(), line: 1, column: 1, start: 0, end: 0 },
         })
@@ -157,6 +158,8 @@ fn entry(row: AdvisoryRow, forecasts: &[ForecastRow], radii: &Radii) -> Option<E
         ends: ending(base, &points),
         points,
         quoted_track_errors: None,
+        circles: Vec::new(),
+        is_drill: false,
         assumed: Vec::new(),
     };
     Some(Entry { key: row.key, issued: row.issued, advisory })

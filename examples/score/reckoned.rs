@@ -7,7 +7,7 @@ use crate::archive::official::{LEADS_H, OfficialOdds};
 use chrono::{DateTime, TimeDelta, Utc};
 use snugdown::arrival::errors::ErrorTables;
 use snugdown::arrival::odds::{Answer, Draw, ask};
-use snugdown::arrival::question::Question;
+use snugdown::arrival::question::{Question, Sought};
 use snugdown::time::moment::{Minutes, Moment};
 use snugdown::units::chance::Chance;
 use snugdown::units::speed::Knots;
@@ -106,7 +106,7 @@ fn rows_of(archive: &Archive, entry: &Entry, tables: &ErrorTables) -> Vec<Row> {
         .map(|(odds, _)| Question {
             key: archive.sites[odds.site].name.clone(),
             position: archive.sites[odds.site].position,
-            limit: Knots::GALE,
+            sought: Sought::Wind(Knots::GALE),
         })
         .collect();
     if questions.is_empty() {

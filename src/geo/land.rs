@@ -146,7 +146,7 @@ mod tests {
         let (mut land, mut all) = (0.0, 0.0);
         for (index, is_land) in world.is_land.iter().enumerate() {
             let latitude = -90.0 + ((index / world.columns) as f64 + 0.5) * 0.1;
-            let area = latitude.to_radians().cos();
+            let area = libm::cos(latitude.to_radians());
             all += area;
             land += if *is_land { area } else { 0.0 };
         }
