@@ -1,6 +1,7 @@
 //! Arrival: error tables, scenarios, and the chance that a wind reaches a place by a time.
 
 pub mod course;
+pub mod drawing;
 pub mod errors;
 pub mod errors_reader;
 pub mod keyed;
@@ -12,3 +13,4 @@ pub mod question;
 pub mod scenario;
 pub mod seas;
 pub mod series;
+pub mod threads;

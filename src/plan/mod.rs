@@ -23,4 +23,3 @@ pub mod problem;
 pub mod relief;
 pub mod roles;
 pub mod sheet;
-pub mod threads;
