@@ -1,6 +1,7 @@
 //! Arrival: error tables, scenarios, and the chance that a wind reaches a place by a time.
 
 pub mod course;
+pub mod earlier;
 pub mod errors;
 pub mod errors_reader;
 pub mod keyed;

@@ -230,7 +230,7 @@ pub fn ask(advisory: &Advisory, table: &ErrorTable, questions: &[Question], draw
         let issued = Moment::at_or_before(advisory.issued);
         let answers = questions
             .iter()
-            .map(|q| answer(q, (issued, issued), vec![ScenarioOnset::NEVER; joint], ScenarioOnset::NEVER))
+            .map(|q| answer_of(q, (issued, issued), vec![ScenarioOnset::NEVER; joint], ScenarioOnset::NEVER))
             .collect();
         return Answers { answers, joint, notes };
     };
@@ -243,12 +243,14 @@ pub fn ask(advisory: &Advisory, table: &ErrorTable, questions: &[Question], draw
         .iter()
         .zip(drawing.onsets)
         .zip(singles)
-        .map(|((q, onsets), single)| answer(q, (course.issued, course.forecast_end), onsets, single))
+        .map(|((q, onsets), single)| answer_of(q, (course.issued, course.forecast_end), onsets, single))
         .collect();
     Answers { answers, joint, notes }
 }
 
-fn answer(
+/// The answer that follows from the onsets of a question's scenarios and from that of the forecast's own track.
+#[must_use]
+pub fn answer_of(
     question: &Question,
     (issued, forecast_end): (Moment, Moment),
     onsets: Vec<ScenarioOnset>,

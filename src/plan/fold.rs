@@ -2,23 +2,25 @@
 
 use crate::advisory::forecast::Advisory;
 use crate::arrival::errors::ErrorTables;
-use crate::arrival::odds::{Answers, Draw, ask};
+use crate::arrival::odds::{Draw, ask};
 use crate::plan::audit::audit;
 use crate::plan::audit_case::AuditInputs;
 use crate::plan::calendar::{Calendar, LONGEST_RECORD, REACH};
+use crate::plan::in_force::in_force;
 use crate::plan::make::{Forecast, MakeInputs, make};
 use crate::plan::sheet::{Breach, Plan};
+use crate::plan::storms::{Odds, forecast_of, tell_of_storms};
 use crate::plan::threads::each;
 use crate::port::harbour::Port;
 use crate::record::event::Event;
-use crate::record::situation::{Situation, situation};
+use crate::record::situation::{Adopted, Said, Situation, situation};
 use crate::rules::stage::Rules;
 use crate::schedule::search::Effort;
 use crate::time::moment::Moment;
 use crate::work::graph::WorkGraph;
 use crate::work::questions::questions;
 use crate::work::reckoned::{AdoptedArrival, ArrivalBook};
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 /// Everything that plans depend on: what stands in the port's folder.
 #[derive(Clone, Copy, Debug)]
@@ -69,10 +71,10 @@ impl History {
 #[must_use]
 pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     let last = situation(inputs.events, now.to_utc());
-    let odds = all_odds(inputs, &last);
     let mut moments: Vec<Moment> = last.changes.iter().map(|known| Moment::at_or_after(*known)).collect();
     moments.push(now);
     moments.dedup();
+    let odds = all_odds(inputs, &last, &moments);
     let first = moments.first().copied().unwrap_or(now);
     // A record that begins long ago (or in a mistyped year) must not fill the memory with tides.
     let from = (first - REACH.0).max(now - LONGEST_RECORD);
@@ -89,14 +91,15 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
 
 fn plan_then(
     inputs: &Inputs<'_>,
-    (odds, calendar): (&BTreeMap<String, Answers>, &Calendar),
+    (odds, calendar): (&Odds, &Calendar),
     then: &Situation,
     before: Option<&Plan>,
     with_reliefs: bool,
 ) -> Plan {
-    let forecast = forecast_in_force(inputs.forecasts, odds, then);
+    let force = in_force(inputs.forecasts, inputs.port, &then.advisories, then.now);
+    let forecast = forecast_of(&force, odds, inputs.port, inputs.rules.reckoning);
     let book = arrival_book(inputs, odds, then, forecast.as_ref());
-    make(MakeInputs {
+    let mut plan = make(MakeInputs {
         port: inputs.port,
         calendar,
         rules: inputs.rules,
@@ -107,15 +110,18 @@ fn plan_then(
         before,
         effort: inputs.effort,
         with_reliefs,
-    })
+    });
+    tell_of_storms(&mut plan, &force, odds, (inputs.port, inputs.rules.reckoning), then);
+    plan
 }
 
 /// Audits any plan against the record up to its own time: for plans that were made elsewhere, or by hand.
 #[must_use]
 pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
     let then = situation(inputs.events, plan.now.to_utc());
-    let odds = all_odds(inputs, &then);
-    let forecast = forecast_in_force(inputs.forecasts, &odds, &then);
+    let odds = all_odds(inputs, &then, &[plan.now]);
+    let force = in_force(inputs.forecasts, inputs.port, &then.advisories, then.now);
+    let forecast = forecast_of(&force, &odds, inputs.port, inputs.rules.reckoning);
     let book = arrival_book(inputs, &odds, &then, forecast.as_ref());
     let Inputs { port, rules, work, .. } = *inputs;
     audit(AuditInputs { port, rules, work, situation: &then, book: &book }, plan)
@@ -123,12 +129,12 @@ pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
 
 fn arrival_book<'a>(
     inputs: &Inputs<'a>,
-    odds: &'a BTreeMap<String, Answers>,
+    odds: &'a Odds,
     then: &Situation,
     forecast: Option<&Forecast<'a>>,
 ) -> ArrivalBook<'a> {
     let adopted = then.adopted.iter().map(|(place, adopted)| {
-        let answers = adopted.advisory_file.as_ref().and_then(|file| odds.get(file));
+        let answers = odds.of(&at_adoption(inputs, then, adopted));
         let time = Moment::at_or_before(adopted.time);
         (place.clone(), AdoptedArrival { wind: adopted.wind, time, answers })
     });
@@ -140,24 +146,17 @@ fn arrival_book<'a>(
     }
 }
 
-/// The newest of the advisories taken: by issue time, a correction after what it corrects, then as they were taken.
-fn forecast_in_force<'a>(
-    forecasts: &'a BTreeMap<String, Advisory>,
-    odds: &'a BTreeMap<String, Answers>,
-    then: &'a Situation,
-) -> Option<Forecast<'a>> {
-    let taken = then.advisories.iter().filter_map(|taken| {
-        let advisory = forecasts.get(&taken.file)?;
-        let answers = odds.get(&taken.file)?;
-        let known = Moment::at_or_after(taken.said.known);
-        Some(Forecast { advisory, answers, file: &taken.file, known })
-    });
-    taken.max_by_key(|forecast| (forecast.advisory.issued, forecast.advisory.is_corrected, forecast.known))
+/// The advisories that were in force when an arrival was adopted.
+fn at_adoption<'a>(inputs: &Inputs<'a>, then: &'a Situation, adopted: &Adopted) -> Vec<&'a str> {
+    let told = |said: &Said| (said.known, said.nth);
+    let before = then.advisories.iter().take_while(|taken| told(&taken.said) < told(&adopted.said)).count();
+    let taken = then.advisories.get(..before).unwrap_or(&[]);
+    in_force(inputs.forecasts, inputs.port, taken, adopted.said.known).files()
 }
 
-/// The odds of every advisory that was taken; the work is shared among threads, each advisory a piece of its own, so
-/// that their number changes nothing but the time.
-fn all_odds(inputs: &Inputs<'_>, last: &Situation) -> BTreeMap<String, Answers> {
+/// The odds of every advisory that was taken, and of storms that were in force together at one of `moments`; the work is
+/// shared among threads, each advisory a piece of its own, so that their number changes nothing but the time.
+fn all_odds(inputs: &Inputs<'_>, last: &Situation, moments: &[Moment]) -> Odds {
     let taken: BTreeMap<&str, &Advisory> = last
         .advisories
         .iter()
@@ -168,5 +167,12 @@ fn all_odds(inputs: &Inputs<'_>, last: &Situation) -> BTreeMap<String, Answers> 
         let asked = questions(inputs.port, inputs.rules, inputs.work, advisory.averaging);
         ((*file).to_owned(), ask(advisory, &inputs.tables.for_advisory(advisory), &asked, inputs.draw))
     });
-    answers.into_iter().collect()
+    let mut sets: BTreeSet<Vec<String>> = BTreeSet::new();
+    let owned = |files: Vec<&str>| files.into_iter().map(str::to_owned).collect();
+    for moment in moments {
+        let then = situation(inputs.events, moment.to_utc());
+        sets.insert(owned(in_force(inputs.forecasts, inputs.port, &then.advisories, then.now).files()));
+        sets.extend(then.adopted.values().map(|adopted| owned(at_adoption(inputs, &then, adopted))));
+    }
+    Odds::new(answers.into_iter().collect(), &sets)
 }
