@@ -4,6 +4,7 @@
 use snugdown::advisory::choice::{Choice, parse_cycle};
 use snugdown::advisory::codes::CODES;
 use snugdown::advisory::forecast::{Ending, Quadrants, Reach};
+use snugdown::advisory::official_odds::read_official_odds;
 use snugdown::advisory::read::{LONGEST, Reading, read_chosen, read_forecast};
 use snugdown::finding::fault::{Finding, Severity};
 use std::collections::BTreeSet;
@@ -280,6 +281,29 @@ fn what_was_chosen_beside_the_text_is_judged_too() {
     }
 }
 
+/// Faults of official odds: code and text; both refuse.
+fn of_odds() -> [(&'static str, String); 2] {
+    let text = fs::read_to_string("tests/data/wind-probabilities/ep102024.wndprb.006.txt").unwrap();
+    [
+        ("advisory-odds-head", swap(&text, "2100 UTC MON", "2100 MON")),
+        (
+            "advisory-odds-row",
+            swap(&text, "4(17)   X(17)   X(17)   X(17)   X(17)", "4(71)   X(17)   X(17)   X(17)   X(17)"),
+        ),
+    ]
+}
+
+#[test]
+fn faults_of_official_odds_are_found_under_their_codes() {
+    for (code, text) in of_odds() {
+        let reading = read_official_odds("odds", text.as_bytes());
+        assert!(
+            reading.odds.is_none() && reading.findings.iter().any(|finding| finding.code == code),
+            "{code}"
+        );
+    }
+}
+
 #[test]
 fn every_code_in_the_source_is_listed_and_every_listed_code_is_provoked() {
     let mut in_source = BTreeSet::new();
@@ -298,6 +322,7 @@ fn every_code_in_the_source_is_listed_and_every_listed_code_is_provoked() {
         .iter()
         .map(|(code, ..)| (*code).to_owned())
         .chain(chosen().iter().map(|(code, ..)| (*code).to_owned()))
+        .chain(of_odds().iter().map(|(code, _)| (*code).to_owned()))
         .collect();
     assert_eq!(in_source, listed);
     assert_eq!(provoked, listed);

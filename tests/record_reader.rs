@@ -122,6 +122,9 @@ fn each_fault_has_its_code_and_keeps_the_event_out() {
             "record-ends-before-it-begins",
             event("out = { member = \"T3\", from = \"2026-09-17 10:00\", until = \"2026-09-17 10:00\" }"),
         ),
+        ("record-bad-value", event("took_advisory = { file = \"d.dat\", cycle = \"2018-08-30\" }")),
+        ("record-bad-value", event("took_advisory = { file = \"d.dat\", technique = \"of cl\" }")),
+        ("record-wrong-type", event("took_advisory = { file = \"d.dat\", by_order = \"yes\" }")),
         ("record-file-outside", event("took_advisory = { file = \"../12.txt\" }")),
         ("record-file-outside", event("took_advisory = { file = \"/advisories/12.txt\" }")),
         ("record-file-outside", event("took_advisory = { file = \"advisories\\\\12.txt\" }")),
@@ -208,6 +211,12 @@ fn an_event_that_ends_what_never_began_is_a_warning() {
     }
     let taken = "took_advisory = { file = \"12.txt\" }";
     assert_eq!(codes(&(event(taken) + &event_at("2026-09-17 11:00", taken))), ["record-no-effect"]);
+    // Another base time of the same deck is another forecast, and an order to plan on one is news.
+    let cycle = |hour: &str| format!("took_advisory = {{ file = \"d.dat\", cycle = \"20260917{hour}\" }}");
+    assert_eq!(codes(&(event(&cycle("00")) + &event_at("2026-09-17 11:00", &cycle("06")))), [""; 0]);
+    let order = "took_advisory = { file = \"12.txt\", by_order = true }";
+    assert_eq!(codes(&(event(taken) + &event_at("2026-09-17 11:00", order))), [""; 0]);
+    assert_eq!(codes(&(event(order) + &event_at("2026-09-17 11:00", order))), ["record-no-effect"]);
 }
 
 #[test]

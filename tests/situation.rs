@@ -6,6 +6,7 @@ use snugdown::finding::fault::Place;
 use snugdown::record::event::{Event, Retracted, What};
 use snugdown::record::mention::{MentionKind, mentions};
 use snugdown::record::situation::{Outcome, Situation, TaskState, Way, situation};
+use snugdown::record::taking::Taking;
 use snugdown::time::moment::Minutes;
 use snugdown::units::speed::Knots;
 use snugdown::units::wind::Averaging;
@@ -66,7 +67,7 @@ fn outages(events: &[(i64, What)]) -> Vec<(DateTime<Utc>, Option<DateTime<Utc>>)
 }
 
 fn taken(file: &str) -> What {
-    What::AdvisoryTaken { file: file.into() }
+    What::AdvisoryTaken(Taking::of(file))
 }
 
 fn adopted(time: Option<i64>) -> What {

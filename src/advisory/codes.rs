@@ -1,7 +1,7 @@
 //! The codes of this room's findings, each with its meaning in one line.
 
 /// Code and meaning, in the order of the alphabet.
-pub const CODES: [(&str, &str); 72] = [
+pub const CODES: [(&str, &str); 74] = [
     ("advisory-after-the-end", "A forecast time follows the line that ends the storm; it is left out."),
     ("advisory-best-track-gap", "A time of a best track has no wind; it is left out."),
     ("advisory-binary", "The file is no text: a PDF document, a picture, an archive."),
@@ -33,6 +33,8 @@ pub const CODES: [(&str, &str); 72] = [
     ("advisory-no-storm-id", "The storm has no id; it is told from others by its name and year."),
     ("advisory-not-chosen", "The file holds one forecast, and another storm or base time was chosen."),
     ("advisory-not-official", "The technique is a numerical aid, no office's forecast."),
+    ("advisory-odds-head", "The head or the end of a text of official odds is missing or damaged."),
+    ("advisory-odds-row", "A row of official odds is damaged, or stands twice."),
     ("advisory-other-centre", "The text is another centre's warning, in a layout that is not read."),
     (
         "advisory-other-product",

@@ -2,6 +2,7 @@
 
 pub mod course;
 pub mod drawing;
+pub mod earlier;
 pub mod errors;
 pub mod errors_reader;
 pub mod keyed;

@@ -240,7 +240,7 @@ pub fn ask_on(
         let issued = Moment::at_or_before(advisory.issued);
         let winds = questions.iter().filter(|question| question.sought != Sought::Seas);
         let answers = winds
-            .map(|q| answer(q, (issued, issued), vec![ScenarioOnset::NEVER; joint], ScenarioOnset::NEVER))
+            .map(|q| answer_of(q, (issued, issued), vec![ScenarioOnset::NEVER; joint], ScenarioOnset::NEVER))
             .collect();
         return Answers { answers, joint, notes };
     };
@@ -260,12 +260,14 @@ pub fn ask_on(
         .zip(singles)
         // What the advisory says nothing about has no answer; "never" would be one.
         .filter(|((_, onsets), _)| !onsets.is_empty())
-        .map(|((q, onsets), single)| answer(q, (course.issued, course.forecast_end), onsets, single))
+        .map(|((q, onsets), single)| answer_of(q, (course.issued, course.forecast_end), onsets, single))
         .collect();
     Answers { answers, joint, notes }
 }
 
-fn answer(
+/// The answer that follows from the onsets of a question's scenarios and from that of the forecast's own track.
+#[must_use]
+pub fn answer_of(
     question: &Question,
     (issued, forecast_end): (Moment, Moment),
     onsets: Vec<ScenarioOnset>,

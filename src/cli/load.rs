@@ -1,19 +1,22 @@
 //! Everything that a plan depends on, read from a port's folder and checked; all findings at once.
 
 use crate::advisory::forecast::Advisory;
-use crate::advisory::read::read_forecast;
+use crate::advisory::official_odds::OfficialOdds;
 use crate::arrival::errors::ErrorTables;
 use crate::arrival::errors_reader::read_error_tables;
 use crate::cli::exit::Failure;
 use crate::cli::folder::{PortFolder, TOO_LONG};
+use crate::cli::forecasts::{Taken, doubtful, follows, read_taken, taking};
 use crate::cli::port_args::PortArgs;
 use crate::cli::screen::tell_findings;
-use crate::finding::fault::{Finding, has_error, nearest, sort_findings};
+use crate::finding::fault::{Finding, has_error, sort_findings};
 use crate::finding::source::SourceText;
+use crate::plan::in_force::{InForce, in_force};
 use crate::port::folder::read_draft;
 use crate::port::harbour::Port;
-use crate::record::event::{Event, What};
+use crate::record::event::Event;
 use crate::record::reader::read_events;
+use crate::record::situation::Situation;
 use crate::rules::folder::read_folder;
 use crate::rules::stage::Rules;
 use crate::time::moment::Moment;
@@ -28,11 +31,6 @@ const SHIPPED_ERRORS: &str = include_str!("../../rules/forecast-errors.toml");
 const RECORD: &str = "events.toml";
 /// A port's own error tables within its folder.
 const OWN_ERRORS: &str = "forecast-errors.toml";
-
-/// An event takes an advisory whose file is not in the folder.
-pub const ADVISORY_MISSING: &str = "cli-advisory-missing";
-/// Warning: an advisory was issued before one that was taken earlier.
-pub const ADVISORY_OLDER: &str = "cli-advisory-older";
 
 /// What a port's folder holds.
 #[derive(Clone, Debug)]
@@ -58,28 +56,41 @@ pub struct Loaded {
     pub events: Vec<Event>,
     /// The forecasts that the record names, by file.
     pub forecasts: BTreeMap<String, Advisory>,
+    /// The official odds that it takes, by file.
+    pub official_odds: BTreeMap<String, OfficialOdds>,
     /// The error tables: its own, or those that go with the program.
     pub tables: ErrorTables,
 }
 
 impl Loaded {
-    /// The advisory in force at `now`, with its file: of those taken by then the newest by issue; a correction goes before
-    /// what it corrects, and what was taken later before what was taken earlier.
+    /// The advisories in force at `now`, one for each storm, and what second centres say.
     #[must_use]
-    pub fn in_force(&self, now: Moment) -> Option<(&str, &Advisory)> {
-        self.taken_by(now).max_by_key(|(_, advisory)| (advisory.issued, advisory.is_corrected))
+    pub fn in_force<'a>(&'a self, then: &'a Situation) -> InForce<'a> {
+        in_force(&self.forecasts, &self.port, &then.advisories, then.now)
     }
 
-    /// Whether the last advisory taken by `now` was issued before one taken earlier.
+    /// Whether the last advisory taken by `now` was issued before one of the same office and storm taken earlier.
     #[must_use]
     pub fn is_out_of_order(&self, now: Moment) -> bool {
-        let last = self.taken_by(now).last();
-        last.is_some_and(|(_, last)| self.taken_by(now).any(|(_, earlier)| earlier.issued > last.issued))
+        let mut taken: Vec<&Advisory> = self.taken_by(now).collect();
+        let last = taken.pop();
+        last.is_some_and(|last| taken.iter().any(|one| follows(one, last) && one.issued > last.issued))
     }
 
-    fn taken_by(&self, now: Moment) -> impl Iterator<Item = (&str, &Advisory)> {
+    /// The newest official odds about a storm that were taken by `now`, with their file.
+    #[must_use]
+    pub fn official_odds(&self, storm: &Advisory, now: Moment) -> Option<(&str, &OfficialOdds)> {
+        let known = self.events.iter().filter(|event| event.known <= now.to_utc());
+        let taken = known.filter_map(|event| {
+            let (file, odds) = self.official_odds.get_key_value(&taking(event)?.key())?;
+            Some((file.as_str(), odds))
+        });
+        taken.filter(|(_, odds)| odds.storm == storm.storm.id).max_by_key(|(_, odds)| odds.issued)
+    }
+
+    fn taken_by(&self, now: Moment) -> impl Iterator<Item = &Advisory> {
         let known = self.events.iter().filter(move |event| event.known <= now.to_utc());
-        known.filter_map(taken).filter_map(|file| Some((file, self.forecasts.get(file)?)))
+        known.filter_map(|event| self.forecasts.get(&taking(event)?.key()))
     }
 }
 
@@ -123,82 +134,16 @@ pub fn examine(port: &PortArgs) -> Result<Examined, Failure> {
         findings.extend(strangers(port, rules, work, &events));
     }
     let mut sources: Vec<SourceText> = folder.files.values().cloned().collect();
-    let forecasts = read_forecasts(&folder, &events, &mut findings, &mut sources)?;
-    findings.extend(out_of_order(&events, &forecasts));
+    let Taken { forecasts, official_odds } = read_taken(&folder, &events, &mut findings, &mut sources)?;
+    findings.extend(doubtful(&events, &forecasts, things.as_ref().map(|(port, _, _)| port)));
     let tables = read_tables(&folder, &mut findings, &mut sources);
     sort_findings(&mut findings);
     // A file too long to be read was taken as empty: what follows from that is no news.
     findings.retain(|finding| finding.code == TOO_LONG || !folder.unread.contains(&finding.place.file));
-    let loaded = things
-        .zip(tables)
-        .filter(|_| !has_error(&findings))
-        .map(|((port, rules, work), tables)| Loaded { port, rules, work, events, forecasts, tables });
+    let loaded = things.zip(tables).filter(|_| !has_error(&findings)).map(|((port, rules, work), tables)| {
+        Loaded { port, rules, work, events, forecasts, official_odds, tables }
+    });
     Ok(Examined { findings, sources, loaded })
-}
-
-fn read_forecasts(
-    folder: &PortFolder,
-    events: &[Event],
-    findings: &mut Vec<Finding>,
-    sources: &mut Vec<SourceText>,
-) -> Result<BTreeMap<String, Advisory>, Failure> {
-    let mut forecasts = BTreeMap::new();
-    let mut seen: BTreeMap<&str, &Event> = BTreeMap::new();
-    for event in events {
-        if let Some(file) = taken(event) {
-            seen.entry(file).or_insert(event);
-        }
-    }
-    for (file, event) in seen {
-        let Some(bytes) = folder.bytes(file)? else {
-            findings.push(missing(folder, file, event));
-            continue;
-        };
-        let reading = read_forecast(&folder.shown(file), &bytes);
-        findings.extend(reading.findings);
-        sources.push(reading.source);
-        if let Some(advisory) = reading.advisory {
-            forecasts.insert(file.to_owned(), advisory);
-        }
-    }
-    Ok(forecasts)
-}
-
-fn missing(folder: &PortFolder, file: &str, event: &Event) -> Finding {
-    let beside = folder.beside(file);
-    let to_do = nearest(file, beside.iter().map(String::as_str))
-        .map_or("put the file there, or correct the name".to_owned(), |meant| {
-            format!("did you mean {meant}?")
-        });
-    Finding::error(
-        ADVISORY_MISSING,
-        event.place.clone(),
-        format!("there is no file {file} in the port's folder"),
-        "an advisory that was taken is kept in the folder, so that plans can be made again from it",
-        to_do,
-    )
-}
-
-/// A warning for each advisory that was issued before one taken earlier.
-fn out_of_order(events: &[Event], forecasts: &BTreeMap<String, Advisory>) -> Vec<Finding> {
-    let mut newest: Option<(&str, &Advisory)> = None;
-    let mut findings = Vec::new();
-    for event in events {
-        let Some((file, advisory)) = taken(event).and_then(|file| Some((file, forecasts.get(file)?))) else {
-            continue;
-        };
-        match newest {
-            Some((before, newer)) if newer.issued > advisory.issued => findings.push(Finding::warning(
-                ADVISORY_OLDER,
-                event.place.clone(),
-                format!("{file} was issued before {before}, which was taken earlier"),
-                "the newest advisory stays in force",
-                "look whether the right file was taken",
-            )),
-            _ => newest = Some((file, advisory)),
-        }
-    }
-    findings
 }
 
 fn read_tables(
@@ -226,8 +171,4 @@ fn read_tables(
 pub fn shipped_tables() -> Result<ErrorTables, Failure> {
     let source = SourceText::new("the program's own forecast-errors.toml", SHIPPED_ERRORS);
     read_error_tables(&source).map_err(|findings| Failure::Input { findings, sources: vec![source] })
-}
-
-fn taken(event: &Event) -> Option<&str> {
-    if let What::AdvisoryTaken { file } = &event.what { Some(file) } else { None }
 }

@@ -8,6 +8,7 @@ pub mod clock;
 pub mod completions;
 pub mod exit;
 pub mod folder;
+pub mod forecasts;
 pub mod load;
 pub mod man;
 pub mod now;

@@ -45,13 +45,13 @@ pub fn compared_with(loaded: &Loaded, now: Moment) -> Option<Moment> {
         known.map(Moment::at_or_after).filter(|known| *known <= now).max()
     };
     let issued = last(&|what| matches!(what, What::PlanIssued));
-    issued.or_else(|| Some(last(&|what| matches!(what, What::AdvisoryTaken { .. }))? - Minutes::new(1)))
+    issued.or_else(|| Some(last(&|what| matches!(what, What::AdvisoryTaken(_)))? - Minutes::new(1)))
 }
 
 /// How a command ends that showed this plan: what cannot be done in time goes before a stale forecast.
 #[must_use]
 pub fn exit_of(plan: &Plan, loaded: &Loaded) -> Exit {
-    let is_overdue = plan.advisory.as_ref().is_some_and(|advisory| advisory.is_overdue);
+    let is_overdue = plan.advisory.iter().chain(&plan.other_advisories).any(|advisory| advisory.is_overdue);
     if !plan.fits() {
         Exit::CannotBeDone
     } else if is_overdue || loaded.is_out_of_order(plan.now) {

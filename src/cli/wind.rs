@@ -17,7 +17,9 @@ use crate::output::wind_asked::{LimitAsked, WindAsked};
 use crate::output::wind_text::wind_text;
 use crate::output::wire::value::to_text;
 use crate::output::wire::wind::wind_out;
+use crate::plan::in_force::Chosen;
 use crate::port::harbour::Place;
+use crate::record::situation::situation;
 use crate::rules::limit::LimitAt;
 use crate::time::moment::{Minutes, Moment};
 use crate::units::length::{Metres, NauticalMiles};
@@ -40,6 +42,9 @@ pub struct WindArgs {
     /// The place: its id or name
     #[arg(value_name = "PLACE")]
     pub place: String,
+    /// The storm, where several are in force: its name or number; else the one whose advisory is newest
+    #[arg(long, value_name = "STORM")]
+    pub storm: Option<String>,
     /// Over which time the mean wind is averaged: "1 min", "2 min", "3 min" or "10 min"; else as the advisory does
     #[arg(long, value_name = "TIME", value_parser = read_averaging)]
     pub over: Option<Averaging>,
@@ -90,9 +95,12 @@ pub fn run(args: &WindArgs) -> Result<Exit, Failure> {
     let setting = Setting::of(&loaded.port, &loaded.rules);
     let now = port_now(args.now.as_deref(), setting.clock, loaded.port.exercise)?;
     let place = find_place(&args.place, &loaded)?;
-    let Some((file, advisory)) = loaded.in_force(now) else {
+    let then = situation(&loaded.events, now.to_utc());
+    let storms = loaded.in_force(&then).storms;
+    let Some(chosen) = find_storm(args.storm.as_deref(), &storms)? else {
         return Err(Failure::Usage(format!("no advisory has been taken by {}", setting.clock.show(now))));
     };
+    let (file, advisory) = (chosen.file, chosen.advisory);
     let table = loaded.tables.for_advisory(advisory);
     let answers = ask(advisory, &table, &asked_there(&loaded, place, advisory), Draw::default());
     let averaging = args.over.unwrap_or(advisory.averaging);
@@ -117,7 +125,7 @@ pub fn run(args: &WindArgs) -> Result<Exit, Failure> {
         swell: swell(advisory, place),
         waves: waves(advisory),
         limits: limits(&loaded, place, &answers),
-        notes: answers.notes.clone(),
+        notes: others(&storms, chosen).into_iter().chain(answers.notes.clone()).collect(),
     };
     if args.json {
         show(&to_text(&wind_out(&asked))?)?;
@@ -139,6 +147,34 @@ fn find_place<'a>(asked: &str, loaded: &'a Loaded) -> Result<&'a Place, Failure>
     let hint = nearest(asked, ids.iter().copied().chain(names))
         .map_or(format!("known are {}", ids.join(", ")), |meant| format!("did you mean \"{meant}\"?"));
     Err(Failure::Usage(format!("the port has no place \"{asked}\"; {hint}")))
+}
+
+/// The storm asked for; the newest advisory's if none was. `None` if there is no storm at all.
+fn find_storm<'a, 'b>(
+    asked: Option<&str>,
+    storms: &'b [Chosen<'a>],
+) -> Result<Option<&'b Chosen<'a>>, Failure> {
+    let Some(asked) = asked else { return Ok(storms.first()) };
+    let names = |chosen: &'b Chosen<'a>| {
+        [Some(chosen.advisory.storm.name.as_str()), chosen.advisory.storm.id.as_deref()]
+    };
+    let is_meant = |name: &str| name.to_lowercase() == asked.trim().to_lowercase();
+    let found = storms.iter().find(|chosen| names(chosen).into_iter().flatten().any(is_meant));
+    let known: Vec<&str> = storms.iter().map(|chosen| chosen.advisory.storm.name.as_str()).collect();
+    match (found, known.is_empty()) {
+        (None, false) => Err(Failure::Usage(format!("--storm: in force are {}", known.join(", ")))),
+        (found, _) => Ok(found),
+    }
+}
+
+/// That other storms are in force as well.
+fn others(storms: &[Chosen<'_>], chosen: &Chosen<'_>) -> Vec<String> {
+    let others = storms.iter().filter(|storm| storm.file != chosen.file);
+    let told = others.map(|storm| {
+        let name = &storm.advisory.storm.name;
+        format!("{name} is in force as well: this page leaves it out; ask for it with --storm {name}")
+    });
+    told.collect()
 }
 
 fn asked_there(loaded: &Loaded, place: &Place, advisory: &Advisory) -> Vec<Question> {

@@ -3,6 +3,7 @@
 use crate::arrival::odds::Answer;
 use crate::output::arrival_text::onset_sentence;
 use crate::output::asked::{Asked, onset};
+use crate::output::beside_text::write_beside;
 use crate::output::clock_text::{Times, lasting};
 use crate::output::layout::{Page, columns, glued};
 use crate::time::moment::{Minutes, Moment};
@@ -35,6 +36,9 @@ pub fn arrivals_text(asked: &Asked, width: usize) -> String {
             page.text(MARGIN, &single_track(&times, answer));
         }
         write_hours(&mut page, &place.winds);
+        if let (Some(official), Some(beside)) = (&asked.official, &place.beside) {
+            write_beside(&mut page, &times, official, beside, issued);
+        }
     }
     if !asked.notes.is_empty() {
         page.section("NOTES", "");
@@ -60,8 +64,17 @@ fn head(times: &Times, asked: &Asked, issued: Moment) -> String {
             times.full(now)
         ));
     }
-    if let Some(due) = advisory.next_due.filter(|_| asked.is_overdue()) {
-        let due = Moment::at_or_before(due);
+    if advisory.is_drill {
+        words.push_str(" THIS IS NO FORECAST: it tells what happened, with the spread of a forecast.");
+    }
+    for (file, other) in &asked.other_storms {
+        let issued = times.both(Moment::at_or_before(other.issued));
+        words.push_str(&format!(
+            " {} is in force too ({file}, issued {issued}): what stands below is of all storms together.",
+            other.storm.name
+        ));
+    }
+    if let Some(due) = asked.overdue_since(advisory) {
         words.push_str(&format!(" NOT CURRENT: the next one was due {}.", times.both(due)));
     }
     words

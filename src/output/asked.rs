@@ -4,6 +4,7 @@ use crate::advisory::forecast::Advisory;
 use crate::arrival::odds::{Answer, Quantile};
 use crate::geo::position::Position;
 use crate::output::arrival_text::Onset;
+use crate::output::beside::{Beside, OfficialSource};
 use crate::plan::sheet::Point;
 use crate::time::clock::PortClock;
 use crate::time::moment::Moment;
@@ -17,6 +18,10 @@ pub struct Asked<'a> {
     pub advisory: &'a Advisory,
     /// The file it was read from.
     pub file: &'a str,
+    /// Advisories of other storms in force, with their files: the answers are of all storms together.
+    pub other_storms: Vec<(&'a str, &'a Advisory)>,
+    /// The official odds that stand beside ours.
+    pub official: Option<OfficialSource<'a>>,
     /// Local time for people; UTC where no port is given.
     pub clock: &'a PortClock,
     /// What every page must carry; empty for real ports and single forecasts.
@@ -38,14 +43,24 @@ pub struct AskedPlace<'a> {
     pub position: Position,
     /// The winds, weakest first, with their answers.
     pub winds: Vec<(Knots, &'a Answer)>,
+    /// The official odds beside ours of the same storm; `None` where no official odds are at hand.
+    pub beside: Option<Beside>,
 }
 
 impl Asked<'_> {
     /// Whether the next advisory is overdue; never where no time was asked for, nor after the last one.
     #[must_use]
     pub fn is_overdue(&self) -> bool {
-        let due = self.advisory.next_due.filter(|_| !self.advisory.is_last);
-        due.zip(self.now).is_some_and(|(due, now)| due < now.to_utc())
+        std::iter::once(self.advisory)
+            .chain(self.other_storms.iter().map(|(_, advisory)| *advisory))
+            .any(|advisory| self.overdue_since(advisory).is_some())
+    }
+
+    /// Since when the advisory after this one is overdue, if it is.
+    #[must_use]
+    pub fn overdue_since(&self, advisory: &Advisory) -> Option<Moment> {
+        let due = advisory.next_due.filter(|_| !advisory.is_last)?;
+        self.now.filter(|now| due < now.to_utc()).map(|_| Moment::at_or_before(due))
     }
 }
 

@@ -33,7 +33,7 @@ pub fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan
             ),
         );
     }
-    if plan.advisory.as_ref().is_some_and(|advisory| advisory.is_overdue) {
+    if plan.advisory.iter().chain(&plan.other_advisories).any(|advisory| advisory.is_overdue) {
         page.text(
             0,
             "THE ADVISORY IS NOT CURRENT: a newer one is overdue, and what stands below may be wrong by now.",
@@ -42,6 +42,12 @@ pub fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan
     write_overtaken(page, times, plan);
     page.labelled(MARGIN, "in force", &in_force(times, setting, plan));
     page.labelled(MARGIN, "advisory", &advisory(times, setting, plan.advisory.as_ref()));
+    for other in &plan.other_advisories {
+        page.labelled(MARGIN, "and", &advisory(times, setting, Some(other)));
+    }
+    for warning in &plan.warnings {
+        page.labelled(MARGIN, "WARNING", warning);
+    }
     write_arrivals(page, times, setting, plan);
     page.labelled(MARGIN, "next stage", &next_stage(times, plan));
     if let Some(joint) = &plan.joint {
@@ -132,7 +138,10 @@ pub fn next_one(times: &Times, advisory: &AdvisoryInForce) -> String {
 fn write_arrivals(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan) {
     let end = plan.advisory.as_ref().map(|advisory| advisory.forecast_end);
     for arrival in plan.arrivals.iter().filter(|arrival| arrival.is_reference) {
-        let onset = onset_sentence(times, &Onset::of(arrival), end);
+        let mut onset = onset_sentence(times, &Onset::of(arrival), end);
+        if let Some(storm) = &arrival.storm {
+            onset.push_str(&format!("; {storm} brings it first"));
+        }
         page.labelled(
             MARGIN,
             &format!("{}", arrival.wind.speed),

@@ -3,6 +3,8 @@
 pub mod arrival_text;
 pub mod arrivals_text;
 pub mod asked;
+pub mod beside;
+pub mod beside_text;
 pub mod changes_text;
 pub mod clock_text;
 pub mod escape;

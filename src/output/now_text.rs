@@ -58,6 +58,9 @@ fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan) {
     }
     at_most(page, "in force", &in_force(times, setting, plan), 2, 0);
     at_most(page, "advisory", &advisory(times, setting, plan), 2, 0);
+    if let Some(first) = plan.warnings.first() {
+        at_most(page, "WARNING", first, 2, plan.warnings.len() - 1);
+    }
     let mut references = plan.arrivals.iter().filter(|arrival| arrival.is_reference);
     if let Some(first) = references.next() {
         at_most(page, &first.wind.speed.to_string(), &arrival(times, first), 3, references.count());
@@ -88,10 +91,12 @@ fn advisory(times: &Times, setting: &Setting, plan: &Plan) -> String {
         return format!("NONE TAKEN; ask {}", short(setting.official_source));
     };
     let number = advisory.number.map_or(String::new(), |number| format!("{number} "));
+    let others = plan.other_advisories.iter().map(|other| format!(", {}", short(&other.storm)));
     format!(
-        "{}{number}on {}, {}\u{a0}old (issued {}); {}",
+        "{}{number}on {}{}, {}\u{a0}old (issued {}); {}",
         currency(advisory),
         short(&advisory.storm),
+        others.collect::<String>(),
         lasting(advisory.age),
         times.local_day(advisory.issued),
         next_one(times, advisory),

@@ -3,10 +3,12 @@
 use crate::plan::audit::audit;
 use crate::plan::audit_case::AuditInputs;
 use crate::plan::calendar::{Calendar, LONGEST_RECORD, REACH};
+use crate::plan::in_force::{at_adoption, in_force};
 use crate::plan::inputs::Inputs;
 use crate::plan::make::{Forecast, MakeInputs, make};
 use crate::plan::odds::AllOdds;
 use crate::plan::sheet::{Breach, Plan};
+use crate::plan::storms::{forecast_of, tell_of_storms};
 use crate::record::situation::{Situation, situation};
 use crate::time::moment::Moment;
 use crate::work::reckoned::{AdoptedArrival, ArrivalBook};
@@ -39,10 +41,10 @@ impl History {
 #[must_use]
 pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     let last = situation(inputs.events, now.to_utc());
-    let odds = AllOdds::of(inputs, &last);
     let mut moments: Vec<Moment> = last.changes.iter().map(|known| Moment::at_or_after(*known)).collect();
     moments.push(now);
     moments.dedup();
+    let odds = AllOdds::of(inputs, &last, &moments);
     let first = moments.first().copied().unwrap_or(now);
     // A record that begins long ago (or in a mistyped year) must not fill the memory with tides.
     let from = (first - REACH.0).max(now - LONGEST_RECORD);
@@ -66,9 +68,10 @@ fn plan_then(
     before: Option<&Plan>,
     with_reliefs: bool,
 ) -> Plan {
-    let forecast = forecast_in_force(inputs, odds, then);
+    let force = in_force(inputs.forecasts, inputs.port, &then.advisories, then.now);
+    let forecast = forecast_of(&force, odds, inputs.port, inputs.rules.reckoning);
     let book = arrival_book(inputs, odds, then, forecast.as_ref());
-    make(MakeInputs {
+    let mut plan = make(MakeInputs {
         port: inputs.port,
         calendar,
         rules: inputs.rules,
@@ -79,15 +82,18 @@ fn plan_then(
         before,
         effort: inputs.effort,
         with_reliefs,
-    })
+    });
+    tell_of_storms(&mut plan, &force, odds, (inputs.port, inputs.rules.reckoning), then);
+    plan
 }
 
 /// Audits any plan against the record up to its own time: for plans that were made elsewhere, or by hand.
 #[must_use]
 pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
     let then = situation(inputs.events, plan.now.to_utc());
-    let odds = AllOdds::of(inputs, &then);
-    let forecast = forecast_in_force(inputs, &odds, &then);
+    let odds = AllOdds::of(inputs, &then, &[plan.now]);
+    let force = in_force(inputs.forecasts, inputs.port, &then.advisories, then.now);
+    let forecast = forecast_of(&force, &odds, inputs.port, inputs.rules.reckoning);
     let book = arrival_book(inputs, &odds, &then, forecast.as_ref());
     let Inputs { port, rules, work, .. } = *inputs;
     audit(AuditInputs { port, rules, work, situation: &then, book: &book }, plan)
@@ -100,7 +106,7 @@ fn arrival_book<'a>(
     forecast: Option<&Forecast<'a>>,
 ) -> ArrivalBook<'a> {
     let adopted = then.adopted.iter().map(|(place, adopted)| {
-        let answers = adopted.advisory_file.as_ref().and_then(|file| odds.get(file));
+        let answers = odds.get(&at_adoption(inputs.forecasts, inputs.port, then, adopted));
         let time = Moment::at_or_before(adopted.time);
         (place.clone(), AdoptedArrival { wind: adopted.wind, time, answers })
     });
@@ -111,19 +117,4 @@ fn arrival_book<'a>(
         adopted: adopted.collect(),
         usual: inputs.rules.reckoning,
     }
-}
-
-/// The newest of the advisories taken: by issue time, a correction after what it corrects, then as they were taken.
-fn forecast_in_force<'a>(
-    inputs: &Inputs<'a>,
-    odds: &'a AllOdds<'_>,
-    then: &'a Situation,
-) -> Option<Forecast<'a>> {
-    let taken = then.advisories.iter().filter_map(|taken| {
-        let advisory = inputs.forecasts.get(&taken.file)?;
-        let answers = odds.get(&taken.file)?;
-        let known = Moment::at_or_after(taken.said.known);
-        Some(Forecast { advisory, answers, file: &taken.file, known })
-    });
-    taken.max_by_key(|forecast| (forecast.advisory.issued, forecast.advisory.is_corrected, forecast.known))
 }

@@ -35,6 +35,7 @@ pub fn arrivals(port: &Port, book: &ArrivalBook<'_>, averaging: Averaging) -> Ve
                 wind: head_wind(wind, averaging),
                 adopted: adopted.map(|adopted| adopted.time),
                 computed: reckon(answer, book.usual),
+                storm: None,
                 earliest: point(answer.earliest()),
                 likely: point(answer.likely()),
                 latest: point(answer.latest()),

@@ -107,7 +107,9 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
     };
     let mut plan = Plan {
         now,
-        advisory: forecast.map(|f| in_force(f, situation)),
+        advisory: forecast.map(|f| advisory_line(f, situation)),
+        other_advisories: Vec::new(),
+        warnings: Vec::new(),
         stages: heads::stages(rules, &timed, situation, port),
         duties: heads::duties(rules, work, &timed, book, &tasks),
         joint: answers.and_then(|answers| heads::joint_chance(answers, work, &timed, &tasks)),
@@ -162,7 +164,9 @@ fn draft_with_permitted(inputs: DraftInputs<'_>) -> Draft {
     if chosen == plain.adjustments { plain } else { draft(inputs, &chosen) }
 }
 
-fn in_force(forecast: &Forecast<'_>, situation: &Situation) -> AdvisoryInForce {
+/// An advisory as a plan tells of it.
+#[must_use]
+pub fn advisory_line(forecast: &Forecast<'_>, situation: &Situation) -> AdvisoryInForce {
     let advisory = forecast.advisory;
     AdvisoryInForce {
         file: forecast.file.to_owned(),

@@ -18,7 +18,8 @@ pub fn news_words(event: &Event, clock: &PortClock) -> String {
 
 fn what_words(what: &What, shown: &dyn Fn(DateTime<Utc>) -> String) -> String {
     match what {
-        What::AdvisoryTaken { file } => format!("{file} taken"),
+        What::AdvisoryTaken(taking) if taking.by_order => format!("{} taken, to be planned on", taking.key()),
+        What::AdvisoryTaken(taking) => format!("{} taken", taking.key()),
         What::ArrivalAdopted { place, wind, time: Some(time) } => {
             format!("arrival of {wind} at {place} adopted for {}", shown(*time))
         }

@@ -13,6 +13,10 @@ pub struct Plan {
     pub now: Moment,
     /// The advisory in force; `None` before the first.
     pub advisory: Option<AdvisoryInForce>,
+    /// Those of other storms that are in force beside it; the arrivals are of all storms together.
+    pub other_advisories: Vec<AdvisoryInForce>,
+    /// What a second centre warns of, and that a drill is one, in words.
+    pub warnings: Vec<String>,
     /// Arrivals at the reference places first, then at the others; gale, storm and hurricane force.
     pub arrivals: Vec<Arrival>,
     /// Stages, in the order of the rules.
@@ -83,6 +87,8 @@ pub struct Arrival {
     pub adopted: Option<Moment>,
     /// The computed time as the rules reckon it; `None` if the chance never reaches what they ask.
     pub computed: Option<Moment>,
+    /// The storm that brings it first, if there is more than one.
+    pub storm: Option<String>,
     /// The 10 % point of the onsets after issue.
     pub earliest: Point,
     /// Their 50 % point.

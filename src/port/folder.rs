@@ -216,6 +216,7 @@ impl Draft {
             clock: self.clock?,
             authority: head.authority,
             official_source: head.official_source,
+            official_issuers: head.official_issuers,
             exercise: self.exercise,
             reference: head.reference,
             places: self.places,

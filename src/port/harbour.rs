@@ -23,6 +23,8 @@ pub struct Port {
     pub authority: String,
     /// Whose warnings count for the port: "the national meteorological service".
     pub official_source: String,
+    /// Names of its issuers as their products write them: only those advisories are planned on; empty if any may be.
+    pub official_issuers: Vec<String>,
     /// In a drill the clock stands here and every page says EXERCISE.
     pub exercise: Option<DateTime<Utc>>,
     /// The id of the place at which the head of a plan gives the gale's arrival.
@@ -54,6 +56,8 @@ pub struct Place {
     pub position: Position,
     /// How open it lies.
     pub exposure: Exposure,
+    /// The listed place of the official odds that stands for it; `None` to go by name and position.
+    pub official_place: Option<String>,
     /// The reference place whose adopted arrival time its own deadlines count from; itself for a reference place.
     pub counts_from: String,
 }

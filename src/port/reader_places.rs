@@ -24,6 +24,8 @@ pub struct Head {
     pub authority: String,
     /// Whose warnings count.
     pub official_source: String,
+    /// Names of its issuers as their products write them.
+    pub official_issuers: Vec<String>,
     /// The place at which the head of a plan gives the gale's arrival.
     pub reference: String,
 }
@@ -54,6 +56,7 @@ pub fn read_head(file: &mut Keys<'_>, known: &Known) -> Option<Head> {
     let name = keys.required("name").and_then(|item| item.text());
     let authority = keys.required("authority").and_then(|item| item.text());
     let official_source = keys.required("official_source").and_then(|item| item.text());
+    let official_issuers = keys.one_or_more("official_issuer").iter().map(issuer).collect::<Option<Vec<_>>>();
     let reference =
         keys.required("reference").and_then(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let invented = keys.text_or_empty("invented");
@@ -65,6 +68,7 @@ pub fn read_head(file: &mut Keys<'_>, known: &Known) -> Option<Head> {
         invented,
         authority: authority?.to_owned(),
         official_source: official_source?.to_owned(),
+        official_issuers: official_issuers?,
         reference: reference?,
     })
 }
@@ -105,6 +109,7 @@ fn read_place<'t>(item: &Item<'t>, known: &Known) -> Option<(Place, Option<Item<
     let name = keys.required("name").and_then(|item| item.text());
     let position = keys.required("position").and_then(|item| read_position(&item));
     let exposure = keys.required("exposure").and_then(|item| read_exposure(&item));
+    let official_place = keys.optional("official_place").map(|item| item.text().map(str::to_owned));
     let counts_item = keys.optional("counts_from");
     let counts_from = counts_item.map(|item| known.refer(&item, Kind::Place, codes::UNKNOWN_PLACE));
     let _ = keys.text_or_empty("source");
@@ -119,9 +124,26 @@ fn read_place<'t>(item: &Item<'t>, known: &Known) -> Option<(Place, Option<Item<
         name: name?.to_owned(),
         position: position?,
         exposure: exposure?,
+        official_place: match official_place {
+            Some(listed) => Some(listed?),
+            None => None,
+        },
         counts_from,
     };
     Some((place, counts_item))
+}
+
+/// Words of an issuer's name, enough to know it by.
+fn issuer(item: &Item<'_>) -> Option<String> {
+    let name = item.text()?.trim();
+    if name.chars().count() < 4 {
+        item.bad_value(
+            "this is too short to know an issuer by",
+            "words of its name, as in \"NATIONAL HURRICANE CENTER\"",
+        );
+        return None;
+    }
+    Some(name.to_owned())
 }
 
 fn read_position(item: &Item<'_>) -> Option<Position> {

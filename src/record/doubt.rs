@@ -69,7 +69,7 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
             let started = fold.tasks.get(task)?.started.as_ref().map(|started| started.at);
             (task, started, Some(*at), "the start no longer counts")
         }
-        What::AdvisoryTaken { .. }
+        What::AdvisoryTaken(_)
         | What::ArrivalAdopted { .. }
         | What::StageDeclared { .. }
         | What::StageLifted { .. }
@@ -102,8 +102,9 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
 /// An event that ends or takes back something that was never said.
 fn idle(fold: &Situation, event: &Event) -> Option<Finding> {
     let found = match &event.what {
-        What::AdvisoryTaken { file } => {
-            fold.has_taken(file).then(|| format!("{file} was taken before; the first time counts"))
+        What::AdvisoryTaken(taking) => {
+            let key = taking.key();
+            fold.has_taken(taking).then(|| format!("{key} was taken before; the first time counts"))
         }
         What::ArrivalAdopted { place, time: None, .. } => {
             (!fold.adopted.contains_key(place)).then(|| format!("no arrival was adopted for {place}"))

@@ -1,6 +1,7 @@
 //! One event in the port's record.
 
 use crate::finding::fault::Place;
+use crate::record::taking::Taking;
 use crate::time::moment::Minutes;
 use crate::units::speed::Knots;
 use crate::units::wind::Averaging;
@@ -25,11 +26,8 @@ pub struct Event {
 /// What an event says.
 #[derive(Clone, Debug, PartialEq, PartialOrd)]
 pub enum What {
-    /// An advisory came in; its file within the port's folder.
-    AdvisoryTaken {
-        /// The file's name.
-        file: String,
-    },
+    /// An advisory came in.
+    AdvisoryTaken(Taking),
     /// The harbourmaster adopts one working arrival time of gales at a reference place, until changed by order.
     ArrivalAdopted {
         /// The reference place.

@@ -34,7 +34,7 @@ pub enum MentionKind {
 pub fn mentions(event: &Event) -> Vec<Mention<'_>> {
     let named = |kind, id| Mention { kind, id, written: &event.place };
     match &event.what {
-        What::AdvisoryTaken { file } => vec![named(MentionKind::File, file.as_str())],
+        What::AdvisoryTaken(taking) => vec![named(MentionKind::File, taking.file.as_str())],
         What::ArrivalAdopted { place, .. } | What::Observed { place, .. } => {
             vec![named(MentionKind::Place, place)]
         }

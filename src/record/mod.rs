@@ -6,4 +6,5 @@ pub mod event;
 pub mod mention;
 pub mod reader;
 pub mod situation;
+pub mod taking;
 pub mod telling;

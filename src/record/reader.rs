@@ -7,7 +7,8 @@ use crate::finding::table::{Item, Keys};
 use crate::record::codes;
 use crate::record::doubt::doubts;
 use crate::record::event::{Event, Retracted, What};
-use crate::record::telling::{Telling, file_name, named, task_id, wind};
+use crate::record::taking::read_taking;
+use crate::record::telling::{Telling, named, task_id, wind};
 use crate::text::quantity::{id, instant, lasting};
 use crate::time::clock::PortClock;
 use crate::units::wind::Averaging;
@@ -96,8 +97,7 @@ fn event(item: &Item<'_>, clock: Option<&PortClock>) -> Option<Event> {
 }
 
 fn took_advisory(_: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
-    let file = keys.required("file").and_then(|item| file_name(&item));
-    Some(What::AdvisoryTaken { file: file? })
+    read_taking(keys).map(What::AdvisoryTaken)
 }
 
 fn adopts_arrival(telling: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {

@@ -2,6 +2,7 @@
 
 use crate::finding::fault::Place;
 use crate::record::event::{Event, Retracted, What};
+use crate::record::taking::Taking;
 use crate::time::moment::Minutes;
 use crate::units::speed::Knots;
 use crate::units::wind::Averaging;
@@ -62,8 +63,10 @@ pub struct Told<T> {
 /// An advisory that came in.
 #[derive(Clone, Debug, PartialEq)]
 pub struct TakenAdvisory {
-    /// Its file within the port's folder.
+    /// Its file within the port's folder, and what was picked from it; see [`crate::record::taking::Taking::key`].
     pub file: String,
+    /// By order it is planned on though it is not from the port's official source.
+    pub by_order: bool,
     /// Who took it, and when it was first known.
     pub said: Said,
 }
@@ -270,15 +273,16 @@ impl Situation {
         self.observed.iter().filter(|seen| seen.place == place).max_by_key(|seen| (seen.at, seen.said.nth))
     }
 
-    /// Whether `file` was taken already.
+    /// Whether an advisory was taken already; an order to plan on it is news all the same.
     #[must_use]
-    pub fn has_taken(&self, file: &str) -> bool {
-        self.advisories.iter().any(|taken| taken.file == file)
+    pub fn has_taken(&self, taking: &Taking) -> bool {
+        let key = taking.key();
+        self.advisories.iter().any(|taken| taken.file == key && (taken.by_order || !taking.by_order))
     }
 
     /// Takes in the next event by [`in_order`], the `nth` from 0; for all up to a time see [`situation`].
     pub fn add(&mut self, event: &Event, nth: usize) {
-        if matches!(&event.what, What::AdvisoryTaken { file } if self.has_taken(file)) {
+        if matches!(&event.what, What::AdvisoryTaken(taking) if self.has_taken(taking)) {
             return;
         }
         if self.changes.last() != Some(&event.known) {
@@ -296,7 +300,9 @@ impl Situation {
 
     fn tell(&mut self, what: &What, said: Said) {
         match what {
-            What::AdvisoryTaken { file } => self.advisories.push(TakenAdvisory { file: file.clone(), said }),
+            What::AdvisoryTaken(taking) => {
+                self.advisories.push(TakenAdvisory { file: taking.key(), by_order: taking.by_order, said });
+            }
             What::ArrivalAdopted { place, wind, time } => self.adopt(place, *wind, *time, said),
             What::StageDeclared { stage, from } => {
                 let declared = Some(Told { value: *from, said });

@@ -65,7 +65,7 @@ fn impossible_order(work: &WorkGraph, event: &Event) -> Option<Finding> {
         }
         What::CutOrdered { .. }
         | What::SubstituteOrdered { .. }
-        | What::AdvisoryTaken { .. }
+        | What::AdvisoryTaken(_)
         | What::ArrivalAdopted { .. }
         | What::StageDeclared { .. }
         | What::StageLifted { .. }

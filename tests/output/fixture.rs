@@ -49,6 +49,8 @@ pub fn empty() -> Plan {
     Plan {
         now: at(17, 6, 20),
         advisory: None,
+        other_advisories: vec![],
+        warnings: vec![],
         arrivals: vec![],
         stages: vec![],
         tasks: vec![],
@@ -156,6 +158,7 @@ fn arrival(place: &str, name: &str, is_reference: bool) -> Arrival {
         wind: gale(),
         adopted: is_reference.then(|| at(18, 22, 0)),
         computed: Some(at(18, 14, 0)),
+        storm: None,
         earliest: Point::At(at(18, 14, 3)),
         likely: Point::At(at(18, 20, 17)),
         latest: Point::At(at(19, 9, 41)),
@@ -218,6 +221,8 @@ fn tasks() -> Vec<TaskLine> {
 pub fn rich() -> Plan {
     Plan {
         advisory: Some(advisory()),
+        other_advisories: vec![],
+        warnings: vec![],
         arrivals: vec![
             arrival("pilot-station", "Pilot boarding place", true),
             arrival("c1", "Greywether Container Terminal", false),

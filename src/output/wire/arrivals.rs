@@ -1,7 +1,10 @@
 //! Arrivals in JSON.
 
+use crate::advisory::forecast::Advisory;
+use crate::advisory::official_rows::Percent;
 use crate::arrival::odds::Answer;
 use crate::output::asked::{Asked, AskedPlace, onset, over_by};
+use crate::output::beside::{Beside, OfficialSource, RULES_USE};
 use crate::output::wire::value::{SCHEMA, chance, instant, maybe, number, point, time};
 use crate::time::moment::Minutes;
 use crate::units::speed::Knots;
@@ -22,6 +25,8 @@ pub struct ArrivalsOut {
     pub banner: String,
     /// The advisory.
     pub forecast: ForecastOut,
+    /// Advisories of other storms in force; the arrivals are of all storms together.
+    pub other_storms: Vec<ForecastOut>,
     /// The present time; null if none was asked for.
     pub now: Option<String>,
     /// The places, in the order asked.
@@ -51,6 +56,8 @@ pub struct ForecastOut {
     pub overdue: bool,
     /// The period in seconds over which its winds are averaged.
     pub averaging_s: u32,
+    /// It tells what happened, for drills only.
+    pub drill: bool,
 }
 
 /// One place.
@@ -64,6 +71,8 @@ pub struct PlaceOut {
     pub lon: Number,
     /// The winds asked about, weakest first.
     pub thresholds: Vec<ThresholdOut>,
+    /// The official odds beside ours; null if none are at hand.
+    pub official: Option<OfficialOut>,
 }
 
 /// One wind at one place.
@@ -93,37 +102,100 @@ pub struct ThresholdOut {
     pub scenarios: usize,
 }
 
+/// Official odds beside ours.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub struct OfficialOut {
+    /// The file of the official odds.
+    pub file: String,
+    /// The number of their advisory; null if not stated.
+    pub number: Option<u32>,
+    /// When they were issued.
+    pub issued: String,
+    /// From when they count.
+    pub base: String,
+    /// The listed place; null if nothing is listed for this one, so that its chances are below what is listed.
+    pub listed: Option<String>,
+    /// Which of the two the rules use: always "ours".
+    pub rules_use: String,
+    /// The times for which chances stand below.
+    pub by: Vec<String>,
+    /// The winds, weakest first.
+    pub winds: Vec<OfficialWindOut>,
+}
+
+/// One wind, officially and by us.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub struct OfficialWindOut {
+    /// The wind in knots.
+    pub wind_kt: Number,
+    /// The official chance that it has come by each time, null for less than 1 %; null if the wind is not listed.
+    pub official: Option<Vec<Option<f64>>>,
+    /// Ours.
+    pub ours: Vec<f64>,
+}
+
 /// The arrivals in their JSON form.
 #[must_use]
 pub fn arrivals_out(asked: &Asked) -> ArrivalsOut {
-    let advisory = asked.advisory;
     ArrivalsOut {
         schema: SCHEMA,
         kind: "arrivals".to_owned(),
         banner: asked.banner.clone(),
-        forecast: ForecastOut {
-            file: asked.file.to_owned(),
-            storm: advisory.storm.name.clone(),
-            issuer: advisory.issuer.clone(),
-            number: advisory.number,
-            issued: instant(advisory.issued),
-            base: instant(advisory.base),
-            next_due: advisory.next_due.map(instant),
-            overdue: asked.is_overdue(),
-            averaging_s: advisory.averaging.seconds(),
-        },
+        forecast: forecast(asked, asked.file, asked.advisory),
+        other_storms: asked.other_storms.iter().map(|(file, other)| forecast(asked, file, other)).collect(),
         now: maybe(asked.now),
-        places: asked.places.iter().map(place).collect(),
+        places: asked.places.iter().map(|one| place(one, asked.official.as_ref())).collect(),
         notes: asked.notes.clone(),
     }
 }
 
-fn place(place: &AskedPlace) -> PlaceOut {
+fn forecast(asked: &Asked, file: &str, advisory: &Advisory) -> ForecastOut {
+    ForecastOut {
+        file: file.to_owned(),
+        storm: advisory.storm.name.clone(),
+        issuer: advisory.issuer.clone(),
+        number: advisory.number,
+        issued: instant(advisory.issued),
+        base: instant(advisory.base),
+        next_due: advisory.next_due.map(instant),
+        overdue: asked.overdue_since(advisory).is_some(),
+        averaging_s: advisory.averaging.seconds(),
+        drill: advisory.is_drill,
+    }
+}
+
+fn official(source: &OfficialSource, beside: &Beside) -> OfficialOut {
+    let percent = |percent: &Percent| match percent {
+        Percent::BelowOne => None,
+        Percent::Of(percent) => Some(f64::from(*percent) / 100.0),
+    };
+    OfficialOut {
+        file: source.file.to_owned(),
+        number: source.odds.number,
+        issued: instant(source.odds.issued),
+        base: instant(source.odds.base),
+        listed: beside.listed.clone(),
+        rules_use: RULES_USE.to_owned(),
+        by: beside.times.iter().map(|at| time(*at)).collect(),
+        winds: beside
+            .winds
+            .iter()
+            .map(|wind| OfficialWindOut {
+                wind_kt: number(wind.wind.get()),
+                official: wind.official.as_ref().map(|row| row.iter().map(percent).collect()),
+                ours: wind.ours.iter().map(|ours| chance(*ours)).collect(),
+            })
+            .collect(),
+    }
+}
+
+fn place(place: &AskedPlace, source: Option<&OfficialSource>) -> PlaceOut {
     PlaceOut {
         name: place.name.clone(),
         lat: number(place.position.latitude()),
         lon: number(place.position.longitude()),
         thresholds: place.winds.iter().map(|(wind, answer)| threshold(*wind, answer)).collect(),
+        official: source.zip(place.beside.as_ref()).map(|(source, beside)| official(source, beside)),
     }
 }
 

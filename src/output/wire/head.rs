@@ -58,6 +58,8 @@ pub struct ArrivalOut {
     pub chance: f64,
     /// The chance that it blew at issue.
     pub already_chance: f64,
+    /// The storm that brings it first; null if there is only one.
+    pub storm: Option<String>,
     /// The 10 % point of the onsets after issue: a time, "after_end" or null.
     pub earliest: Option<String>,
     /// The 50 % point.
@@ -104,6 +106,7 @@ pub fn arrival(arrival: &Arrival) -> ArrivalOut {
         computed: maybe(arrival.computed),
         chance: chance(arrival.chance),
         already_chance: chance(arrival.already),
+        storm: arrival.storm.clone(),
         earliest: point(arrival.earliest),
         likely: point(arrival.likely),
         latest: point(arrival.latest),

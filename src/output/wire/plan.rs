@@ -27,6 +27,10 @@ pub struct PlanOut {
     pub fits: bool,
     /// The advisory in force; null before the first.
     pub advisory: Option<AdvisoryOut>,
+    /// Those of other storms in force; the arrivals are of all storms together.
+    pub other_advisories: Vec<AdvisoryOut>,
+    /// What a second centre warns of, and that a drill is one, in words.
+    pub warnings: Vec<String>,
     /// Winds at places.
     pub arrivals: Vec<ArrivalOut>,
     /// The id of the stage in force; null if none is declared.
@@ -220,6 +224,8 @@ pub fn plan_out(plan: &Plan, setting: &Setting, since_before: Option<&Changes>) 
         now: time(plan.now),
         fits: plan.fits(),
         advisory: plan.advisory.as_ref().map(advisory),
+        other_advisories: plan.other_advisories.iter().map(advisory).collect(),
+        warnings: plan.warnings.clone(),
         arrivals: plan.arrivals.iter().map(arrival).collect(),
         stage_in_force: plan.stage_in_force().map(|stage| stage.id.clone()),
         stages: plan.stages.iter().map(stage).collect(),
