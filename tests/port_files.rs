@@ -76,7 +76,7 @@ fn eleven_faults_in_seven_files_are_all_found_at_once_each_in_its_place() {
     plant.toml:4:6 port-duplicate-id
     port.toml:3:1 port-missing-key
     port.toml:7:1 port-unknown-key
-    port.toml:24:12 port-bad-position
+    port.toml:27:12 port-bad-position
     rules.toml:6:24 rules-bad-value
     rules.toml:45:9 rules-unknown-stage
     ships.toml:7:9 port-unknown-berth
