@@ -11,7 +11,8 @@ use common::Reading;
 use divan::Bencher;
 use large_port::{EARLY, LATE, large_port};
 use snugdown::arrival::odds::Draw;
-use snugdown::plan::fold::{Inputs, plan_at};
+use snugdown::plan::fold::plan_at;
+use snugdown::plan::inputs::Inputs;
 
 fn main() {
     divan::main();

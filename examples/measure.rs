@@ -14,11 +14,13 @@ mod large_port;
 mod storms;
 
 use large_port::{EARLY, LATE, large_port};
-use snugdown::arrival::odds::{Draw, ask};
+use snugdown::arrival::odds::{Draw, ask_on};
+use snugdown::arrival::question::Question;
 use snugdown::cli::load::load;
 use snugdown::cli::planning::plans_until;
 use snugdown::cli::port_args::PortArgs;
-use snugdown::plan::fold::{Inputs, plan_at};
+use snugdown::plan::fold::plan_at;
+use snugdown::plan::inputs::Inputs;
 use snugdown::plan::sheet::{Plan, TaskState};
 use snugdown::time::moment::Moment;
 use std::path::Path;
@@ -58,23 +60,42 @@ fn peak() -> String {
     line.map_or_else(|| String::from("not told"), |kib| kib.trim().to_owned())
 }
 
+/// How the odds grow with scenarios, places and limits; the first rows on one core.
 fn arrivals() {
     let storm = storms::full_forecast();
     let table = storms::shipped().for_advisory(&storm);
-    let questions: Vec<_> = (0..20)
-        .flat_map(|i| {
-            let (row, column) = (f64::from(i % 10), f64::from(i / 10));
-            let position = storms::at(18.0 + row * 1.2, -64.0 - column * 4.0 - row * 0.8);
-            [34.0, 50.0, 64.0].map(|limit| storms::ask_about(&format!("{i} {limit}"), position, limit))
-        })
-        .collect();
-    for (scenarios, most) in [(1_000, 1_000), (1_000, 10_000)] {
-        let (ms, _) = timed(|| ask(&storm, &table, &questions, Draw { scenarios, most }));
+    let cases = [
+        (1, 1_000, 1_000, 20, 3),
+        (1, 1_000, 1_000, 20, 8),
+        (1, 1_000, 1_000, 20, 1),
+        (1, 1_000, 1_000, 40, 3),
+        (1, 2_000, 2_000, 20, 3),
+        (1, 1_000, 10_000, 20, 3),
+        (2, 10_000, 10_000, 20, 3),
+        (2, 10_000, 10_000, 100, 3),
+    ];
+    for (threads, scenarios, most, places, limits) in cases {
+        let asked = questions(places, limits);
+        let (ms, _) = timed(|| ask_on(threads, &storm, &table, &asked, Draw { scenarios, most }));
         println!(
-            "arrivals, {scenarios} to {most} scenarios x 20 places x 3 limits: {ms:.1} ms, peak {}",
+            "arrivals, {scenarios} to {most} scenarios x {places} places x {limits} limits, {threads} threads: {ms:.1} ms, \
+             peak {}",
             peak()
         );
     }
+}
+
+/// Places on both sides of the storm's track, ten to a row, with limits from 25 kt up.
+fn questions(places: u32, limits: u32) -> Vec<Question> {
+    let at = |i: u32| {
+        let (row, column) = (f64::from(i % 10), f64::from(i / 10));
+        storms::at(18.0 + row * 1.2, -64.0 - column * 8.0 / f64::from(places.div_ceil(10)) - row * 0.8)
+    };
+    // 34, 50 and 64 kt where there are three, as advisories have them.
+    let limit = |n: u32| if limits == 3 { [34.0, 50.0, 64.0][n as usize] } else { 25.0 + 6.0 * f64::from(n) };
+    (0..places)
+        .flat_map(|i| (0..limits).map(move |n| storms::ask_about(&format!("{i} {n}"), at(i), limit(n))))
+        .collect()
 }
 
 fn told(plan: &Plan) -> String {

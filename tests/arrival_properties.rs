@@ -8,7 +8,7 @@ use snugdown::advisory::forecast::{
     Advisory, Assumption, Ending, ForecastPoint, Quadrants, Reach, Widening, WindRadii,
 };
 use snugdown::arrival::errors::{ErrorRow, ErrorTable};
-use snugdown::arrival::odds::{Answer, Answers, Draw, LEAST_ONSETS, Quantile, ask};
+use snugdown::arrival::odds::{Answer, Answers, Draw, LEAST_ONSETS, Quantile, ask, ask_on};
 use snugdown::arrival::onset::Onset;
 use snugdown::arrival::question::Question;
 use snugdown::geo::position::Position;
@@ -400,5 +400,21 @@ fn ends_have_their_own_odds() {
     match (passed.end_quantile(half), passed.likely()) {
         (Quantile::At(end), Quantile::At(onset)) => assert!(end > onset),
         other => panic!("{other:?}"),
+    }
+}
+
+#[test]
+fn any_number_of_threads_gives_the_same_answers() {
+    let storm = full_forecast();
+    let table = shipped().for_advisory(&storm);
+    // Some near, some rarely reached, so that more scenarios are drawn for them.
+    let asked: Vec<Question> = (0..6)
+        .map(|i| ask_about(&format!("q{i}"), at(20.0 + 2.5 * f64::from(i), -68.0), 34.0 + 8.0 * f64::from(i)))
+        .collect();
+    let draw = Draw { scenarios: 3_500, most: 6_000 };
+    let alone = ask_on(1, &storm, &table, &asked, draw);
+    assert!(alone.answers.iter().any(|answer| answer.onsets.len() > 3_500), "none is drawn further");
+    for threads in [2, 7] {
+        assert!(ask_on(threads, &storm, &table, &asked, draw) == alone, "{threads} threads");
     }
 }

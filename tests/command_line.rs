@@ -239,3 +239,42 @@ fn the_manual_page_and_the_completions_name_every_command() {
     }
     assert!(page.contains("\\-\\-hours"), "{page}");
 }
+
+#[test]
+fn the_wind_at_a_place_is_told_in_words_and_as_json() {
+    let place = |arguments: &[&str]| run(&[&["wind", "demo-port"], arguments].concat());
+    let output = place(&["greywether", "--height", "50 m", "--over", "10 min", "--width", "80"]);
+    let shown = text(&output.stdout);
+    assert_eq!(output.status.code(), Some(0), "{}", text(&output.stderr));
+    for words in [
+        "INVENTED - EXERCISE",
+        "10-min mean at 50 m",
+        "RETURNS FROM THE OTHER SIDE",
+        "LIMITS HERE",
+        "CAUTIONS",
+    ] {
+        assert!(shown.contains(words), "{words} in\n{shown}");
+    }
+    assert!(shown.lines().all(|line| line.chars().count() <= 80), "{shown}");
+    // A name serves as well as an id, and the JSON has every hour of the forecast.
+    let json = place(&["Greywether Container Terminal", "--json"]);
+    let wind: Value = serde_json::from_slice(&json.stdout).unwrap();
+    assert_eq!(wind["kind"], "wind");
+    assert!(wind["hours"].as_array().unwrap().len() > 100);
+    let peak = &wind["peak_gust_kt"];
+    assert!(peak[0].as_f64() <= peak[1].as_f64() && peak[1].as_f64() <= peak[2].as_f64(), "{peak}");
+    assert!(wind["limits"][0]["met"]["chance"].as_f64().unwrap() > 0.5);
+}
+
+#[test]
+fn a_misspelt_place_a_gust_as_mean_and_a_height_above_all_masts_are_refused() {
+    let says = |arguments: &[&str]| {
+        let output = run(&[&["wind", "demo-port"], arguments].concat());
+        assert_eq!(output.status.code(), Some(2), "{arguments:?}");
+        text(&output.stderr)
+    };
+    assert!(says(&["greywhether"]).contains("did you mean \"greywether\"?"));
+    assert!(says(&["greywether", "--over", "3 s"]).contains("10 min"));
+    assert!(says(&["greywether", "--height", "900 m"]).contains("1 to 250 m"));
+    assert!(says(&["greywether", "--now", "2026-09-01T00:00Z"]).contains("no advisory has been taken"));
+}

@@ -136,6 +136,7 @@ fn damaged() -> Vec<(&'static str, Severity, String)> {
         ("advisory-pressure", warning, change(" 954 MB", " 95 MB")),
         ("advisory-wind", error, change("MAX WIND 130 KT", "MAX WIND 1E0 KT")),
         ("advisory-radii", error, change("34 KT... 80NE  60SE  50SW", "34 KT... 80NE  60SE  50SE")),
+        ("advisory-seas", warning, change("12 FT SEAS..210NE 120SE", "12 FT SEAS..210NE 120NE")),
         ("advisory-radius-speed", warning, change("34 KT... 80NE", "35 KT... 80NE")),
         ("advisory-valid-time", error, change("VALID 25/0000Z", "VALID 25/00Z")),
         ("advisory-position", error, change("14.2N 116.4W", "14.2N 11x.4W")),

@@ -105,6 +105,7 @@ fn every_code_is_explained_and_has_its_test() {
         include_str!("port_files.rs"),
         include_str!("port_file_faults.rs"),
         include_str!("rules_file_faults.rs"),
+        include_str!("high_seas.rs"),
     ];
     let guide = include_str!("../rules/README.md");
     let words = codes.split('"').filter(|word| word.starts_with("port-") || word.starts_with("rules-"));

@@ -55,7 +55,7 @@ fn a_missing_key_is_named_at_its_table() {
         "tasks.toml",
         ("not_before = [{ stage = \"R\", after = \"0 min\" }]", "not_before = [^{ after = \"0 min\" }]"),
         "rules-missing-key",
-        &["says none of wind, gust, stage, clock"],
+        &["says none of wind, gust, seas, stage, clock"],
     );
 }
 

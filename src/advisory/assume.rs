@@ -230,6 +230,7 @@ fn with_reaches(states: Vec<SketchPoint>, assumed: &mut Vec<Assumption>) -> Vec<
             max_wind: wind,
             gust: state.gust,
             radii: WindRadii { gale, storm, hurricane },
+            seas: None,
             qualifier: state.remark,
             place: state.place,
         });

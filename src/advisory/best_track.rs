@@ -149,6 +149,7 @@ fn forecast_point(point: BestPoint, notes: &mut Notes) -> Option<ForecastPoint> 
         max_wind: wind,
         gust: None,
         radii: WindRadii { gale, storm, hurricane },
+        seas: None,
         qualifier: point.kind,
         place: point.place,
     })

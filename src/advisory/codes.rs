@@ -1,7 +1,7 @@
 //! The codes of this room's findings, each with its meaning in one line.
 
 /// Code and meaning, in the order of the alphabet.
-pub const CODES: [(&str, &str); 73] = [
+pub const CODES: [(&str, &str); 74] = [
     ("advisory-after-the-end", "A forecast time follows the line that ends the storm; it is left out."),
     ("advisory-best-track-gap", "A time of a best track has no wind; it is left out."),
     ("advisory-binary", "The file is no text: a PDF document, a picture, an archive."),
@@ -55,6 +55,7 @@ pub const CODES: [(&str, &str); 73] = [
     ("advisory-reach-range", "A wind reaches farther than 600 n mi."),
     ("advisory-repeat-differs", "The repeated centre differs from the first; the first is used."),
     ("advisory-rising-inland", "The wind rises while the centre is inland."),
+    ("advisory-seas", "The line of high seas is damaged; their reach is left out."),
     ("advisory-season", "The year of the storm's number is not the one that was found for the text."),
     ("advisory-sharp-turn", "The track turns by more than 60 degrees in 6 h."),
     ("advisory-speed", "The centre would have to move faster than 70 kt."),

@@ -277,6 +277,7 @@ fn point(base: DateTime<Utc>, hour: i64, rows: &[&DeckRow], notes: &mut Notes) -
         max_wind: wind,
         gust: first.gust.filter(|gust| *gust >= wind),
         radii: WindRadii { gale, storm, hurricane },
+        seas: None,
         qualifier: qualifier(&first.kind).to_owned(),
         place: notes.place(first.range.clone()),
     })

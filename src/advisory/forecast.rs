@@ -5,7 +5,7 @@ use crate::geo::position::Position;
 use crate::time::moment::Minutes;
 use crate::units::bearing::Bearing;
 use crate::units::chance::Chance;
-use crate::units::length::NauticalMiles;
+use crate::units::length::{Metres, NauticalMiles};
 use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
 use crate::units::wind::Averaging;
@@ -105,6 +105,8 @@ pub struct ForecastPoint {
     pub gust: Option<Knots>,
     /// Reach of 34, 50 and 64 kt winds.
     pub radii: WindRadii,
+    /// Reach of high seas; `None` if the product does not say.
+    pub seas: Option<Seas>,
     /// "POST-TROP/EXTRATROP", "INLAND": verbatim; empty if none.
     pub qualifier: String,
     /// Where in the text it stands, for findings.
@@ -141,6 +143,15 @@ pub enum Reach {
     NotGiven,
     /// The greatest reach anywhere in each quadrant; all zero if that wind does not blow anywhere.
     Given(Quadrants),
+}
+
+/// How far seas of a height reach.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Seas {
+    /// The significant height: 12 ft in texts up to 2024, 4 m in newer ones.
+    pub height: Metres,
+    /// The greatest reach in each quadrant; all zero if there are none.
+    pub reach: Quadrants,
 }
 
 /// A distance for each quadrant of the compass, as tropical cyclone advisories order them.

@@ -321,6 +321,7 @@ fn point(state: &JointState, valid: DateTime<Utc>, notes: &mut Notes) -> Option<
         max_wind: wind,
         gust: state.gust,
         radii: WindRadii { gale, storm, hurricane },
+        seas: None,
         qualifier: state.qualifier.clone(),
         place: notes.place(state.range.clone()),
     })

@@ -163,6 +163,7 @@ fn point(state: &State, valid: DateTime<Utc>, notes: &mut Notes) -> Option<Forec
         max_wind: wind,
         gust: state.gust,
         radii: WindRadii { gale, storm, hurricane },
+        seas: state.seas,
         qualifier: state.qualifier.clone(),
         place: notes.place(state.range.clone()),
     })

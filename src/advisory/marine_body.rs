@@ -5,8 +5,8 @@
 //! like a figure: what no recogniser takes is never passed over silently.
 
 use crate::advisory::cursor::{Cursor, is_coordinate, is_numeric, is_quadrant_distance};
-use crate::advisory::forecast::{Motion, Quadrants};
-use crate::advisory::marine_state::{Body, State, is_at_key, take_motion, take_qualifier};
+use crate::advisory::forecast::{Motion, Quadrants, Seas};
+use crate::advisory::marine_state::{Body, State, is_at_key, take_motion, take_qualifier, take_seas_height};
 use crate::advisory::notes::Notes;
 use crate::advisory::reach_rule::threshold;
 use crate::advisory::words::{DOTS, Word};
@@ -253,8 +253,8 @@ impl Reader<'_, '_, '_> {
         let mut ahead = self.cursor.clone();
         let is_named = ahead.take("RADIUS IN NM OF");
         let wind = ahead.quantity("KT");
-        let seas = if wind.is_none() { ahead.quantity("FT").or_else(|| ahead.quantity("M")) } else { None };
-        let is_seas = seas.is_some() && ahead.take("SEAS");
+        let height = if wind.is_none() { take_seas_height(&mut ahead) } else { None };
+        let is_seas = height.is_some() && ahead.take("SEAS");
         if !is_seas && wind.is_none() {
             return false;
         }
@@ -266,25 +266,34 @@ impl Reader<'_, '_, '_> {
         }
         let quadrants = ahead.quadrants();
         self.cursor = ahead;
-        if is_seas {
-            return true;
-        }
         let range = self.cursor.range_since(at);
-        match (quadrants, wind.and_then(threshold)) {
-            (None, _) => {
-                let found = format!("\"{}\" does not give four radii", self.notes.quote(range.clone()));
-                let to_do = "each of NE, SE, SW and NW must stand there once: fetch the text again";
-                self.notes.error("advisory-radii", range, found, to_do);
-                self.skip_damaged();
+        let seas = height.filter(|_| is_seas);
+        match (quadrants, seas, wind.and_then(threshold)) {
+            (None, _, _) => self.no_quadrants(is_seas, range),
+            (Some(reach), Some(height), _) => {
+                if let Some(state) = self.body.states.last_mut() {
+                    state.seas.get_or_insert(Seas { height, reach });
+                }
             }
-            (Some(_), None) => {
+            (Some(_), None, None) => {
                 let found = format!("radii of another wind: \"{}\"", self.notes.quote(range.clone()));
                 let to_do = "only those of 34, 50 and 64 kt are used";
                 self.notes.warning("advisory-radius-speed", range, found, to_do);
             }
-            (Some(quadrants), Some(index)) => self.keep_radii(index, quadrants, range),
+            (Some(quadrants), None, Some(index)) => self.keep_radii(index, quadrants, range),
         }
         true
+    }
+
+    fn no_quadrants(&mut self, is_seas: bool, range: Range<usize>) {
+        let found = format!("\"{}\" does not give four radii", self.notes.quote(range.clone()));
+        let to_do = "each of NE, SE, SW and NW must stand there once: fetch the text again";
+        if is_seas {
+            self.notes.warning("advisory-seas", range, found, to_do);
+        } else {
+            self.notes.error("advisory-radii", range, found, to_do);
+        }
+        self.skip_damaged();
     }
 
     fn keep_radii(&mut self, index: usize, quadrants: Quadrants, range: Range<usize>) {

@@ -1,11 +1,11 @@
 //! What the sentences of a Forecast/Advisory say, before months and rules are applied.
 
 use crate::advisory::cursor::{Cursor, DayTime, is_numeric};
-use crate::advisory::forecast::{Motion, Quadrants};
+use crate::advisory::forecast::{Motion, Quadrants, Seas};
 use crate::advisory::words::DOTS;
 use crate::geo::position::Position;
 use crate::units::bearing::Bearing;
-use crate::units::length::NauticalMiles;
+use crate::units::length::{METRES_PER_FOOT, Metres, NauticalMiles};
 use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
 use std::ops::Range;
@@ -70,6 +70,8 @@ pub struct State {
     pub is_damaged: bool,
     /// Radii lines of 34, 50 and 64 kt, and their bytes.
     pub radii: [Option<(Quadrants, Range<usize>)>; 3],
+    /// The line of high seas.
+    pub seas: Option<Seas>,
 }
 
 impl State {
@@ -85,6 +87,7 @@ impl State {
             gust: None,
             is_damaged: false,
             radii: [const { None }; 3],
+            seas: None,
         }
     }
 }
@@ -124,4 +127,10 @@ pub fn take_motion(cursor: &mut Cursor) -> Option<Motion> {
     *cursor = ahead;
     // A storm that moves at 0 kt has no direction, whatever the text prints beside it.
     Some(if speed > Knots::ZERO { Motion::Towards(bearing, speed) } else { Motion::Stationary })
+}
+
+/// Takes "12 FT" or "4 M".
+pub fn take_seas_height(cursor: &mut Cursor) -> Option<Metres> {
+    let feet = cursor.quantity("FT").map(|feet| feet * METRES_PER_FOOT);
+    Metres::new(feet.or_else(|| cursor.quantity("M"))?).ok()
 }

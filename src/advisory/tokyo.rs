@@ -192,6 +192,7 @@ fn points(
                 storm: given(Knots::STORM, state.storm_radii),
                 hurricane: given(Knots::HURRICANE, None),
             },
+            seas: None,
             qualifier: state.qualifier.clone(),
             place: notes.place(state.range.clone()),
         });

@@ -67,7 +67,7 @@ fn earlier(a: &Answer, b: &Answer) -> Answer {
         first_of(since(*x, a.issued, issued), since(*y, b.issued, issued))
     };
     let onsets = a.onsets.iter().zip(&b.onsets).map(|(x, y)| both(x, y)).collect();
-    let question = Question { key: a.key.clone(), position: a.position, limit: a.limit };
+    let question = Question { key: a.key.clone(), position: a.position, sought: a.sought };
     answer_of(&question, (issued, end), onsets, both(&a.single, &b.single))
 }
 

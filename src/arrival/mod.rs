@@ -1,6 +1,7 @@
 //! Arrival: error tables, scenarios, and the chance that a wind reaches a place by a time.
 
 pub mod course;
+pub mod drawing;
 pub mod earlier;
 pub mod errors;
 pub mod errors_reader;
@@ -11,3 +12,6 @@ pub mod onset;
 pub mod own_track;
 pub mod question;
 pub mod scenario;
+pub mod seas;
+pub mod series;
+pub mod threads;

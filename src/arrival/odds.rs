@@ -2,16 +2,14 @@
 
 use crate::advisory::forecast::Advisory;
 use crate::arrival::course::Course;
+use crate::arrival::drawing::Drawing;
 use crate::arrival::errors::ErrorTable;
-use crate::arrival::keyed::{BLOCK, Keyed};
-use crate::arrival::onset::{Onset, ScenarioOnset, Watch};
-use crate::arrival::question::Question;
-use crate::arrival::scenario::{Draws, Scenario};
+use crate::arrival::onset::{Onset, ScenarioOnset};
+use crate::arrival::question::{Question, Sought};
 use crate::geo::position::Position;
 use crate::time::moment::Moment;
 use crate::units::chance::Chance;
-use crate::units::speed::Knots;
-use std::collections::BTreeMap;
+use std::thread::available_parallelism;
 
 /// Below this many onsets no quantile is given: a 10 % point of fewer hangs on two or three scenarios. The
 /// program's rule.
@@ -59,8 +57,8 @@ pub struct Answer {
     pub key: String,
     /// Where.
     pub position: Position,
-    /// The wind asked about.
-    pub limit: Knots,
+    /// What was looked for there.
+    pub sought: Sought,
     /// Issue time of the advisory.
     pub issued: Moment,
     /// End of its forecast.
@@ -201,7 +199,7 @@ fn point(sorted: &[Moment], beyond: usize, p: Chance) -> Quantile {
 /// All answers of one ask, in the order of the questions.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Answers {
-    /// One for each question.
+    /// One for each question that the advisory allows to answer.
     pub answers: Vec<Answer>,
     /// How many scenarios, the first ones, are common to all answers.
     pub joint: usize,
@@ -223,27 +221,46 @@ impl Answers {
 /// the other questions, nor their order change an answer.
 #[must_use]
 pub fn ask(advisory: &Advisory, table: &ErrorTable, questions: &[Question], draw: Draw) -> Answers {
+    ask_on(available_parallelism().map_or(1, usize::from), advisory, table, questions, draw)
+}
+
+/// The same on so many threads at most: their number changes nothing but the time.
+#[must_use]
+pub fn ask_on(
+    threads: usize,
+    advisory: &Advisory,
+    table: &ErrorTable,
+    questions: &[Question],
+    draw: Draw,
+) -> Answers {
     let joint = draw.scenarios.max(1);
     let mut notes: Vec<String> = table.notes().to_vec();
     notes.extend(advisory.own_spread_words());
     notes.extend(advisory.assumed.iter().map(|assumption| assumption.what.clone()));
     let Some(course) = Course::of(advisory, table) else {
         let issued = Moment::at_or_before(advisory.issued);
-        let answers = questions
-            .iter()
+        let winds = questions.iter().filter(|question| question.sought != Sought::Seas);
+        let answers = winds
             .map(|q| answer_of(q, (issued, issued), vec![ScenarioOnset::NEVER; joint], ScenarioOnset::NEVER))
             .collect();
         return Answers { answers, joint, notes };
     };
     notes.extend(course.notes.iter().cloned());
-    let mut drawing = Drawing::new(&course, advisory, questions);
-    drawing.draw(joint);
-    drawing.draw_more(joint, draw.most);
+    let drawing = Drawing::new(&course, advisory, questions);
+    let mut onsets = drawing.first(threads, joint);
+    drawing.more(&mut onsets, joint, draw.most, LEAST_ONSETS);
     let singles = drawing.single_track();
+    if drawing.lacks_seas() {
+        notes.push(
+            "the advisory does not give the reach of high seas: limits of seas are not answered".to_owned(),
+        );
+    }
     let answers = questions
         .iter()
-        .zip(drawing.onsets)
+        .zip(onsets)
         .zip(singles)
+        // What the advisory says nothing about has no answer; "never" would be one.
+        .filter(|((_, onsets), _)| !onsets.is_empty())
         .map(|((q, onsets), single)| answer_of(q, (course.issued, course.forecast_end), onsets, single))
         .collect();
     Answers { answers, joint, notes }
@@ -273,7 +290,7 @@ pub fn answer_of(
     Answer {
         key: question.key.clone(),
         position: question.position,
-        limit: question.limit,
+        sought: question.sought,
         issued,
         forecast_end,
         already: onsets.iter().filter(|scenario| scenario.onset == Onset::Already).count(),
@@ -282,131 +299,5 @@ pub fn answer_of(
         onsets,
         single_track,
         single,
-    }
-}
-
-/// Questions at one place, so that the geometry is worked out once for all its limits.
-struct Group {
-    watch: Watch,
-    /// Indices of the questions, by rising limit.
-    questions: Vec<usize>,
-}
-
-struct Drawing<'a> {
-    course: &'a Course,
-    keyed: Keyed,
-    groups: Vec<Group>,
-    onsets: Vec<Vec<ScenarioOnset>>,
-    scenario: Scenario,
-    block: Option<(usize, Draws)>,
-}
-
-impl<'a> Drawing<'a> {
-    fn new(course: &'a Course, advisory: &Advisory, questions: &[Question]) -> Drawing<'a> {
-        let mut places: BTreeMap<(u64, u64), Vec<(f64, usize)>> = BTreeMap::new();
-        for (index, question) in questions.iter().enumerate() {
-            let place = (question.position.latitude().to_bits(), question.position.longitude().to_bits());
-            places.entry(place).or_default().push((question.limit.get(), index));
-        }
-        let groups = places
-            .into_values()
-            .filter_map(|mut limits| {
-                limits.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
-                let position = questions.get(limits.first()?.1)?.position;
-                let (limits, questions) = limits.into_iter().unzip();
-                Some(Group { watch: Watch::new(course.vector(position), limits), questions })
-            })
-            .collect();
-        let storm = advisory.storm.id.as_deref().unwrap_or(&advisory.storm.name);
-        Drawing {
-            course,
-            keyed: Keyed::storm(storm),
-            groups,
-            onsets: vec![Vec::new(); questions.len()],
-            scenario: Scenario::default(),
-            block: None,
-        }
-    }
-
-    /// The first `count` scenarios for every question.
-    fn draw(&mut self, count: usize) {
-        for index in 0..count {
-            self.realise(index);
-            for group in &self.groups {
-                let told = group.watch.follow(self.course, &self.scenario);
-                for (question, onset) in group.questions.iter().zip(told) {
-                    if let Some(onsets) = self.onsets.get_mut(*question) {
-                        onsets.push(onset);
-                    }
-                }
-            }
-        }
-    }
-
-    /// Up to `most` scenarios for the questions with some onsets, but fewer than [`LEAST_ONSETS`].
-    fn draw_more(&mut self, from: usize, most: usize) {
-        let groups = std::mem::take(&mut self.groups);
-        let mut start = from;
-        while start < most {
-            let lacking: Vec<(&Group, Vec<usize>)> = groups
-                .iter()
-                .map(|group| (group, self.lacking(group)))
-                .filter(|(_, questions)| !questions.is_empty())
-                .collect();
-            if lacking.is_empty() {
-                break;
-            }
-            let end = (start + BLOCK).min(most);
-            for index in start..end {
-                self.realise(index);
-                for (group, questions) in &lacking {
-                    let told = group.watch.follow(self.course, &self.scenario);
-                    for (question, onset) in group.questions.iter().zip(told) {
-                        if let Some(onsets) = self.onsets.get_mut(*question)
-                            && questions.contains(question)
-                        {
-                            onsets.push(onset);
-                        }
-                    }
-                }
-            }
-            start = end;
-        }
-        self.groups = groups;
-    }
-
-    /// The questions of a group that want more scenarios. One without any onset gets none: 10,000 could bring
-    /// thirty, and with such a chance the first 1,000 show none in one case of twenty at most.
-    fn lacking(&self, group: &Group) -> Vec<usize> {
-        let wants = |question: &&usize| {
-            let onsets = self.onsets.get(**question).map_or(&[][..], Vec::as_slice);
-            let after_issue = onsets.iter().filter(|o| matches!(o.onset, Onset::At(_))).count();
-            (1..LEAST_ONSETS).contains(&after_issue)
-        };
-        group.questions.iter().filter(wants).copied().collect()
-    }
-
-    fn realise(&mut self, index: usize) {
-        let number = index / BLOCK;
-        let draws = match self.block.take() {
-            Some((kept, draws)) if kept == number => draws,
-            _ => Draws::of(self.course, self.keyed, number),
-        };
-        self.scenario.draw(self.course, &draws, index);
-        self.block = Some((number, draws));
-    }
-
-    fn single_track(&mut self) -> Vec<ScenarioOnset> {
-        let mut singles = vec![ScenarioOnset::NEVER; self.onsets.len()];
-        self.scenario.single_track(self.course);
-        for group in &self.groups {
-            let told = group.watch.follow(self.course, &self.scenario);
-            for (question, onset) in group.questions.iter().zip(told) {
-                if let Some(single) = singles.get_mut(*question) {
-                    *single = onset;
-                }
-            }
-        }
-        singles
     }
 }

@@ -7,6 +7,7 @@
 use crate::arrival::course::{Course, Step, Storm};
 use crate::arrival::keyed::{BLOCK, Component, Keyed};
 use crate::wind::field::Vortex;
+use crate::wind::profile::GIVEN_SPEEDS_KT;
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, displaced, dot, plus};
 use std::cell::OnceCell;
 
@@ -157,6 +158,16 @@ impl Scenario {
         let moved = plus(next.centre, -1.0, here.centre);
         let passes = dot(from_here, moved) > 0.0 && dot(from_next, moved) < 0.0;
         usize::from(nearer2 > reach * reach && !passes)
+    }
+
+    /// The centre at step `k`, and the mean reach of 34 kt (n mi) that a storm of this strength and size has, or would
+    /// have were it of gale force; `None` beyond the last step.
+    #[must_use]
+    pub fn gale_reach_nmi(&self, course: &Course, k: usize) -> Option<(Vector, f64)> {
+        let (state, storm) = self.state(course, k)?;
+        let expected = &storm.table.expected;
+        let usual = expected.scale(0, state.wind_kt.max(GIVEN_SPEEDS_KT[0]));
+        Some((state.centre, state.size * expected.mean_gale_ratio * usual))
     }
 
     /// The realised storm at step `k`; `None` beyond the last step.

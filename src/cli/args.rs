@@ -6,6 +6,7 @@ use crate::cli::check::CheckArgs;
 use crate::cli::completions::CompletionsArgs;
 use crate::cli::now::NowArgs;
 use crate::cli::plan::PlanArgs;
+use crate::cli::wind::WindArgs;
 use clap::{Parser, Subcommand};
 
 /// From a tropical-cyclone forecast to a port's timed closure checklist.
@@ -28,6 +29,7 @@ Examples:
   snugdown now demo-port --for 'pilot office'   one screen: what matters now
   snugdown changes demo-port                    what the last news moved, and why
   snugdown arrivals advisory.txt --at 'Pilot station=22.3,-40.8'
+  snugdown wind demo-port greywether            the wind there, hour by hour
 
 Times: RFC 3339 (2026-09-17T06:20-03:00, 2026-09-17T09:20Z), or the port's local time ('2026-09-17 06:20').
 
@@ -52,6 +54,8 @@ pub enum Command {
     Changes(ChangesArgs),
     /// Say when gale, storm and hurricane force arrive at places, and with what chance.
     Arrivals(ArrivalsArgs),
+    /// Show the wind at a place hour by hour: bands, gusts, direction, lull, end, and when each limit there is met.
+    Wind(WindArgs),
     /// Write a shell's completions to standard output.
     Completions(CompletionsArgs),
     /// Write the manual page to standard output.

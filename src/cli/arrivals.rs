@@ -7,7 +7,7 @@ use crate::advisory::read::read_chosen;
 use crate::arrival::earlier::{earlier_of, mostly_first};
 use crate::arrival::errors::ErrorTables;
 use crate::arrival::odds::{Answer, Answers, Draw, ask};
-use crate::arrival::question::Question;
+use crate::arrival::question::{Question, Sought};
 use crate::cli::clock::{port_now, zoned_time};
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::folder::read_bytes;
@@ -295,7 +295,11 @@ fn answers(advisory: &Advisory, places: &[NamedPlace], tables: &ErrorTables) -> 
     let questions: Vec<Question> = (0..)
         .zip(places)
         .flat_map(|(number, place)| {
-            WINDS.map(|limit| Question { key: key(number, limit), position: place.position, limit })
+            WINDS.map(|limit| Question {
+                key: key(number, limit),
+                position: place.position,
+                sought: Sought::Wind(limit),
+            })
         })
         .collect();
     ask(advisory, &tables.for_advisory(advisory), &questions, Draw::default())

@@ -17,3 +17,4 @@ pub mod planning;
 pub mod port_args;
 pub mod run;
 pub mod screen;
+pub mod wind;

@@ -3,7 +3,8 @@
 use crate::arrival::odds::Draw;
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::load::Loaded;
-use crate::plan::fold::{History, Inputs, plan_at};
+use crate::plan::fold::{History, plan_at};
+use crate::plan::inputs::Inputs;
 use crate::plan::sheet::Plan;
 use crate::record::event::What;
 use crate::schedule::search::Effort;

@@ -3,7 +3,7 @@
 use crate::cli::args::{Args, Command};
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::screen::{tell, tell_findings};
-use crate::cli::{arrivals, changes, check, completions, man, now, plan};
+use crate::cli::{arrivals, changes, check, completions, man, now, plan, wind};
 use clap::{CommandFactory, Parser};
 use std::ffi::OsString;
 use std::process::ExitCode;
@@ -38,6 +38,7 @@ fn answer(command: &Command) -> Result<Exit, Failure> {
         Command::Now(args) => now::run(args),
         Command::Changes(args) => changes::run(args),
         Command::Arrivals(args) => arrivals::run(args),
+        Command::Wind(args) => wind::run(args),
         Command::Completions(args) => completions::run(args, Args::command()),
         Command::Man => man::run(Args::command()),
     }

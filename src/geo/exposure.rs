@@ -65,6 +65,16 @@ pub struct ExposureSector {
     pub class: ExposureClass,
 }
 
+impl fmt::Display for Exposure {
+    /// "off-land, off-sea for winds from 045 to 180".
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        self.otherwise.fmt(f)?;
+        self.sectors.iter().try_for_each(|sector| {
+            write!(f, ", {} for winds from {} to {}", sector.class, sector.from, sector.to)
+        })
+    }
+}
+
 impl Exposure {
     /// The same class for all winds.
     #[must_use]

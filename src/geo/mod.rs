@@ -3,5 +3,6 @@
 pub mod daylight;
 pub mod exposure;
 pub mod geodesic;
+pub mod land;
 pub mod position;
 pub mod position_text;

@@ -16,5 +16,7 @@ pub mod now_text;
 pub mod plan_text;
 pub mod setting;
 pub mod task_text;
+pub mod wind_asked;
+pub mod wind_text;
 pub mod wire;
 pub mod words;

@@ -134,6 +134,24 @@ pub fn count(number: usize, one: &str) -> String {
     format!("{number}\u{a0}{one}{}", if number == 1 { "" } else { "s" })
 }
 
+/// What a page about the wind at a place does not cover.
+#[must_use]
+pub fn wind_cautions(setting: &Setting) -> Vec<String> {
+    let official = setting.official_source;
+    [
+        format!(
+            "Squalls in the outer bands can bring gusts of gale force hours before the gale itself, and none of them is \
+             in these figures: heed squall and thunderstorm warnings of {official}."
+        ),
+        "The band is the spread of the forecast, not of the gusts of one hour. Ordinary weather, terrain, buildings, cranes \
+         and sheds that funnel the wind are not in it; below 20 kt the storm does not make the wind."
+            .to_owned(),
+        "Seas and swell are for deep, open water; the bar, the entrance and long-period surge at berths differ.".to_owned(),
+        "The wind on the spot overrules the figure, whatever it says.".to_owned(),
+    ]
+    .into()
+}
+
 /// Who decides, and what the numbers do not cover; every full plan ends with these.
 #[must_use]
 pub fn cautions(setting: &Setting) -> Vec<String> {

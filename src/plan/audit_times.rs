@@ -9,6 +9,7 @@ use crate::rules::task::{Leave, NotBefore};
 use crate::time::moment::{Minutes, Moment};
 use crate::units::chance::Chance;
 use crate::work::graph::Task;
+use crate::work::observed::first_met;
 use crate::work::questions::question_key;
 use crate::work::reckoned::moment_of;
 
@@ -51,14 +52,7 @@ fn stage_due(inputs: AuditInputs<'_>, stage: &Stage, depth: usize) -> Option<Mom
             let arrival = inputs.book.arrival(wind, reckoning.unwrap_or(inputs.rules.reckoning))?;
             Some(arrival.at - *within)
         }
-        Trigger::Observed { wind } => {
-            let seen = inputs.situation.observed.iter().filter(|seen| {
-                seen.place == wind.place
-                    && seen.averaging == wind.limit.averaging
-                    && seen.wind >= wind.limit.speed
-            });
-            seen.map(|seen| Moment::at_or_before(seen.at)).min()
-        }
+        Trigger::Observed { wind } => first_met(wind, inputs.port, &inputs.situation.observed),
         Trigger::Stage { stage: other, after } => {
             let other = find_stage(inputs.rules, other)?;
             stage_time(inputs, other, depth + 1).map(|at| at + *after)

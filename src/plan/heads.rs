@@ -14,7 +14,7 @@ use crate::units::chance::Chance;
 use crate::units::wind::Averaging;
 use crate::work::graph::WorkGraph;
 use crate::work::questions::{HEAD_WINDS, head_key, head_wind};
-use crate::work::reckoned::{ArrivalBook, reckon};
+use crate::work::reckoned::{ArrivalBook, Basis, reckon};
 use crate::work::timed::{Standing, Timed};
 
 /// Gale, storm and hurricane force at every place, reference places first.
@@ -79,7 +79,7 @@ pub fn stages(rules: &Rules, timed: &Timed, situation: &Situation, port: &Port) 
             because: times
                 .trigger
                 .and_then(|t| stage.any.get(t))
-                .map_or_else(String::new, |trigger| trigger_words(trigger, port, times.is_adopted)),
+                .map_or_else(String::new, |trigger| trigger_words(trigger, port, times.basis)),
             declared: times.declared.map(|from| (from, by.unwrap_or_default())),
             lifted: times.lifted,
             port_status: stage.status.clone(),
@@ -89,11 +89,15 @@ pub fn stages(rules: &Rules, timed: &Timed, situation: &Situation, port: &Port) 
     lines.collect()
 }
 
-fn trigger_words(trigger: &Trigger, port: &Port, is_adopted: bool) -> String {
+fn trigger_words(trigger: &Trigger, port: &Port, basis: Basis) -> String {
     let place = |id: &str| port.place(id).map_or_else(|| id.to_owned(), |place| place.name.clone());
     match trigger {
         Trigger::Forecast { wind, within, .. } => {
-            let counted = if is_adopted { "adopted" } else { "computed" };
+            let counted = match basis {
+                Basis::Adopted => "adopted",
+                Basis::Computed => "computed",
+                Basis::Observed => "observed",
+            };
             format!("{within} before the {counted} arrival of {} at {}", wind.limit, place(&wind.place))
         }
         Trigger::Observed { wind } => format!("{} observed at {}", wind.limit, place(&wind.place)),

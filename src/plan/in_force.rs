@@ -3,7 +3,7 @@
 use crate::advisory::forecast::Advisory;
 use crate::advisory::same_storm::is_same_storm;
 use crate::port::harbour::Port;
-use crate::record::situation::TakenAdvisory;
+use crate::record::situation::{Adopted, Said, Situation, TakenAdvisory};
 use chrono::{DateTime, Utc};
 use std::collections::BTreeMap;
 
@@ -76,6 +76,20 @@ pub fn in_force<'a>(
     found.storms.retain(|chosen| !is_over(chosen) || (!is_any_left && Some(chosen.file) == newest));
     found.second_centres.retain(|chosen| !is_over(chosen));
     found
+}
+
+/// The names of the advisories that were in force when an arrival was adopted, sorted.
+#[must_use]
+pub fn at_adoption<'a>(
+    forecasts: &'a BTreeMap<String, Advisory>,
+    port: &Port,
+    then: &'a Situation,
+    adopted: &Adopted,
+) -> Vec<&'a str> {
+    let told = |said: &Said| (said.known, said.nth);
+    let before = then.advisories.iter().take_while(|taken| told(&taken.said) < told(&adopted.said)).count();
+    let taken = then.advisories.get(..before).unwrap_or(&[]);
+    in_force(forecasts, port, taken, adopted.said.known).files()
 }
 
 /// By what one advisory of a storm replaces another.

@@ -1,10 +1,10 @@
 //! What would make given-up tasks fit: found by planning again with it, with the last minute for deciding it.
 
+use crate::arrival::threads::each;
 use crate::plan::adjust::Adjustments;
 use crate::plan::draft::{Draft, DraftInputs, draft};
 use crate::plan::problem::class;
 use crate::plan::sheet::{Plan, Relief, ReliefKind, ReliefStep};
-use crate::plan::threads::each;
 use crate::rules::task::Leave;
 use crate::schedule::search::Effort;
 use crate::time::moment::{Minutes, Moment};

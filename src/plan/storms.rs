@@ -2,10 +2,9 @@
 //! centre warns of.
 
 use crate::advisory::same_storm::is_same_storm;
-use crate::arrival::earlier::earlier_of;
-use crate::arrival::odds::Answers;
 use crate::plan::in_force::{Chosen, InForce};
 use crate::plan::make::{Forecast, advisory_line};
+use crate::plan::odds::AllOdds;
 use crate::plan::sheet::Plan;
 use crate::port::harbour::Port;
 use crate::record::situation::Situation;
@@ -14,52 +13,17 @@ use crate::time::moment::Moment;
 use crate::units::speed::Knots;
 use crate::work::questions::head_key;
 use crate::work::reckoned::reckon;
-use std::collections::{BTreeMap, BTreeSet};
-
-/// The odds of every advisory, and of every set of storms that was in force together.
-#[derive(Clone, Debug)]
-pub struct Odds {
-    single: BTreeMap<String, Answers>,
-    together: BTreeMap<Vec<String>, Answers>,
-}
-
-impl Odds {
-    /// From the odds of single advisories, for all `sets` of advisories in force at one time or another.
-    #[must_use]
-    pub fn new(single: BTreeMap<String, Answers>, sets: &BTreeSet<Vec<String>>) -> Odds {
-        let several = sets.iter().filter(|files| files.len() > 1);
-        let together = several.filter_map(|files| {
-            let storms: Option<Vec<&Answers>> = files.iter().map(|file| single.get(file)).collect();
-            Some((files.clone(), earlier_of(&storms?)?))
-        });
-        let together = together.collect();
-        Odds { single, together }
-    }
-
-    /// The odds of some advisories together; `files` sorted.
-    #[must_use]
-    pub fn of(&self, files: &[&str]) -> Option<&Answers> {
-        match files {
-            [] => None,
-            [file] => self.single.get(*file),
-            _ => {
-                let files: Vec<String> = files.iter().map(|file| (*file).to_owned()).collect();
-                self.together.get(&files)
-            }
-        }
-    }
-}
 
 /// What a plan stands on: the odds of all storms in force, headed by the advisory whose storm brings gales to the port's
 /// reference place first; the newest of them if none does.
 #[must_use]
 pub fn forecast_of<'a>(
     force: &InForce<'a>,
-    odds: &'a Odds,
+    odds: &'a AllOdds<'_>,
     port: &Port,
     usual: Reckoning,
 ) -> Option<Forecast<'a>> {
-    let answers = odds.of(&force.files())?;
+    let answers = odds.get(&force.files())?;
     let gale =
         |chosen: &&Chosen<'a>| computed(odds, chosen.file, &head_key(&port.reference, Knots::GALE), usual);
     let first = force.storms.iter().min_by_key(|chosen| gale(chosen).unwrap_or(Moment::LATEST))?;
@@ -67,21 +31,21 @@ pub fn forecast_of<'a>(
     Some(Forecast { advisory: first.advisory, answers, file: first.file, known })
 }
 
-fn computed(odds: &Odds, file: &str, key: &str, usual: Reckoning) -> Option<Moment> {
-    odds.of(&[file]).and_then(|answers| answers.get(key)).and_then(|answer| reckon(answer, usual))
+fn computed(odds: &AllOdds<'_>, file: &str, key: &str, usual: Reckoning) -> Option<Moment> {
+    odds.get(&[file]).and_then(|answers| answers.get(key)).and_then(|answer| reckon(answer, usual))
 }
 
 /// Tells in a plan of the other storms, of which storm brings each wind first, and of what second centres say.
 pub fn tell_of_storms(
     plan: &mut Plan,
     force: &InForce<'_>,
-    odds: &Odds,
+    odds: &AllOdds<'_>,
     (port, usual): (&Port, Reckoning),
     situation: &Situation,
 ) {
     let head = plan.advisory.as_ref().map(|advisory| advisory.file.clone());
     for chosen in force.storms.iter().filter(|chosen| Some(chosen.file) != head.as_deref()) {
-        let Some(answers) = odds.of(&[chosen.file]) else { continue };
+        let Some(answers) = odds.get(&[chosen.file]) else { continue };
         let known = Moment::at_or_after(chosen.known);
         let forecast = Forecast { advisory: chosen.advisory, answers, file: chosen.file, known };
         plan.other_advisories.push(advisory_line(&forecast, situation));
@@ -108,7 +72,7 @@ pub fn tell_of_storms(
 fn second_words(
     second: &Chosen<'_>,
     official: Option<&Chosen<'_>>,
-    odds: &Odds,
+    odds: &AllOdds<'_>,
     (port, usual): (&Port, Reckoning),
 ) -> String {
     let averaging = second.advisory.averaging;

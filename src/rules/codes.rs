@@ -28,6 +28,8 @@ pub const UNKNOWN_STAGE: &str = "rules-unknown-stage";
 pub const STAGE_ITSELF: &str = "rules-stage-itself";
 /// An arrival reckoned as the earliest or most likely without a least chance.
 pub const NO_LEAST_CHANCE: &str = "rules-no-least-chance";
+/// Seas of a height whose reach advisories do not give.
+pub const SEAS_NOT_GIVEN: &str = "rules-seas-not-given";
 /// A chance of 0 or 100 %, which no forecast can tell from one nearby.
 pub const BAD_CHANCE: &str = "rules-bad-chance";
 /// A class that no member of the pool has.

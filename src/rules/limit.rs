@@ -4,12 +4,42 @@ use crate::time::moment::Minutes;
 use crate::units::chance::Chance;
 use crate::units::wind::WindLimit;
 use chrono::{DateTime, Utc};
+use std::fmt;
 
-/// A wind at a place.
+/// What must not be met.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Limit {
+    /// A wind.
+    Wind(WindLimit),
+    /// High seas: those whose reach advisories give, of 12 ft (3.7 m) or 4 m significant height.
+    Seas,
+}
+
+impl Limit {
+    /// The wind, if it is one.
+    #[must_use]
+    pub fn wind(&self) -> Option<&WindLimit> {
+        match self {
+            Limit::Wind(wind) => Some(wind),
+            Limit::Seas => None,
+        }
+    }
+}
+
+impl fmt::Display for Limit {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Limit::Wind(wind) => wind.fmt(f),
+            Limit::Seas => f.write_str("high seas (12 ft)"),
+        }
+    }
+}
+
+/// A limit at a place.
 #[derive(Clone, Debug, PartialEq)]
-pub struct WindAt {
-    /// The wind that must not be met.
-    pub limit: WindLimit,
+pub struct LimitAt {
+    /// What must not be met.
+    pub limit: Limit,
     /// The id of the place.
     pub place: String,
 }
@@ -35,7 +65,7 @@ pub enum Reckoning {
 #[derive(Clone, Debug, PartialEq)]
 pub enum Anchor {
     /// The arrival of a wind at a place: adopted if the port has adopted one, else computed.
-    Wind(WindAt),
+    Wind(LimitAt),
     /// The due or declared time of a stage.
     Stage(String),
     /// A fixed instant.

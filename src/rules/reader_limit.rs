@@ -5,7 +5,7 @@ use crate::finding::table::{Item, Keys};
 use crate::port::kind::Kind;
 use crate::rules::codes;
 use crate::rules::desk::{Desk, WindSense};
-use crate::rules::limit::{Anchor, Binding, Deadline, Reckoning, WindAt};
+use crate::rules::limit::{Anchor, Binding, Deadline, Limit, LimitAt, Reckoning};
 use crate::text::quantity;
 use crate::time::moment::Minutes;
 use crate::units::chance::Chance;
@@ -34,10 +34,15 @@ pub fn read_wind_sense(item: &Item<'_>) -> Option<WindSense> {
     Some(WindSense { averaging: averaging?, height: height? })
 }
 
-/// The wind that `keys` name: wind (with averaging) or gust, height, and at which place or berth.
+/// The limit that `keys` name: wind (with averaging) or gust, and its height; or seas; and at which place or berth.
 #[must_use]
-pub fn read_wind_at(keys: &mut Keys<'_>, desk: &Desk<'_>) -> Option<WindAt> {
-    let speed_item = keys.one_of(&["wind", "gust"]);
+pub fn read_wind_at(keys: &mut Keys<'_>, desk: &Desk<'_>) -> Option<LimitAt> {
+    let speed_item = keys.one_of(&["wind", "gust", "seas"]);
+    if let Some(seas) = speed_item.filter(|item| item.key() == "seas") {
+        let is_known = read_seas(&seas);
+        let place = keys.required("at").and_then(|item| read_where(&item, desk));
+        return is_known.then_some(LimitAt { limit: Limit::Seas, place: place? });
+    }
     let speed = speed_item.and_then(|item| quantity::speed(&item));
     let height = keys.optional("height").map(|item| read_height(&item));
     let place = keys.required("at").and_then(|item| read_where(&item, desk));
@@ -53,8 +58,30 @@ pub fn read_wind_at(keys: &mut Keys<'_>, desk: &Desk<'_>) -> Option<WindAt> {
         Some(height) => height?,
         None => desk.winds?.height,
     };
-    Some(WindAt { limit: WindLimit { speed: speed?, averaging: averaging?, height }, place: place? })
+    let wind = WindLimit { speed: speed?, averaging: averaging?, height };
+    Some(LimitAt { limit: Limit::Wind(wind), place: place? })
 }
+
+/// "12 ft" or "4 m": the seas whose reach advisories give.
+fn read_seas(item: &Item<'_>) -> bool {
+    let Some(height) = quantity::metres(item, 0.1, HIGHEST_SEAS) else { return false };
+    let is_given = (LEAST_GIVEN_SEAS..=MOST_GIVEN_SEAS).contains(&height.get());
+    if !is_given {
+        item.fault(
+            codes::SEAS_NOT_GIVEN,
+            format!("seas of {height}"),
+            "12 ft or 4 m: advisories give the reach of no other seas, and no simple law carries it over",
+            "write \"12 ft\" if that is near enough; for a lower limit use a wind that goes with it in your port, or a lead before the high seas",
+        );
+    }
+    is_given
+}
+
+/// Between these heights (m) seas count as the high seas of advisories: 12 ft are 3.66 m.
+const LEAST_GIVEN_SEAS: f64 = 3.6;
+const MOST_GIVEN_SEAS: f64 = 4.0;
+/// No sea is higher (m).
+const HIGHEST_SEAS: f64 = 40.0;
 
 fn read_height(item: &Item<'_>) -> Option<Metres> {
     quantity::metres(item, 1.0, HIGHEST)
@@ -133,7 +160,7 @@ pub fn read_chance(item: &Item<'_>) -> Option<Chance> {
 /// What `keys` count from: a wind or gust at a place, a stage, or the clock; and the key that says so.
 #[must_use]
 pub fn read_anchor<'t>(keys: &mut Keys<'t>, desk: &Desk<'_>) -> Option<(Anchor, &'t str)> {
-    let Some(way) = keys.one_of(&["wind", "gust", "stage", "clock"]) else {
+    let Some(way) = keys.one_of(&["wind", "gust", "seas", "stage", "clock"]) else {
         // What the rest belongs to is unknown; it is not reported as well.
         keys.pass_over(&["at", "averaging", "height"]);
         return None;

@@ -3,7 +3,7 @@
 use crate::finding::table::{Item, Keys};
 use crate::rules::codes;
 use crate::rules::desk::Desk;
-use crate::rules::limit::{Anchor, Deadline, WindAt};
+use crate::rules::limit::{Anchor, Deadline, LimitAt};
 use crate::rules::reader_amount::{OwnSort, read_amount, read_own_name};
 use crate::rules::reader_limit::{read_anchor, read_deadline, read_wind_at};
 use crate::rules::reader_link::read_links;
@@ -191,7 +191,7 @@ fn read_not_before(item: &Item<'_>, things: Option<&[Thing<'_>]>, desk: &Desk<'_
     not_before
 }
 
-fn read_stop(item: &Item<'_>, desk: &Desk<'_>) -> Option<WindAt> {
+fn read_stop(item: &Item<'_>, desk: &Desk<'_>) -> Option<LimitAt> {
     let mut keys = item.keys("a wind")?;
     let wind = read_wind_at(&mut keys, desk);
     keys.finish();

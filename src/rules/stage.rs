@@ -1,7 +1,7 @@
 //! Readiness stages, what triggers them, and the duties that hang on them.
 
 use crate::finding::fault::Place;
-use crate::rules::limit::{Deadline, Reckoning, WindAt};
+use crate::rules::limit::{Deadline, LimitAt, Reckoning};
 use crate::rules::pick::Pick;
 use crate::rules::task::{LinkSpec, TaskSpec};
 use crate::time::moment::Minutes;
@@ -65,7 +65,7 @@ pub enum Trigger {
     /// The wind is forecast at the place within this time.
     Forecast {
         /// Which wind, where.
-        wind: WindAt,
+        wind: LimitAt,
         /// How long before its arrival the stage is due.
         within: Minutes,
         /// How the arrival is reckoned; the rules' own way if `None`.
@@ -74,7 +74,7 @@ pub enum Trigger {
     /// The wind has been observed at the place.
     Observed {
         /// Which wind, where.
-        wind: WindAt,
+        wind: LimitAt,
     },
     /// So long after another stage is due or declared; negative for before.
     Stage {
@@ -86,7 +86,7 @@ pub enum Trigger {
     /// So long after the wind has fallen below the limit for good.
     WindOver {
         /// Which wind, where.
-        wind: WindAt,
+        wind: LimitAt,
         /// How long after.
         after: Minutes,
     },

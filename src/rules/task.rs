@@ -1,7 +1,7 @@
 //! Tasks and task templates: what closing the port takes.
 
 use crate::finding::fault::Place;
-use crate::rules::limit::{Anchor, Deadline, WindAt};
+use crate::rules::limit::{Anchor, Deadline, LimitAt};
 use crate::rules::pick::ForEach;
 use crate::time::moment::Minutes;
 use chrono::{DateTime, Utc};
@@ -31,7 +31,7 @@ pub struct TaskSpec {
     /// Times by which it must, or should, be finished.
     pub done_before: Vec<Deadline>,
     /// Winds at which the work itself stops, whatever the clock says.
-    pub stops_at: Vec<WindAt>,
+    pub stops_at: Vec<LimitAt>,
     /// Tide needed while it runs.
     pub tide: Option<TideNeed>,
     /// Daylight needed.

@@ -6,6 +6,9 @@ use std::fmt;
 /// Metres in one nautical mile (exact by definition).
 pub const METRES_PER_NAUTICAL_MILE: f64 = 1852.0;
 
+/// Metres in an international foot, by definition.
+pub const METRES_PER_FOOT: f64 = 0.3048;
+
 /// A distance in nautical miles, 0 to 11,000 (half way round the earth), never NaN.
 #[derive(Clone, Copy, Debug, PartialEq, PartialOrd)]
 pub struct NauticalMiles(f64);
@@ -87,7 +90,7 @@ impl Metres {
         match unit {
             "m" => Metres::new(value),
             "cm" => Metres::new(value / 100.0),
-            "ft" => Metres::new(value * 0.3048),
+            "ft" => Metres::new(value * METRES_PER_FOOT),
             _ => Err(NumberError::Unreadable { text: text.to_owned(), units }),
         }
     }

@@ -1,6 +1,8 @@
 //! A place's exposure, and the wind over the open sea at which a limit is met there.
 
 use crate::geo::exposure::{Exposure, ExposureClass};
+use crate::units::bearing::Bearing;
+use crate::units::length::Metres;
 use crate::units::speed::Knots;
 use crate::units::wind::{Averaging, WindLimit};
 use crate::wind::averaging::conversion;
@@ -43,7 +45,7 @@ pub struct OpenSeaLimit {
 /// reckoned.
 #[must_use]
 pub fn open_sea_limit(exposure: &Exposure, limit: &WindLimit, advisory: Averaging) -> OpenSeaLimit {
-    let of = |class| (class, place_factor(class, limit, advisory));
+    let of = |class| (class, place_factor(class, limit.averaging, limit.height, advisory));
     let mut greatest = of(exposure.otherwise);
     let mut is_least_of_several = false;
     for (class, factor) in exposure.classes().into_iter().map(of) {
@@ -56,23 +58,91 @@ pub fn open_sea_limit(exposure: &Exposure, limit: &WindLimit, advisory: Averagin
     OpenSeaLimit { speed: Knots::clamped(limit.speed.get() / factor), factor, class, is_least_of_several }
 }
 
-/// The wind that `limit` speaks of, at a place of this class, as a multiple of the open-sea wind of the advisory.
-fn place_factor(class: ExposureClass, limit: &WindLimit, advisory: Averaging) -> f64 {
+/// Whether a wind measured at a place, 10 m above it, meets a limit there; `None` if it is averaged over less time than
+/// the limit, as a gust says little about a mean.
+///
+/// measured x [`conversion`] to the limit's averaging x factor of the limit's height >= limit, with the greatest product of
+/// all exposures of the place.
+#[must_use]
+pub fn observed_meets(
+    exposure: &Exposure,
+    (measured, averaging): (Knots, Averaging),
+    limit: &WindLimit,
+) -> Option<bool> {
+    if averaging.seconds() < limit.averaging.seconds() {
+        return None;
+    }
+    let factor = |class| {
+        conversion(class, averaging, limit.averaging) * height_factor(class, limit.averaging, limit.height)
+    };
+    let greatest = exposure.classes().into_iter().map(factor).fold(0.0, f64::max);
+    Some(measured.get() * greatest >= limit.speed.get() - SAME_KT)
+}
+
+/// Speeds nearer than this are the same: far below what anybody measures, above the errors of arithmetic.
+const SAME_KT: f64 = 1e-6;
+
+/// What turns the wind over the open sea into the wind at one place, whatever its direction.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Shelter<'a> {
+    exposure: &'a Exposure,
+    by_class: [Factors; 4],
+}
+
+/// Multiples of the open-sea wind (10 m, averaged as the advisory).
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Factors {
+    /// The mean wind at the place.
+    pub mean: f64,
+    /// The 3-s gust there.
+    pub gust: f64,
+}
+
+impl<'a> Shelter<'a> {
+    /// The factors of a place for means over `averaging` and for gusts, both at `height`.
+    #[must_use]
+    pub fn of(
+        exposure: &'a Exposure,
+        averaging: Averaging,
+        height: Metres,
+        advisory: Averaging,
+    ) -> Shelter<'a> {
+        let by_class = ExposureClass::ALL.map(|class| Factors {
+            mean: place_factor(class, averaging, height, advisory),
+            gust: place_factor(class, Averaging::Gust3s, height, advisory),
+        });
+        Shelter { exposure, by_class }
+    }
+
+    /// The factors for a wind from this direction.
+    #[must_use]
+    pub fn from(&self, direction: Bearing) -> Factors {
+        self.by_class[self.exposure.to_wind_from(direction) as usize]
+    }
+}
+
+/// The wind at a place of this class, averaged over `averaging` at `height`, as a multiple of the open-sea wind of the
+/// advisory.
+fn place_factor(class: ExposureClass, averaging: Averaging, height: Metres, advisory: Averaging) -> f64 {
     let at_ten_metres = match class {
-        ExposureClass::AtSea => conversion(class, advisory, limit.averaging),
+        ExposureClass::AtSea => conversion(class, advisory, averaging),
         ExposureClass::InLand | ExposureClass::OffLand | ExposureClass::OffSea => {
             conversion(ExposureClass::AtSea, advisory, Averaging::Minute10)
                 * land_share(class)
-                * conversion(class, Averaging::Minute10, limit.averaging)
+                * conversion(class, Averaging::Minute10, averaging)
         }
     };
-    let height = match limit.averaging {
-        Averaging::Gust3s => gust_factor(limit.height),
+    at_ten_metres * height_factor(class, averaging, height)
+}
+
+/// A wind at a height as a multiple of that at 10 m.
+fn height_factor(class: ExposureClass, averaging: Averaging, height: Metres) -> f64 {
+    match averaging {
+        Averaging::Gust3s => gust_factor(height),
         Averaging::Minute1 | Averaging::Minute2 | Averaging::Minute3 | Averaging::Minute10 => {
-            mean_factor(class, limit.height)
+            mean_factor(class, height)
         }
-    };
-    at_ten_metres * height
+    }
 }
 
 #[cfg(test)]

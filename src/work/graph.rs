@@ -1,6 +1,6 @@
 //! The graph of tasks and stages: nodes, edges, and finding one by its id.
 
-use crate::rules::limit::{Deadline, WindAt};
+use crate::rules::limit::{Deadline, LimitAt};
 use crate::rules::task::{DaylightNeed, IfGivenUp, Leave, LinkKind, NotBefore, Passage, Stake, TideNeed};
 use crate::time::moment::Minutes;
 use crate::units::length::Metres;
@@ -81,7 +81,7 @@ pub struct Task {
     /// Deadlines.
     pub done_before: Vec<Deadline>,
     /// Winds that stop it.
-    pub stops_at: Vec<WindAt>,
+    pub stops_at: Vec<LimitAt>,
     /// Tide needed, with the draught for which.
     pub tide: Option<(TideNeed, Metres)>,
     /// Daylight needed.

@@ -3,6 +3,7 @@
 pub mod circle;
 pub mod expand;
 pub mod graph;
+pub mod observed;
 pub mod questions;
 pub mod reckoned;
 pub mod strangers;

@@ -2,10 +2,12 @@
 
 use crate::arrival::odds::{Answer, Answers, Quantile};
 use crate::port::harbour::Port;
-use crate::rules::limit::{Reckoning, WindAt};
+use crate::record::situation::Situation;
+use crate::rules::limit::{Limit, LimitAt, Reckoning};
 use crate::time::moment::Moment;
 use crate::units::speed::Knots;
-use crate::units::wind::{Averaging, WindLimit, standard_height};
+use crate::units::wind::{Averaging, standard_height};
+use crate::work::observed::met_since;
 use crate::work::questions::{head_key, question_key};
 use std::collections::BTreeMap;
 
@@ -15,6 +17,8 @@ use std::collections::BTreeMap;
 pub struct ArrivalBook<'a> {
     /// The port, for which place counts from which.
     pub port: &'a Port,
+    /// The record, for what is observed now.
+    pub situation: &'a Situation,
     /// Answers for the advisory in force; `None` before the first.
     pub answers: Option<&'a Answers>,
     /// Adopted arrivals by reference place.
@@ -40,8 +44,19 @@ pub struct AdoptedArrival<'a> {
 pub struct WorkingArrival {
     /// When.
     pub at: Moment,
-    /// Counted from an adopted time, as opposed to computed.
-    pub is_adopted: bool,
+    /// What it rests on.
+    pub basis: Basis,
+}
+
+/// What a time rests on.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Basis {
+    /// The odds of the advisory in force, or an order.
+    Computed,
+    /// An arrival that the harbourmaster adopted.
+    Adopted,
+    /// What was observed in the port.
+    Observed,
 }
 
 /// The time that a way of reckoning makes of an answer; `None` if the wind does not come with chance enough.
@@ -67,30 +82,44 @@ pub fn moment_of(quantile: Quantile) -> Option<Moment> {
 impl ArrivalBook<'_> {
     /// The working arrival of a wind at a place, reckoned as the rules usually do.
     #[must_use]
-    pub fn usual_arrival(&self, wind: &WindAt) -> Option<WorkingArrival> {
+    pub fn usual_arrival(&self, wind: &LimitAt) -> Option<WorkingArrival> {
         self.arrival(wind, self.usual)
     }
 
-    /// The working arrival of a wind at a place.
+    /// The working arrival of a wind at a place: adopted or computed, or the time since which it is observed to blow if
+    /// that is earlier.
+    #[must_use]
+    pub fn arrival(&self, limit: &LimitAt, reckoning: Reckoning) -> Option<WorkingArrival> {
+        let seen =
+            met_since(limit, self.port, &self.situation.observed, Moment::at_or_after(self.situation.now));
+        let seen = seen.map(|at| WorkingArrival { at, basis: Basis::Observed });
+        let told = self.told(limit, reckoning);
+        // What is observed never delays.
+        seen.into_iter().chain(told).min_by_key(|arrival| arrival.at)
+    }
+
+    /// The adopted or computed arrival.
     ///
     /// With an adopted time for the place it counts from:
     /// T = T_adopted + (R(wind, place) - R(adopted wind, reference place)), where R is the reckoned time in the odds at
     /// adoption. Where those odds do not give both, the computed time counts, so that a wind that was out of reach at
     /// adoption is not overlooked later.
-    #[must_use]
-    pub fn arrival(&self, wind: &WindAt, reckoning: Reckoning) -> Option<WorkingArrival> {
-        let computed = || self.computed(wind, reckoning).map(|at| WorkingArrival { at, is_adopted: false });
+    fn told(&self, wind: &LimitAt, reckoning: Reckoning) -> Option<WorkingArrival> {
+        let computed = || {
+            let at = self.computed(wind, reckoning)?;
+            Some(WorkingArrival { at, basis: Basis::Computed })
+        };
         let reference = self.port.place(&wind.place).map(|place| place.counts_from.as_str());
         let Some((reference, adopted)) = reference.and_then(|id| Some((id, self.adopted.get(id)?))) else {
             return computed();
         };
         if wind.place == reference && is_adopted_wind(&wind.limit, adopted.wind) {
-            return Some(WorkingArrival { at: adopted.time, is_adopted: true });
+            return Some(WorkingArrival { at: adopted.time, basis: Basis::Adopted });
         }
         let reckoned = |key: &str| adopted.answers?.get(key).and_then(|answer| reckon(answer, reckoning));
         match (reckoned(&question_key(wind)), reckoned(&head_key(reference, adopted.wind))) {
             (Some(this), Some(of_adopted)) => {
-                Some(WorkingArrival { at: adopted.time + (this - of_adopted), is_adopted: true })
+                Some(WorkingArrival { at: adopted.time + (this - of_adopted), basis: Basis::Adopted })
             }
             (None, _) | (_, None) => computed(),
         }
@@ -98,7 +127,7 @@ impl ArrivalBook<'_> {
 
     /// The computed arrival of a wind at a place on the advisory in force.
     #[must_use]
-    pub fn computed(&self, wind: &WindAt, reckoning: Reckoning) -> Option<Moment> {
+    pub fn computed(&self, wind: &LimitAt, reckoning: Reckoning) -> Option<Moment> {
         self.answer(&question_key(wind)).and_then(|answer| reckon(answer, reckoning))
     }
 
@@ -113,7 +142,8 @@ impl ArrivalBook<'_> {
 const SAME_SPEED_KT: f64 = 0.05;
 
 /// Whether a limit is the very wind that an adopted time is about: the same speed as a sustained mean at 10 m.
-fn is_adopted_wind(limit: &WindLimit, adopted: Knots) -> bool {
+fn is_adopted_wind(limit: &Limit, adopted: Knots) -> bool {
+    let Limit::Wind(limit) = limit else { return false };
     (limit.speed.get() - adopted.get()).abs() < SAME_SPEED_KT
         && limit.averaging != Averaging::Gust3s
         && (limit.height.get() - standard_height().get()).abs() < SAME_HEIGHT_M

@@ -1,14 +1,15 @@
 //! What times the odds and the record give to stages and tasks.
 
 use crate::record::situation::Situation;
-use crate::rules::limit::{Anchor, Binding, Deadline, WindAt};
+use crate::rules::limit::{Anchor, Binding, Deadline, LimitAt};
 use crate::rules::stage::{Rules, StageDirection, Trigger};
 use crate::rules::task::NotBefore;
 use crate::time::moment::{Minutes, Moment};
 use crate::units::chance::Chance;
 use crate::work::graph::{Task, WorkGraph};
+use crate::work::observed::first_met;
 use crate::work::questions::question_key;
-use crate::work::reckoned::{ArrivalBook, moment_of};
+use crate::work::reckoned::{ArrivalBook, Basis, moment_of};
 use petgraph::graph::NodeIndex;
 use std::collections::BTreeMap;
 
@@ -28,8 +29,8 @@ pub struct StageTimes {
     pub due: Option<Moment>,
     /// Which trigger that is, by its place in the stage's list.
     pub trigger: Option<usize>,
-    /// Counted from an adopted arrival.
-    pub is_adopted: bool,
+    /// What it rests on.
+    pub basis: Basis,
     /// Since when it is declared.
     pub declared: Option<Moment>,
     /// Since when it is lifted.
@@ -77,8 +78,8 @@ pub struct Bound {
     pub at: Moment,
     /// What it counts from, in words: "34 kt at Pilot station, less 12 h".
     pub because: String,
-    /// Counted from an adopted arrival.
-    pub is_adopted: bool,
+    /// What it rests on.
+    pub basis: Basis,
 }
 
 /// Gives every stage and task its times.
@@ -105,7 +106,7 @@ fn stage_times(rules: &Rules, book: &ArrivalBook<'_>, situation: &Situation, now
             StageTimes {
                 due: None,
                 trigger: None,
-                is_adopted: false,
+                basis: Basis::Computed,
                 declared: declared.filter(|from| *from <= now),
                 lifted: lifted.filter(|from| *from <= now),
                 standing: Standing::NotDue,
@@ -119,7 +120,7 @@ fn stage_times(rules: &Rules, book: &ArrivalBook<'_>, situation: &Situation, now
         for (times, due) in stages.iter_mut().zip(dues) {
             times.due = due.map(|(at, _, _)| at);
             times.trigger = due.map(|(_, trigger, _)| trigger);
-            times.is_adopted = due.is_some_and(|(_, _, adopted)| adopted);
+            times.basis = due.map_or(Basis::Computed, |(_, _, basis)| basis);
         }
     }
     let standings: Vec<Standing> =
@@ -130,30 +131,32 @@ fn stage_times(rules: &Rules, book: &ArrivalBook<'_>, situation: &Situation, now
     stages
 }
 
-/// The earliest of a stage's triggers: (when, which, counted from an adopted arrival).
+/// The earliest of a stage's triggers: (when, which, what it rests on).
 fn due_of(
     triggers: &[Trigger],
     rules: &Rules,
     book: &ArrivalBook<'_>,
     situation: &Situation,
     stages: &[StageTimes],
-) -> Option<(Moment, usize, bool)> {
+) -> Option<(Moment, usize, Basis)> {
     let fires = |trigger: &Trigger| match trigger {
         Trigger::Forecast { wind, within, reckoning } => book
             .arrival(wind, reckoning.unwrap_or(rules.reckoning))
-            .map(|arrival| (arrival.at - *within, arrival.is_adopted)),
-        Trigger::Observed { wind } => first_observed(wind, situation).map(|at| (at, false)),
+            .map(|arrival| (arrival.at - *within, arrival.basis)),
+        Trigger::Observed { wind } => {
+            first_met(wind, book.port, &situation.observed).map(|at| (at, Basis::Observed))
+        }
         Trigger::Stage { stage, after } => {
-            stage_anchor(stage, rules, stages).map(|(at, is_adopted)| (at + *after, is_adopted))
+            stage_anchor(stage, rules, stages).map(|(at, basis)| (at + *after, basis))
         }
         Trigger::WindOver { wind, after } => book
             .answer(&question_key(wind))
             .and_then(|answer| moment_of(answer.end_quantile(ninety_percent())))
-            .map(|at| (at + *after, false)),
+            .map(|at| (at + *after, Basis::Computed)),
     };
     (0..)
         .zip(triggers)
-        .filter_map(|(position, trigger)| fires(trigger).map(|(at, is_adopted)| (at, position, is_adopted)))
+        .filter_map(|(position, trigger)| fires(trigger).map(|(at, basis)| (at, position, basis)))
         .min()
 }
 
@@ -162,23 +165,11 @@ fn ninety_percent() -> Chance {
     Chance::share(9, 10)
 }
 
-/// When a wind was first observed at or above the limit; only observations of the limit's own averaging count, since a
-/// gust says little about a mean.
-fn first_observed(wind: &WindAt, situation: &Situation) -> Option<Moment> {
-    situation
-        .observed
-        .iter()
-        .filter(|seen| seen.place == wind.place && seen.averaging == wind.limit.averaging)
-        .filter(|seen| seen.wind >= wind.limit.speed)
-        .map(|seen| Moment::at_or_before(seen.at))
-        .min()
-}
-
-/// The time that "stage X" stands for: declared if it is, else due; and whether it counts from an adopted arrival.
-fn stage_anchor(stage: &str, rules: &Rules, stages: &[StageTimes]) -> Option<(Moment, bool)> {
+/// The time that "stage X" stands for: declared if it is, else due; and what that rests on.
+fn stage_anchor(stage: &str, rules: &Rules, stages: &[StageTimes]) -> Option<(Moment, Basis)> {
     let position = rules.stages.iter().position(|candidate| candidate.id == stage)?;
     let times = stages.get(position)?;
-    times.declared.map(|at| (at, false)).or(times.due.map(|at| (at, times.is_adopted)))
+    times.declared.map(|at| (at, Basis::Computed)).or(times.due.map(|at| (at, times.basis)))
 }
 
 fn standing(rules: &Rules, stages: &[StageTimes], position: usize, now: Moment) -> Standing {
@@ -242,7 +233,7 @@ impl Clockwork<'_> {
     }
 
     /// When a wind is over for good with 90 % chance; `None` if it never comes or the forecast ends first.
-    fn over(&self, wind: &WindAt) -> Option<Moment> {
+    fn over(&self, wind: &LimitAt) -> Option<Moment> {
         let answer = self.book.answer(&question_key(wind))?;
         moment_of(answer.end_quantile(ninety_percent()))
     }
@@ -278,37 +269,39 @@ impl Clockwork<'_> {
     }
 
     fn bound(&self, deadline: &Deadline) -> Option<Bound> {
-        let (at, words, is_adopted) = self.anchor(&deadline.anchor)?;
+        let (at, words, basis) = self.anchor(&deadline.anchor)?;
         let lead = deadline.lead;
         let because = match lead.get() {
             0 => words,
             minutes if minutes > 0 => format!("{words}, less {lead}"),
             _ => format!("{words}, plus {}", -lead),
         };
-        Some(Bound { at: at - lead, because, is_adopted })
+        Some(Bound { at: at - lead, because, basis })
     }
 
-    fn stop(&self, wind: &WindAt) -> Option<Bound> {
+    fn stop(&self, wind: &LimitAt) -> Option<Bound> {
         let arrival = self.book.usual_arrival(wind)?;
-        Some(Bound { at: arrival.at, because: self.wind_words(wind), is_adopted: arrival.is_adopted })
+        Some(Bound { at: arrival.at, because: self.wind_words(wind), basis: arrival.basis })
     }
 
-    /// The time of an anchor, its words, and whether it counts from an adopted arrival.
-    fn anchor(&self, anchor: &Anchor) -> Option<(Moment, String, bool)> {
+    /// The time of an anchor, its words, and what that rests on.
+    fn anchor(&self, anchor: &Anchor) -> Option<(Moment, String, Basis)> {
         match anchor {
             Anchor::Wind(wind) => {
                 let arrival = self.book.usual_arrival(wind)?;
-                Some((arrival.at, self.wind_words(wind), arrival.is_adopted))
+                Some((arrival.at, self.wind_words(wind), arrival.basis))
             }
             Anchor::Stage(stage) => {
-                let (at, is_adopted) = stage_anchor(stage, self.rules, self.stages)?;
-                Some((at, format!("stage {stage}"), is_adopted))
+                let (at, basis) = stage_anchor(stage, self.rules, self.stages)?;
+                Some((at, format!("stage {stage}"), basis))
             }
-            Anchor::Clock(time) => Some((Moment::at_or_before(*time), String::from("a fixed time"), false)),
+            Anchor::Clock(time) => {
+                Some((Moment::at_or_before(*time), String::from("a fixed time"), Basis::Computed))
+            }
         }
     }
 
-    fn wind_words(&self, wind: &WindAt) -> String {
+    fn wind_words(&self, wind: &LimitAt) -> String {
         let place =
             self.book.port.place(&wind.place).map_or(wind.place.as_str(), |place| place.name.as_str());
         format!("{} at {place}", wind.limit)

@@ -9,7 +9,7 @@ use chrono::{DateTime, TimeDelta, TimeZone, Utc};
 use snugdown::advisory::forecast::{Advisory, ForecastPoint, Quadrants, Reach, Storm, WindRadii};
 use snugdown::arrival::errors::{ErrorRow, ErrorTable, ErrorTables, Settings};
 use snugdown::arrival::errors_reader::read_error_tables;
-use snugdown::arrival::question::Question;
+use snugdown::arrival::question::{Question, Sought};
 use snugdown::finding::fault::Place;
 use snugdown::finding::source::SourceText;
 use snugdown::geo::position::Position;
@@ -44,6 +44,7 @@ pub fn point(hour: f64, position: Position, wind_kt: f64, gale_nmi: f64) -> Fore
         max_wind: Knots::new(wind_kt).unwrap(),
         gust: None,
         radii,
+        seas: None,
         qualifier: String::new(),
         place: Place { file: "made by hand".to_owned(), line: 1, column: 1, start: 0, end: 0 },
     }
@@ -110,7 +111,7 @@ pub fn shipped() -> ErrorTables {
 }
 
 pub fn ask_about(key: &str, position: Position, limit_kt: f64) -> Question {
-    Question { key: key.to_owned(), position, limit: Knots::new(limit_kt).unwrap() }
+    Question { key: key.to_owned(), position, sought: Sought::Wind(Knots::new(limit_kt).unwrap()) }
 }
 
 /// A hurricane that comes from the east-south-east and passes a coast: made up, in the manner of a full

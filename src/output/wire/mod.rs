@@ -12,3 +12,4 @@ pub mod plan;
 pub mod port;
 pub mod task;
 pub mod value;
+pub mod wind;

@@ -12,7 +12,8 @@ pub fn each<T: Sync, R: Send>(items: &[T], work: impl Fn(&T) -> R + Sync) -> Vec
     each_on(available_parallelism().map_or(1, usize::from), items, work)
 }
 
-fn each_on<T: Sync, R: Send>(threads: usize, items: &[T], work: impl Fn(&T) -> R + Sync) -> Vec<R> {
+/// The same on so many threads at most.
+pub fn each_on<T: Sync, R: Send>(threads: usize, items: &[T], work: impl Fn(&T) -> R + Sync) -> Vec<R> {
     let next = AtomicUsize::new(0);
     let take = || {
         let mut done = Vec::new();
