@@ -43,6 +43,16 @@ fn an_unknown_key_is_told_from_the_one_that_was_meant() {
 }
 
 #[test]
+fn an_issuer_too_short_to_be_known_by_is_named() {
+    provokes(
+        "port.toml",
+        ("authority = \"Harbour Master\"", "official_issuer = [^\"X\"]\nauthority = \"Harbour Master\""),
+        "port-bad-value",
+        &["too short to know an issuer by"],
+    );
+}
+
+#[test]
 fn a_missing_key_is_named_at_its_table() {
     provokes(
         "berths.toml",

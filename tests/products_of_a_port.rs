@@ -153,3 +153,40 @@ fn a_joint_warning_is_taken_like_any_other_advisory() {
     assert_eq!(out["forecast"]["issuer"], Value::from("JOINT TYPHOON WARNING CENTER"));
     assert_eq!(out["forecast"]["averaging_s"], Value::from(60));
 }
+
+#[test]
+fn two_storms_are_told_together_and_by_name() {
+    let storm = fs::read_to_string("tests/data/small-port/approach.txt").unwrap();
+    let mut other = storm.replace("OSKELA", "PERIL").replace("AL992026", "AL982026");
+    for (from, to) in [
+        ("20.0N  34.5W", "13.0N  37.0W"),
+        ("19.8N  34.0W", "12.8N  36.7W"),
+        ("20.5N  36.1W", "14.5N  38.0W"),
+        ("21.1N  38.0W", "16.5N  39.0W"),
+        ("21.8N  39.7W", "18.5N  40.0W"),
+        ("22.8N  41.2W", "20.5N  41.0W"),
+        ("25.5N  42.5W", "25.0N  42.0W"),
+        ("29.0N  41.5W", "30.0N  41.0W"),
+    ] {
+        other = other.replace(from, to);
+    }
+    let events = took("2026-09-17T12:05-03:00", "file = \"approach.txt\"")
+        + &took("2026-09-17T12:30-03:00", "file = \"other.txt\"");
+    let clock = ("2026-09-17T13:00-03:00", "22 24.0 N 040 54.0 W");
+    let folder = port("two-storms", clock, &[], &events);
+    fs::write(folder.join("other.txt"), other).unwrap();
+    let path = folder.to_str().unwrap();
+    let plan = text(&run(&["plan", path, "--width", "200"]).stdout);
+    assert!(plan.contains("9 on OSKELA") && plan.contains("9 on PERIL"), "{plan}");
+    assert!(plan.contains("OSKELA brings it first"), "{plan}");
+    let now = text(&run(&["now", path]).stdout);
+    assert!(now.contains("on OSKELA, PERIL"), "{now}");
+    let arrivals = text(&run(&["arrivals", path, "--width", "200"]).stdout);
+    let arrivals = arrivals.split_whitespace().collect::<Vec<&str>>().join(" ");
+    assert!(arrivals.contains("what stands below is of all storms together"), "{arrivals}");
+    assert!(arrivals.contains("OSKELA brings it first in"), "{arrivals}");
+    let out: Value = serde_json::from_slice(&run(&["plan", path, "--json"]).stdout).unwrap();
+    assert_eq!(out["other_advisories"][0]["storm"], Value::from("PERIL"));
+    assert_eq!(out["arrivals"][0]["storm"], Value::from("OSKELA"));
+    assert_eq!(out["breaches"].as_array().unwrap().len(), 0);
+}

@@ -32,6 +32,18 @@ impl ProbabilityCircle {
 }
 
 impl Advisory {
+    /// What must be said where the office's own figures make the spread of the track; `None` if it gives none.
+    #[must_use]
+    pub fn own_spread_words(&self) -> Option<String> {
+        match (self.circles.is_empty(), self.quoted_track_errors) {
+            (false, _) => Some("track errors: from the office's own probability circles".to_owned()),
+            (true, Some((day_4, day_5))) => {
+                Some(format!("track errors on day 4 and day 5: the office's own means, {day_4} and {day_5}"))
+            }
+            (true, None) => None,
+        }
+    }
+
     /// The office's own track deviations, leads rising: from its circles, else from the mean errors that it quotes for
     /// day 4 and day 5; empty if it says nothing.
     ///

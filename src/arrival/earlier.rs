@@ -8,6 +8,7 @@ use crate::arrival::odds::{Answer, Answers, answer_of};
 use crate::arrival::onset::{Onset, ScenarioOnset};
 use crate::arrival::question::Question;
 use crate::time::moment::Moment;
+use crate::units::chance::Chance;
 
 /// The answers of all storms together, question by question in the order of the first storm's; each question's limit is
 /// the first storm's. Chances count from the earliest issue, to the latest end of a forecast. `None` without any storm.
@@ -30,6 +31,32 @@ pub fn earlier_of(storms: &[&Answers]) -> Option<Answers> {
         })
         .collect();
     Some(Answers { answers, joint, notes })
+}
+
+/// The storm, by its place in `storms`, that most often brings a wind first, and in what share of the scenarios in which it
+/// comes; `None` if it never does. A tie goes to the storm that stands first.
+#[must_use]
+pub fn mostly_first(storms: &[&Answers], key: &str) -> Option<(usize, Chance)> {
+    let of_storms: Vec<&Answer> = storms.iter().map(|answers| answers.get(key)).collect::<Option<_>>()?;
+    let scenarios = of_storms.iter().map(|answer| answer.onsets.len()).min()?;
+    let issued = of_storms.iter().map(|answer| answer.issued).min()?;
+    let mut wins = vec![0; of_storms.len()];
+    for scenario in 0..scenarios {
+        let onset = |answer: &Answer| {
+            answer.onsets.get(scenario).map(|told| since(*told, answer.issued, issued).onset)
+        };
+        let onsets = of_storms.iter().map(|answer| onset(answer).unwrap_or(Onset::Never));
+        let first = onsets.enumerate().min_by_key(|(storm, onset)| (*onset, *storm));
+        if let Some((storm, Onset::Already | Onset::At(_))) = first
+            && let Some(count) = wins.get_mut(storm)
+        {
+            *count += 1;
+        }
+    }
+    let comes: usize = wins.iter().sum();
+    let (storm, most) =
+        wins.into_iter().enumerate().max_by_key(|(storm, count)| (*count, std::cmp::Reverse(*storm)))?;
+    (comes > 0).then(|| (storm, Chance::share(most, comes)))
 }
 
 /// Two storms' answers to one question as one.

@@ -235,6 +235,7 @@ pub fn ask_on(
 ) -> Answers {
     let joint = draw.scenarios.max(1);
     let mut notes: Vec<String> = table.notes().to_vec();
+    notes.extend(advisory.own_spread_words());
     notes.extend(advisory.assumed.iter().map(|assumption| assumption.what.clone()));
     let Some(course) = Course::of(advisory, table) else {
         let issued = Moment::at_or_before(advisory.issued);

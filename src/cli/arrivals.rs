@@ -4,7 +4,7 @@ use crate::advisory::choice::{Choice, parse_cycle};
 use crate::advisory::forecast::Advisory;
 use crate::advisory::official_odds::{OfficialOdds, read_official_odds};
 use crate::advisory::read::read_chosen;
-use crate::arrival::earlier::earlier_of;
+use crate::arrival::earlier::{earlier_of, mostly_first};
 use crate::arrival::errors::ErrorTables;
 use crate::arrival::odds::{Answer, Answers, Draw, ask};
 use crate::arrival::question::{Question, Sought};
@@ -25,6 +25,7 @@ use crate::output::wire::value::to_text;
 use crate::record::situation::situation;
 use crate::time::clock::PortClock;
 use crate::time::moment::Moment;
+use crate::units::chance::Chance;
 use crate::units::speed::Knots;
 use chrono::{DateTime, Utc};
 use clap::Args;
@@ -70,9 +71,10 @@ pub struct ArrivalsArgs {
 
 /// Stands under the help of the command.
 const AFTER_HELP: &str = "\
-A port's folder brings its own places, its clock and the advisories in force. For a single forecast name places with
---at; without --now nothing depends on the clock. Official odds are shown beside ours at places of the same name or
-position; the rules use ours. A best track (b-deck, HURDAT2) makes a drill, not a forecast.
+A port's folder brings its own places, its clock and the advisories in force. For a single
+forecast name places with --at; without --now nothing depends on the clock. Official odds are
+shown beside ours at places of the same name or position; the rules use ours. A best track
+(b-deck, HURDAT2) makes a drill, not a forecast.
 
 Examples:
   snugdown arrivals advisory.txt --at 'Pilot station=22.3,-40.8' --at Quay=22.5,-41
@@ -242,6 +244,7 @@ fn tell(
             name: place.name.clone(),
             position: place.position,
             winds: winds(&together, number),
+            first_storms: WINDS.iter().map(|wind| first_storm(storms, &all, &key(number, *wind))).collect(),
             beside: official.zip(of_odds).map(|(official, storm)| {
                 let rows = official.odds.of_place(place.listed.as_deref(), &place.name, place.position);
                 beside(official.odds, &rows, &winds(&storm.answers, number))
@@ -260,6 +263,12 @@ fn tell(
         notes,
     };
     finish(args, &asked, is_out_of_order)
+}
+
+/// The storm that mostly brings a wind first, where there are several.
+fn first_storm<'a>(storms: &'a [Storm<'_>], answers: &[&Answers], key: &str) -> Option<(&'a str, Chance)> {
+    let (index, share) = mostly_first(answers, key).filter(|_| storms.len() > 1)?;
+    Some((storms.get(index)?.advisory.storm.name.as_str(), share))
 }
 
 /// What must be said of official odds that are of another storm or of another advisory.

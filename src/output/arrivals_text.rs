@@ -29,9 +29,15 @@ pub fn arrivals_text(asked: &Asked, width: usize) -> String {
     page.text(0, &head(&times, asked, issued));
     for place in &asked.places {
         page.section(&place.name, &position_words(place.position.latitude(), place.position.longitude()));
-        for (wind, answer) in &place.winds {
+        let firsts = place.first_storms.iter().chain(std::iter::repeat(&None));
+        for ((wind, answer), first) in place.winds.iter().zip(firsts) {
             let end = Some(answer.forecast_end);
-            let sentence = format!("{}.", onset_sentence(&times, &onset(answer), end));
+            let mut sentence = format!("{}.", onset_sentence(&times, &onset(answer), end));
+            if let Some((storm, share)) = first {
+                sentence.push_str(&format!(
+                    " {storm} brings it first in {share} of the scenarios in which it comes."
+                ));
+            }
             page.labelled(MARGIN, &wind.to_string(), &sentence);
             page.text(MARGIN, &single_track(&times, answer));
         }

@@ -43,6 +43,9 @@ pub struct AskedPlace<'a> {
     pub position: Position,
     /// The winds, weakest first, with their answers.
     pub winds: Vec<(Knots, &'a Answer)>,
+    /// For each wind the storm that brings it first in most scenarios, and in what share of those in which it comes;
+    /// `None` where there is one storm only, or the wind never comes.
+    pub first_storms: Vec<Option<(&'a str, Chance)>>,
     /// The official odds beside ours of the same storm; `None` where no official odds are at hand.
     pub beside: Option<Beside>,
 }

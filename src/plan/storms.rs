@@ -75,7 +75,12 @@ fn second_words(
     odds: &AllOdds<'_>,
     (port, usual): (&Port, Reckoning),
 ) -> String {
-    let who = format!("{} by {}, a second centre", second.file, second.advisory.issuer);
+    let averaging = second.advisory.averaging;
+    let winds = match official.filter(|official| official.advisory.averaging != averaging) {
+        Some(_) => format!(" whose winds are a {averaging}"),
+        None => String::new(),
+    };
+    let who = format!("{} by {}, a second centre{winds}", second.file, second.advisory.issuer);
     let earlier = port.places.iter().filter_map(|place| {
         let key = head_key(&place.id, Knots::GALE);
         let theirs = computed(odds, second.file, &key, usual)?;

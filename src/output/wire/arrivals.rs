@@ -7,6 +7,7 @@ use crate::output::asked::{Asked, AskedPlace, onset, over_by};
 use crate::output::beside::{Beside, OfficialSource, RULES_USE};
 use crate::output::wire::value::{SCHEMA, chance, instant, maybe, number, point, time};
 use crate::time::moment::Minutes;
+use crate::units::chance::Chance;
 use crate::units::speed::Knots;
 use serde::{Deserialize, Serialize};
 use serde_json::Number;
@@ -100,6 +101,10 @@ pub struct ThresholdOut {
     pub over_by: Option<String>,
     /// How many scenarios were drawn.
     pub scenarios: usize,
+    /// The storm that brings it first in most scenarios; null if there is only one, or if it never comes.
+    pub first_storm: Option<String>,
+    /// In what share of the scenarios in which it comes.
+    pub first_storm_share: Option<f64>,
 }
 
 /// Official odds beside ours.
@@ -194,12 +199,17 @@ fn place(place: &AskedPlace, source: Option<&OfficialSource>) -> PlaceOut {
         name: place.name.clone(),
         lat: number(place.position.latitude()),
         lon: number(place.position.longitude()),
-        thresholds: place.winds.iter().map(|(wind, answer)| threshold(*wind, answer)).collect(),
+        thresholds: place
+            .winds
+            .iter()
+            .zip(place.first_storms.iter().copied().chain(std::iter::repeat(None)))
+            .map(|((wind, answer), first)| threshold(*wind, answer, first))
+            .collect(),
         official: source.zip(place.beside.as_ref()).map(|(source, beside)| official(source, beside)),
     }
 }
 
-fn threshold(wind: Knots, answer: &Answer) -> ThresholdOut {
+fn threshold(wind: Knots, answer: &Answer, first: Option<(&str, Chance)>) -> ThresholdOut {
     let onset = onset(answer);
     let by_hour = |hour| chance(answer.chance_by(answer.issued + Minutes::hours(hour)));
     ThresholdOut {
@@ -214,5 +224,7 @@ fn threshold(wind: Knots, answer: &Answer) -> ThresholdOut {
         single_track: answer.single_track.map(time),
         over_by: point(over_by(answer)),
         scenarios: answer.onsets.len(),
+        first_storm: first.map(|(storm, _)| storm.to_owned()),
+        first_storm_share: first.map(|(_, share)| chance(share)),
     }
 }
