@@ -22,6 +22,13 @@ cargo test --locked
 if [ "${1:-}" = all ]; then
   say "outside references, made again"
   bash tests/outside/run.sh
+  say "the same bytes from both optimisation levels"
+  cargo build --locked
+  cargo build --locked --release
+  for asked in 'plan demo-port --json' 'wind demo-port greywether --json' 'arrivals demo-port --json'; do
+    # Exit code 4 says that something does not fit, which is so in the demo.
+    cmp <(target/debug/snugdown $asked || [ $? -eq 4 ]) <(target/release/snugdown $asked || [ $? -eq 4 ])
+  done
   say "long runs"
   SNUGDOWN_LONG=1 cargo test --locked --release --test demo_port
   say "benches"

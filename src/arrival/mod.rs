@@ -6,6 +6,7 @@ pub mod earlier;
 pub mod errors;
 pub mod errors_reader;
 pub mod keyed;
+pub mod landfall;
 pub mod leg;
 pub mod odds;
 pub mod onset;
