@@ -348,3 +348,14 @@ fn a_working_best_track_agrees_with_the_final_one() {
         );
     }
 }
+
+#[test]
+fn high_seas_of_a_deck_are_read_and_never_taken_for_a_wind() {
+    // Read off by eye: 2013060606, 12, NEQ, 120, 120, 0, 75; rows after 2013060906 end before the seas.
+    let text = fs::read_to_string("tests/data/best-track/al012013.b.dat").unwrap();
+    let advisory = advisory(&text, &cycle("2013060600"));
+    let seas = at(&advisory, "2013060606").seas.unwrap();
+    assert!((seas.height.get() - 12.0 * 0.3048).abs() < 1e-9);
+    assert_near(seas.reach.clockwise().map(|miles| miles.get()), [120.0, 120.0, 0.0, 75.0]);
+    assert!(at(&advisory, "2013060912").seas.is_none());
+}

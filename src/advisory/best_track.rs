@@ -5,7 +5,7 @@
 
 use crate::advisory::choice::{Choice, cycle_text};
 use crate::advisory::forecast::{
-    Advisory, Ending, ForecastPoint, Motion, Quadrants, Reach, Storm, WindRadii,
+    Advisory, Ending, ForecastPoint, Motion, Quadrants, Reach, Seas, Storm, WindRadii,
 };
 use crate::advisory::notes::Notes;
 use crate::advisory::reach_rule::reach_of;
@@ -38,6 +38,8 @@ pub struct BestPoint {
     pub pressure: Option<HectoPascals>,
     /// "HU", "EX".
     pub kind: String,
+    /// Reach of high seas, if given.
+    pub seas: Option<Seas>,
     /// Radii of 34, 50 and 64 kt as given.
     pub radii: [Option<Quadrants>; 3],
     /// Where it stands.
@@ -149,7 +151,7 @@ fn forecast_point(point: BestPoint, notes: &mut Notes) -> Option<ForecastPoint> 
         max_wind: wind,
         gust: None,
         radii: WindRadii { gale, storm, hurricane },
-        seas: None,
+        seas: point.seas,
         qualifier: point.kind,
         place: point.place,
     })

@@ -277,7 +277,7 @@ fn point(base: DateTime<Utc>, hour: i64, rows: &[&DeckRow], notes: &mut Notes) -
         max_wind: wind,
         gust: first.gust.filter(|gust| *gust >= wind),
         radii: WindRadii { gale, storm, hurricane },
-        seas: None,
+        seas: rows.iter().find_map(|row| row.seas),
         qualifier: qualifier(&first.kind).to_owned(),
         place: notes.place(first.range.clone()),
     })
@@ -359,6 +359,7 @@ fn best_track(storm: Storm, rows: Vec<DeckRow>, choice: &Choice, notes: &mut Not
             pressure: first.pressure,
             kind: first.kind.clone(),
             radii: radii_of(rows, notes),
+            seas: rows.iter().find_map(|row| row.seas),
             place: notes.place(first.range.clone()),
             range: span(rows),
         });

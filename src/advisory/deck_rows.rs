@@ -4,11 +4,11 @@
 //! by commas and padded with blanks; later fields may be missing. Zero means "not given" for pressure, gusts and motion.
 
 use crate::advisory::choice::parse_cycle;
-use crate::advisory::forecast::{Motion, Quadrants};
+use crate::advisory::forecast::{Motion, Quadrants, Seas};
 use crate::advisory::notes::Notes;
 use crate::geo::position::Position;
 use crate::units::bearing::Bearing;
-use crate::units::length::NauticalMiles;
+use crate::units::length::{METRES_PER_FOOT, Metres, NauticalMiles};
 use crate::units::pressure::HectoPascals;
 use crate::units::speed::Knots;
 use chrono::{DateTime, Datelike, Duration, Utc};
@@ -47,6 +47,8 @@ pub struct DeckRow {
     pub motion: Option<Motion>,
     /// "FLORENCE"; empty if not given.
     pub name: String,
+    /// Reach of high seas; `None` if not given.
+    pub seas: Option<Seas>,
     /// Its bytes.
     pub range: Range<usize>,
 }
@@ -165,6 +167,7 @@ fn read_row(line: &str, range: Range<usize>) -> Result<DeckRow, String> {
             Some(Motion::Towards(Bearing::new(field(25).parse().ok()?).ok()?, Knots::new(kt).ok()?))
         }),
         name: field(27).to_uppercase(),
+        seas: seas(field(29), field(30), [31, 32, 33, 34].map(field)),
         range,
     })
 }
@@ -220,6 +223,13 @@ fn radii(code: &str, fields: [&str; 4]) -> Result<(Option<Quadrants>, bool), Str
         return Err("a radius is out of range".to_owned());
     };
     Ok((Some(Quadrants { northeast, southeast, southwest, northwest }), false))
+}
+
+/// The height of the seas in feet, the code of their radii, and these; decks write all zero where nothing is known.
+fn seas(height: &str, code: &str, fields: [&str; 4]) -> Option<Seas> {
+    let feet = number_or_zero(height).filter(|feet| *feet > 0.0)?;
+    let reach = radii(code, fields).ok()?.0.filter(|reach| *reach != Quadrants::NONE)?;
+    Some(Seas { height: Metres::new(feet * METRES_PER_FOOT).ok()?, reach })
 }
 
 /// A storm is the same as long as its rows are no farther apart than this: a number is used once a season.

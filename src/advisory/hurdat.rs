@@ -153,6 +153,7 @@ fn row(line: &str, range: Range<usize>, notes: &Notes) -> Result<BestPoint, Stri
         wind: known(6)?.and_then(|kt| Knots::new(kt).ok()),
         pressure: known(7)?.and_then(|hpa| HectoPascals::new(hpa).ok()),
         kind: field(3).to_owned(),
+        seas: None,
         radii,
         place: notes.place(range.clone()),
         range,

@@ -5,7 +5,7 @@
 //!
 //! V(scenario) = V(forecast) x D(scenario) / D(forecast) + intensity error.
 //!
-//! D falls over land as [`crate::wind::inland`] says and comes back over the sea by the factor e in [`RECOVERY_H`]. A scenario
+//! D falls over land as [`crate::wind::inland`] says and comes back over the sea by the factor e in `RECOVERY_H`. A scenario
 //! that keeps to the forecast's way over land has the forecast's strength.
 
 use crate::geo::land::LandMask;
