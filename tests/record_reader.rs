@@ -4,8 +4,8 @@ use proptest::prelude::{any, proptest};
 use snugdown::finding::fault::{Finding, Severity, has_error};
 use snugdown::finding::source::SourceText;
 use snugdown::record::event::{Event, Retracted, What};
+use snugdown::record::fold::situation;
 use snugdown::record::reader::read_events;
-use snugdown::record::situation::situation;
 use snugdown::time::clock::PortClock;
 
 const EXAMPLE: &str = include_str!("data/events/example.toml");

@@ -4,8 +4,9 @@ use chrono::{DateTime, TimeDelta, Utc};
 use proptest::prelude::{Just, Strategy, any, prop_oneof, proptest};
 use snugdown::finding::fault::Place;
 use snugdown::record::event::{Event, Retracted, What};
+use snugdown::record::fold::situation;
 use snugdown::record::mention::{MentionKind, mentions};
-use snugdown::record::situation::{Outcome, Situation, TaskState, Way, situation};
+use snugdown::record::situation::{Outcome, Situation, TaskState, Way};
 use snugdown::time::moment::Minutes;
 use snugdown::units::speed::Knots;
 use snugdown::units::wind::Averaging;
@@ -17,7 +18,17 @@ fn at(minute: i64) -> DateTime<Utc> {
 
 fn event(known: i64, what: What) -> Event {
     let place = Place { file: "events.toml".into(), line: 1, column: 1, start: 0, end: 0 };
-    Event { known: at(known), by: "Duty officer".into(), what, reason: String::new(), place }
+    Event {
+        number: 1,
+        known: at(known),
+        by: "Duty officer".into(),
+        name: String::new(),
+        on_behalf: String::new(),
+        awaits_second: false,
+        what,
+        reason: String::new(),
+        place,
+    }
 }
 
 fn told(events: &[(i64, What)]) -> Situation {
@@ -66,7 +77,7 @@ fn outages(events: &[(i64, What)]) -> Vec<(DateTime<Utc>, Option<DateTime<Utc>>)
 }
 
 fn taken(file: &str) -> What {
-    What::AdvisoryTaken { file: file.into() }
+    What::AdvisoryTaken { file: file.into(), digest: String::new() }
 }
 
 fn adopted(time: Option<i64>) -> What {

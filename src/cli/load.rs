@@ -6,16 +6,21 @@ use crate::arrival::errors::ErrorTables;
 use crate::arrival::errors_reader::read_error_tables;
 use crate::cli::exit::Failure;
 use crate::cli::folder::{PortFolder, TOO_LONG};
+use crate::cli::kept::{Kept, TEXT, lines_of};
 use crate::cli::port_args::PortArgs;
 use crate::cli::screen::tell_findings;
 use crate::finding::fault::{Finding, has_error, nearest, sort_findings};
 use crate::finding::source::SourceText;
 use crate::port::folder::read_draft;
 use crate::port::harbour::Port;
+use crate::record::doubt::doubts;
 use crate::record::event::{Event, What};
+use crate::record::fold::situation;
 use crate::record::reader::read_events;
 use crate::rules::folder::read_folder;
 use crate::rules::stage::Rules;
+use crate::store::chain::{Head, digest};
+use crate::time::clock::PortClock;
 use crate::time::moment::Moment;
 use crate::work::expand::expand;
 use crate::work::graph::WorkGraph;
@@ -24,13 +29,13 @@ use std::collections::BTreeMap;
 
 /// The error tables that go with the program, for ports without their own.
 const SHIPPED_ERRORS: &str = include_str!("../../rules/forecast-errors.toml");
-/// A port's record within its folder.
-const RECORD: &str = "events.toml";
 /// A port's own error tables within its folder.
 const OWN_ERRORS: &str = "forecast-errors.toml";
 
 /// An event takes an advisory whose file is not in the folder.
 pub const ADVISORY_MISSING: &str = "cli-advisory-missing";
+/// The file of an advisory is not the one that was taken.
+pub const ADVISORY_CHANGED: &str = "cli-advisory-changed";
 /// Warning: an advisory was issued before one that was taken earlier.
 pub const ADVISORY_OLDER: &str = "cli-advisory-older";
 
@@ -60,6 +65,17 @@ pub struct Loaded {
     pub forecasts: BTreeMap<String, Advisory>,
     /// The error tables: its own, or those that go with the program.
     pub tables: ErrorTables,
+    /// The head of the record's chain; `None` if the record is a text.
+    pub head: Option<Head>,
+}
+
+/// How closely a record that only grows is looked at: what is doubtful in it was told when it was written.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Look {
+    /// Faults only.
+    Short,
+    /// Doubts too.
+    Whole,
 }
 
 impl Loaded {
@@ -67,19 +83,29 @@ impl Loaded {
     /// what it corrects, and what was taken later before what was taken earlier.
     #[must_use]
     pub fn in_force(&self, now: Moment) -> Option<(&str, &Advisory)> {
-        self.taken_by(now).max_by_key(|(_, advisory)| (advisory.issued, advisory.is_corrected))
+        self.taken_by(now).into_iter().max_by_key(|(_, advisory)| (advisory.issued, advisory.is_corrected))
     }
 
     /// Whether the last advisory taken by `now` was issued before one taken earlier.
     #[must_use]
     pub fn is_out_of_order(&self, now: Moment) -> bool {
-        let last = self.taken_by(now).last();
-        last.is_some_and(|(_, last)| self.taken_by(now).any(|(_, earlier)| earlier.issued > last.issued))
+        let taken = self.taken_by(now);
+        let last = taken.last().map(|(_, last)| last.issued);
+        last.is_some_and(|last| taken.iter().any(|(_, earlier)| earlier.issued > last))
     }
 
-    fn taken_by(&self, now: Moment) -> impl Iterator<Item = (&str, &Advisory)> {
-        let known = self.events.iter().filter(move |event| event.known <= now.to_utc());
-        known.filter_map(taken).filter_map(|file| Some((file, self.forecasts.get(file)?)))
+    /// The advisories taken by `now` and not withdrawn, in the order taken.
+    #[must_use]
+    pub fn taken_by(&self, now: Moment) -> Vec<(&str, &Advisory)> {
+        let taken = situation(&self.events, now.to_utc()).advisories;
+        let read = taken.iter().filter_map(|taken| self.forecasts.get_key_value(&taken.file));
+        read.map(|(file, advisory)| (file.as_str(), advisory)).collect()
+    }
+
+    /// What every page says about the record: its last event and the head of its chain; empty for a text.
+    #[must_use]
+    pub fn head_words(&self) -> String {
+        self.head.as_ref().map_or_else(String::new, Head::to_string)
     }
 }
 
@@ -88,7 +114,7 @@ impl Loaded {
 /// # Errors
 /// [`Failure::Read`], or [`Failure::Input`] with all findings.
 pub fn load(port: &PortArgs) -> Result<Loaded, Failure> {
-    let Examined { findings, sources, loaded } = examine(port)?;
+    let Examined { findings, sources, loaded } = examine(port, Look::Short)?;
     match loaded {
         Some(loaded) => {
             tell_findings(&findings, &sources);
@@ -102,11 +128,9 @@ pub fn load(port: &PortArgs) -> Result<Loaded, Failure> {
 ///
 /// # Errors
 /// [`Failure::Read`] if the disk does not give what is there.
-pub fn examine(port: &PortArgs) -> Result<Examined, Failure> {
+pub fn examine(port: &PortArgs, look: Look) -> Result<Examined, Failure> {
     let mut folder = PortFolder::open(&port.folder)?;
-    if let Some(record) = &port.record {
-        folder.replace(RECORD, record)?;
-    }
+    let kept = Kept::of(port, &mut folder)?;
     let (things, port_findings) = read_folder(&folder.files);
     let mut findings = folder.findings.clone();
     findings.extend(port_findings);
@@ -116,28 +140,62 @@ pub fn examine(port: &PortArgs) -> Result<Examined, Failure> {
         (port, rules, work)
     });
     let clock = read_draft(&folder.files).0.clock;
-    let (events, event_findings) =
-        folder.files.get(RECORD).map(|source| read_events(source, clock.as_ref())).unwrap_or_default();
+    let (events, event_findings) = events_of(&kept, &folder, clock.as_ref(), look);
     findings.extend(event_findings);
     if let Some((port, rules, work)) = &things {
         findings.extend(strangers(port, rules, work, &events));
     }
     let mut sources: Vec<SourceText> = folder.files.values().cloned().collect();
-    let forecasts = read_forecasts(&folder, &events, &mut findings, &mut sources)?;
-    findings.extend(out_of_order(&events, &forecasts));
+    let forecasts = read_forecasts(&folder, &kept, &events, &mut findings, &mut sources)?;
+    if matches!(kept, Kept::Text) || look == Look::Whole {
+        findings.extend(out_of_order(&events, &forecasts));
+    }
     let tables = read_tables(&folder, &mut findings, &mut sources);
+    if let Kept::Store(kept) = &kept {
+        place_in_store(kept.store.shown(), &events, &mut findings, &mut sources);
+    }
     sort_findings(&mut findings);
     // A file too long to be read was taken as empty: what follows from that is no news.
     findings.retain(|finding| finding.code == TOO_LONG || !folder.unread.contains(&finding.place.file));
-    let loaded = things
-        .zip(tables)
-        .filter(|_| !has_error(&findings))
-        .map(|((port, rules, work), tables)| Loaded { port, rules, work, events, forecasts, tables });
+    let loaded = things.zip(tables).filter(|_| !has_error(&findings)).map(|((port, rules, work), tables)| {
+        Loaded { port, rules, work, events, forecasts, tables, head: kept.head() }
+    });
     Ok(Examined { findings, sources, loaded })
+}
+
+/// The events in order of time known, with what is wrong or doubtful in them.
+fn events_of(
+    kept: &Kept,
+    folder: &PortFolder,
+    clock: Option<&PortClock>,
+    look: Look,
+) -> (Vec<Event>, Vec<Finding>) {
+    match kept {
+        Kept::Text => folder.files.get(TEXT).map(|source| read_events(source, clock)).unwrap_or_default(),
+        Kept::Store(kept) => {
+            let mut events: Vec<Event> = kept.entries.iter().map(|entry| entry.event.clone()).collect();
+            let findings = if look == Look::Whole { doubts(&events, clock) } else { Vec::new() };
+            events.sort_by_key(|event| event.known);
+            (events, findings)
+        }
+    }
+}
+
+/// Findings about events of a store get the place of their line among all events.
+fn place_in_store(shown: &str, events: &[Event], findings: &mut [Finding], sources: &mut Vec<SourceText>) {
+    if findings.iter().all(|finding| finding.place.file != shown) {
+        return;
+    }
+    let source = lines_of(shown, events);
+    for finding in findings.iter_mut().filter(|finding| finding.place.file == shown) {
+        finding.place = source.line(finding.place.line);
+    }
+    sources.push(source);
 }
 
 fn read_forecasts(
     folder: &PortFolder,
+    kept: &Kept,
     events: &[Event],
     findings: &mut Vec<Finding>,
     sources: &mut Vec<SourceText>,
@@ -150,10 +208,11 @@ fn read_forecasts(
         }
     }
     for (file, event) in seen {
-        let Some(bytes) = folder.bytes(file)? else {
+        let Some(bytes) = paper(folder, kept, event, file)? else {
             findings.push(missing(folder, file, event));
             continue;
         };
+        findings.extend(changed(event, file, &bytes));
         let reading = read_forecast(&folder.shown(file), &bytes);
         findings.extend(reading.findings);
         sources.push(reading.source);
@@ -162,6 +221,31 @@ fn read_forecasts(
         }
     }
     Ok(forecasts)
+}
+
+/// An advisory as it came: from the store, else from the folder.
+fn paper(folder: &PortFolder, kept: &Kept, event: &Event, file: &str) -> Result<Option<Vec<u8>>, Failure> {
+    if let (Kept::Store(kept), What::AdvisoryTaken { digest, .. }) = (kept, &event.what)
+        && !digest.is_empty()
+    {
+        return Ok(kept.store.paper(digest)?);
+    }
+    folder.bytes(file)
+}
+
+/// An advisory whose file was changed after it was taken: plans made from it cannot be made again.
+fn changed(event: &Event, file: &str, bytes: &[u8]) -> Option<Finding> {
+    let What::AdvisoryTaken { digest: taken, .. } = &event.what else { return None };
+    let is_changed = !taken.is_empty() && *taken != digest(bytes);
+    is_changed.then(|| {
+        Finding::error(
+            ADVISORY_CHANGED,
+            event.place.clone(),
+            format!("{file} is not the file that was taken: its SHA-256 is {}", digest(bytes)),
+            "an advisory stays as it came; a correction is a file of its own",
+            "put the file back as it was",
+        )
+    })
 }
 
 fn missing(folder: &PortFolder, file: &str, event: &Event) -> Finding {
@@ -229,5 +313,5 @@ pub fn shipped_tables() -> Result<ErrorTables, Failure> {
 }
 
 fn taken(event: &Event) -> Option<&str> {
-    if let What::AdvisoryTaken { file } = &event.what { Some(file) } else { None }
+    if let What::AdvisoryTaken { file, .. } = &event.what { Some(file) } else { None }
 }

@@ -3,7 +3,8 @@
 use crate::cli::args::{Args, Command};
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::screen::{tell, tell_findings};
-use crate::cli::{arrivals, changes, check, completions, man, now, plan};
+use crate::cli::tell as telling;
+use crate::cli::{arrivals, changes, check, completions, man, mark, mend, now, order, plan, record, take};
 use clap::{CommandFactory, Parser};
 use std::ffi::OsString;
 use std::process::ExitCode;
@@ -38,6 +39,13 @@ fn answer(command: &Command) -> Result<Exit, Failure> {
         Command::Now(args) => now::run(args),
         Command::Changes(args) => changes::run(args),
         Command::Arrivals(args) => arrivals::run(args),
+        Command::Take(args) => take::run(args),
+        Command::Mark(args) => mark::run(args),
+        Command::Tell(args) => telling::run(args),
+        Command::Order(args) => order::run(args),
+        Command::Withdraw(args) => mend::withdraw(args),
+        Command::Confirm(args) => mend::confirm(args),
+        Command::Record(args) => record::run(args),
         Command::Completions(args) => completions::run(args, Args::command()),
         Command::Man => man::run(Args::command()),
     }

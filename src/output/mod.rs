@@ -3,6 +3,7 @@
 pub mod arrival_text;
 pub mod arrivals_text;
 pub mod asked;
+pub mod changes_brief;
 pub mod changes_text;
 pub mod clock_text;
 pub mod escape;
@@ -12,6 +13,8 @@ pub mod layout;
 pub mod now_lists;
 pub mod now_text;
 pub mod plan_text;
+pub mod record_lines;
+pub mod review_text;
 pub mod setting;
 pub mod task_text;
 pub mod wire;

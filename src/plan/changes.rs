@@ -132,6 +132,12 @@ pub fn changes_between(earlier: &Plan, later: &Plan, events: &[Event], clock: &P
         })
         .collect();
     between.sort_by_key(|event| event.known);
+    changes_by(earlier, later, between, clock)
+}
+
+/// What differs between two plans because of the events `between` them, whatever the times of the plans.
+#[must_use]
+pub fn changes_by(earlier: &Plan, later: &Plan, between: Vec<&Event>, clock: &PortClock) -> Changes {
     let teller = Teller { earlier, later, between, clock };
     let before: BTreeMap<&str, &TaskLine> =
         earlier.tasks.iter().map(|line| (line.id.as_str(), line)).collect();

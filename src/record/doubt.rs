@@ -3,7 +3,9 @@
 use crate::finding::fault::Finding;
 use crate::record::codes;
 use crate::record::event::{Event, Retracted, What};
-use crate::record::situation::{Situation, TaskState, in_order};
+use crate::record::fact::Fact;
+use crate::record::fold::{Fold, in_order};
+use crate::record::situation::{Situation, TaskState};
 use crate::record::telling::show;
 use crate::time::clock::PortClock;
 use chrono::{DateTime, Utc};
@@ -15,11 +17,11 @@ pub fn doubts(events: &[Event], clock: Option<&PortClock>) -> Vec<Finding> {
     let sorted = in_order(events);
     let mut findings = out_of_order(events, clock);
     findings.extend(repeats(events, &sorted));
-    let mut fold = Situation::default();
-    for (nth, event) in sorted.into_iter().enumerate() {
-        findings.extend(contradiction(&fold, event, clock));
-        findings.extend(idle(&fold, event));
-        fold.add(event, nth);
+    let mut fold = Fold::default();
+    for event in sorted {
+        findings.extend(contradiction(fold.situation(), event, clock));
+        findings.extend(idle(fold.situation(), event, events));
+        fold.add(event);
     }
     findings
 }
@@ -84,6 +86,11 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
         | What::MeansOut { .. }
         | What::MeansBack { .. }
         | What::Observed { .. }
+        | What::TaskLeft { .. }
+        | What::Told(_)
+        | What::Ruled(_)
+        | What::Withdrawn { .. }
+        | What::Confirmed { .. }
         | What::PlanIssued => return None,
     };
     let (started, done) = (started?, done?);
@@ -100,9 +107,9 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
 }
 
 /// An event that ends or takes back something that was never said.
-fn idle(fold: &Situation, event: &Event) -> Option<Finding> {
+fn idle(fold: &Situation, event: &Event, events: &[Event]) -> Option<Finding> {
     let found = match &event.what {
-        What::AdvisoryTaken { file } => {
+        What::AdvisoryTaken { file, .. } => {
             fold.has_taken(file).then(|| format!("{file} was taken before; the first time counts"))
         }
         What::ArrivalAdopted { place, time: None, .. } => {
@@ -123,7 +130,24 @@ fn idle(fold: &Situation, event: &Event) -> Option<Finding> {
         What::MeansBack { member, from } => {
             (!is_out(fold, member, *from)).then(|| format!("{member} is not out of service at that time"))
         }
+        What::Told(fact @ (Fact::Resumes { .. } | Fact::Usable { .. })) => {
+            let (kind, about) = fact.about();
+            let is_told = fold.facts.contains_key(&(kind, about.to_owned()));
+            (!is_told).then(|| format!("nobody said that {about} had stopped or could not be used"))
+        }
+        What::Withdrawn { event: number } => {
+            let is_there = *number < event.number && events.iter().any(|event| event.number == *number);
+            (!is_there).then(|| format!("there is no event {number} before this one"))
+        }
+        What::Confirmed { event: number } => match fold.waiting.get(number) {
+            None => Some(format!("event {number} waits for no confirmation")),
+            Some(order) => (!order.is_by_another(event))
+                .then(|| format!("event {number} was ordered by the same person; another has to confirm it")),
+        },
         What::ArrivalAdopted { time: Some(_), .. }
+        | What::TaskLeft { .. }
+        | What::Told(_)
+        | What::Ruled(_)
         | What::StageDeclared { .. }
         | What::TaskStarted { .. }
         | What::TaskDone { .. }

@@ -3,7 +3,11 @@
 pub mod codes;
 pub mod doubt;
 pub mod event;
+pub mod fact;
+pub mod fold;
 pub mod mention;
 pub mod reader;
+pub mod reader_fact;
+pub mod ruling;
 pub mod situation;
 pub mod telling;
