@@ -82,12 +82,20 @@ pub enum StoreError {
         file: String,
     },
     /// The system does not give or take what was asked.
-    #[error("{file}: {error}")]
+    #[error("{file}: the disk failed ({error}); 'record list' shows whether it was recorded")]
     Disk {
         /// The file.
         file: String,
         /// What the system says.
         error: io::Error,
+    },
+    /// The disk failed on the way: an event may have got there without being acknowledged.
+    #[error("{file}: the disk failed ({what}); 'record list' shows whether it was recorded")]
+    Failing {
+        /// The record's file.
+        file: String,
+        /// What the database says.
+        what: String,
     },
     /// Anything else that the database says.
     #[error("{file}: {what}")]
@@ -108,6 +116,7 @@ impl StoreError {
         match error.sqlite_error_code() {
             Some(ErrorCode::DiskFull) => StoreError::Full { file },
             Some(ErrorCode::ReadOnly | ErrorCode::PermissionDenied) => StoreError::ReadOnly { file },
+            Some(ErrorCode::SystemIoFailure | ErrorCode::CannotOpen) => StoreError::Failing { file, what },
             Some(ErrorCode::DatabaseBusy | ErrorCode::DatabaseLocked) => StoreError::Busy { file },
             Some(ErrorCode::DatabaseCorrupt | ErrorCode::NotADatabase) => StoreError::Damaged { file, what },
             Some(_) | None => StoreError::Other { file, what },
@@ -140,6 +149,7 @@ impl StoreError {
             | StoreError::Shared { .. }
             | StoreError::Exists { .. }
             | StoreError::Disk { .. }
+            | StoreError::Failing { .. }
             | StoreError::Other { .. } => false,
         }
     }
