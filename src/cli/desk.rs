@@ -15,7 +15,7 @@ use crate::output::changes_brief::changes_brief;
 use crate::output::setting::Setting;
 use crate::plan::changes::changes_by;
 use crate::plan::news::news_words;
-use crate::record::doubt::doubts;
+use crate::record::doubt::doubts_of_new;
 use crate::record::event::Event;
 use crate::record::mention::{MentionKind, mentions};
 use crate::record::reader::read_events;
@@ -188,9 +188,7 @@ impl<'a> Desk<'a> {
         if has_error(&strange) {
             return Err(fault(strange));
         }
-        let mut by_number: Vec<Event> = known.iter().chain(&events).cloned().collect();
-        by_number.sort_by_key(|event| event.number);
-        let doubtful = doubts(&by_number, Some(&port.clock)).into_iter().filter(is_new);
+        let doubtful = doubts_of_new(known, &events, Some(&port.clock)).into_iter().filter(is_new);
         let told: Vec<Finding> = strange.into_iter().chain(doubtful).collect();
         tell_findings(&told, std::slice::from_ref(source));
         Ok(events)

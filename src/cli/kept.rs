@@ -7,7 +7,7 @@ use crate::finding::fault::Finding;
 use crate::finding::source::SourceText;
 use crate::record::event::Event;
 use crate::store::chain::Head;
-use crate::store::file::{Entry, Store};
+use crate::store::file::Store;
 use crate::store::form::{Form, in_utc};
 use std::fs::File;
 use std::io::Read;
@@ -38,8 +38,10 @@ pub enum Kept {
 pub struct KeptStore {
     /// The file.
     pub store: Store,
-    /// Its events.
-    pub entries: Vec<Entry>,
+    /// Its events, in the order of their numbers.
+    pub events: Vec<Event>,
+    /// The head of its chain.
+    pub head: Head,
 }
 
 impl Kept {
@@ -68,7 +70,9 @@ impl Kept {
         folder.files.remove(TEXT);
         let store = Store::open(&path)?;
         let entries = store.read()?;
-        Ok(Kept::Store(Box::new(KeptStore { store, entries })))
+        let head = entries.last().map_or_else(Head::beginning, |last| last.head.clone());
+        let events = entries.into_iter().map(|entry| entry.event).collect();
+        Ok(Kept::Store(Box::new(KeptStore { store, events, head })))
     }
 
     /// The head of the chain; `None` for a text.
@@ -76,9 +80,7 @@ impl Kept {
     pub fn head(&self) -> Option<Head> {
         match self {
             Kept::Text => None,
-            Kept::Store(kept) => {
-                Some(kept.entries.last().map_or_else(Head::beginning, |last| last.head.clone()))
-            }
+            Kept::Store(kept) => Some(kept.head.clone()),
         }
     }
 }

@@ -130,7 +130,7 @@ pub fn load(port: &PortArgs) -> Result<Loaded, Failure> {
 /// [`Failure::Read`] if the disk does not give what is there.
 pub fn examine(port: &PortArgs, look: Look) -> Result<Examined, Failure> {
     let mut folder = PortFolder::open(&port.folder)?;
-    let kept = Kept::of(port, &mut folder)?;
+    let mut kept = Kept::of(port, &mut folder)?;
     let (things, port_findings) = read_folder(&folder.files);
     let mut findings = folder.findings.clone();
     findings.extend(port_findings);
@@ -140,7 +140,7 @@ pub fn examine(port: &PortArgs, look: Look) -> Result<Examined, Failure> {
         (port, rules, work)
     });
     let clock = read_draft(&folder.files).0.clock;
-    let (events, event_findings) = events_of(&kept, &folder, clock.as_ref(), look);
+    let (events, event_findings) = events_of(&mut kept, &folder, clock.as_ref(), look);
     findings.extend(event_findings);
     if let Some((port, rules, work)) = &things {
         findings.extend(strangers(port, rules, work, &events));
@@ -165,7 +165,7 @@ pub fn examine(port: &PortArgs, look: Look) -> Result<Examined, Failure> {
 
 /// The events in order of time known, with what is wrong or doubtful in them.
 fn events_of(
-    kept: &Kept,
+    kept: &mut Kept,
     folder: &PortFolder,
     clock: Option<&PortClock>,
     look: Look,
@@ -173,7 +173,7 @@ fn events_of(
     match kept {
         Kept::Text => folder.files.get(TEXT).map(|source| read_events(source, clock)).unwrap_or_default(),
         Kept::Store(kept) => {
-            let mut events: Vec<Event> = kept.entries.iter().map(|entry| entry.event.clone()).collect();
+            let mut events = std::mem::take(&mut kept.events);
             let findings = if look == Look::Whole { doubts(&events, clock) } else { Vec::new() };
             events.sort_by_key(|event| event.known);
             (events, findings)

@@ -6,7 +6,7 @@ use crate::cli::kept::{Kept, STORE, TEXT};
 use crate::cli::load::load;
 use crate::cli::port_args::PortArgs;
 use crate::cli::screen::show;
-use crate::record::event::{Event, What};
+use crate::record::event::What;
 use crate::store::chain::{Head, digest};
 use crate::store::error::StoreError;
 use crate::store::file::{Addition, Store};
@@ -65,10 +65,9 @@ pub fn export(port: &PortArgs, to: &Path) -> Result<Exit, Failure> {
     let Kept::Store(kept) = Kept::of(port, &mut folder)? else {
         return Err(Failure::Usage(format!("the port has no {STORE}; its record is a text already")));
     };
-    let events: Vec<Event> = kept.entries.iter().map(|entry| entry.event.clone()).collect();
-    let head = kept.entries.last().map_or_else(Head::beginning, |entry| entry.head.clone());
+    let (events, head) = (&kept.events, &kept.head);
     let title = format!("{}\n{}: the record as of {head}", loaded.port.invented, loaded.port.name);
-    let text = events_toml(&events, &loaded.port.clock, title.trim_start()).map_err(|error| {
+    let text = events_toml(events, &loaded.port.clock, title.trim_start()).map_err(|error| {
         StoreError::Other { file: kept.store.shown().to_owned(), what: error.to_string() }
     })?;
     let disk = |path: &Path| {
@@ -76,7 +75,7 @@ pub fn export(port: &PortArgs, to: &Path) -> Result<Exit, Failure> {
         move |error| Failure::from(StoreError::disk(&shown, error))
     };
     fs::create_dir(to).map_err(disk(to))?;
-    for event in &events {
+    for event in events {
         if let What::AdvisoryTaken { file, digest } = &event.what
             && let Some(bytes) = kept.store.paper(digest)?
         {

@@ -11,7 +11,13 @@ use chrono::{DateTime, Utc};
 /// "advisories/12.txt taken (Duty officer)": the event and who says so.
 #[must_use]
 pub fn news_words(event: &Event, clock: &PortClock) -> String {
-    let what = what_words(&event.what, &|time| clock.show(Moment::at_or_before(time)));
+    let shown = |time| clock.show(Moment::at_or_before(time));
+    let mut what = what_words(&event.what, &shown);
+    if let What::MeansOut { from, .. } | What::MeansBack { from, .. } = &event.what
+        && *from != event.known
+    {
+        what.push_str(&format!(" from {}", shown(*from)));
+    }
     let who = match (event.name.as_str(), event.on_behalf.as_str()) {
         ("", "") => event.by.clone(),
         (name, "") => format!("{name}, {}", event.by),

@@ -14,13 +14,28 @@ use std::collections::BTreeSet;
 /// Warnings about `events`, which are in the order of the file.
 #[must_use]
 pub fn doubts(events: &[Event], clock: Option<&PortClock>) -> Vec<Finding> {
-    let sorted = in_order(events);
     let mut findings = out_of_order(events, clock);
-    findings.extend(repeats(events, &sorted));
-    let mut fold = Fold::default();
-    for event in sorted {
-        findings.extend(contradiction(fold.situation(), event, clock));
-        findings.extend(idle(fold.situation(), event, events));
+    findings.extend(doubts_of_new(&[], events, clock));
+    findings
+}
+
+/// Warnings about `new` events that come after `known` ones; about those nothing is said.
+#[must_use]
+pub fn doubts_of_new(known: &[Event], new: &[Event], clock: Option<&PortClock>) -> Vec<Finding> {
+    let all = || known.iter().chain(new);
+    let sorted = in_order(all());
+    let is_new = |event: &Event| new.first().is_some_and(|first| first.number <= event.number);
+    let first_new = sorted.iter().position(|event| is_new(event)).unwrap_or(sorted.len());
+    let mut findings = repeats(new, &sorted);
+    let is_there = |number: usize| all().any(|event| event.number == number);
+    let mut later = sorted;
+    let rest = later.split_off(first_new);
+    let mut fold = Fold::of(later, DateTime::UNIX_EPOCH);
+    for event in rest {
+        if is_new(event) {
+            findings.extend(contradiction(fold.situation(), event, clock));
+            findings.extend(idle(fold.situation(), event, &is_there));
+        }
         fold.add(event);
     }
     findings
@@ -46,8 +61,8 @@ fn out_of_order(events: &[Event], clock: Option<&PortClock>) -> Vec<Finding> {
 
 /// Events that say the same as an earlier one.
 fn repeats(events: &[Event], once: &[&Event]) -> Vec<Finding> {
-    let kept: BTreeSet<_> = once.iter().map(|event| &event.place).collect();
-    let again = events.iter().filter(|event| !kept.contains(&event.place));
+    let kept: BTreeSet<usize> = once.iter().map(|event| event.number).collect();
+    let again = events.iter().filter(|event| !kept.contains(&event.number));
     again
         .map(|event| {
             Finding::warning(
@@ -107,7 +122,7 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
 }
 
 /// An event that ends or takes back something that was never said.
-fn idle(fold: &Situation, event: &Event, events: &[Event]) -> Option<Finding> {
+fn idle(fold: &Situation, event: &Event, is_there: &dyn Fn(usize) -> bool) -> Option<Finding> {
     let found = match &event.what {
         What::AdvisoryTaken { file, .. } => {
             fold.has_taken(file).then(|| format!("{file} was taken before; the first time counts"))
@@ -135,10 +150,8 @@ fn idle(fold: &Situation, event: &Event, events: &[Event]) -> Option<Finding> {
             let is_told = fold.facts.contains_key(&(kind, about.to_owned()));
             (!is_told).then(|| format!("nobody said that {about} had stopped or could not be used"))
         }
-        What::Withdrawn { event: number } => {
-            let is_there = *number < event.number && events.iter().any(|event| event.number == *number);
-            (!is_there).then(|| format!("there is no event {number} before this one"))
-        }
+        What::Withdrawn { event: number } => (*number >= event.number || !is_there(*number))
+            .then(|| format!("there is no event {number} before this one")),
         What::Confirmed { event: number } => match fold.waiting.get(number) {
             None => Some(format!("event {number} waits for no confirmation")),
             Some(order) => (!order.is_by_another(event))

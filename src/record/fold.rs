@@ -41,9 +41,9 @@ pub fn situation(events: &[Event], now: DateTime<Utc>) -> Situation {
 /// The events in order of time known, ties in the order given, without those that say the same as one before, unless that
 /// one was withdrawn.
 #[must_use]
-pub fn in_order(events: &[Event]) -> Vec<&Event> {
-    let taken_back: BTreeSet<usize> = events.iter().filter_map(Event::withdraws).collect();
-    let mut once: Vec<(usize, &Event)> = events.iter().enumerate().collect();
+pub fn in_order<'a>(events: impl IntoIterator<Item = &'a Event>) -> Vec<&'a Event> {
+    let mut once: Vec<(usize, &Event)> = events.into_iter().enumerate().collect();
+    let taken_back: BTreeSet<usize> = once.iter().filter_map(|(_, event)| event.withdraws()).collect();
     once.sort_by(|(_, a), (_, b)| a.compare(b));
     once.dedup_by(|(_, later), (_, earlier)| {
         later.compare(earlier).is_eq() && !taken_back.contains(&earlier.number)

@@ -2,7 +2,6 @@
 
 use sha2::{Digest, Sha256};
 use std::fmt;
-use std::fmt::Write;
 
 /// What the first event is chained to: hash of these words.
 const BEGINNING: &str = "snugdown record 1";
@@ -57,9 +56,6 @@ impl fmt::Display for Head {
 /// ```
 #[must_use]
 pub fn digest(bytes: &[u8]) -> String {
-    Sha256::digest(bytes).iter().fold(String::with_capacity(64), |mut digits, byte| {
-        // Writing to a text cannot fail.
-        let _ = write!(digits, "{byte:02x}");
-        digits
-    })
+    let digit = |half: u8| char::from_digit(u32::from(half), 16).unwrap_or('0');
+    Sha256::digest(bytes).iter().flat_map(|byte| [digit(byte >> 4), digit(byte & 15)]).collect()
 }

@@ -7,6 +7,7 @@ use crate::record::fold::{in_order, withdrawn};
 use crate::record::mention::{Mention, MentionKind, mentions};
 use crate::rules::stage::Rules;
 use crate::work::graph::WorkGraph;
+use std::collections::BTreeSet;
 
 /// Findings about every name in `events` and in the duties that the port's files do not know. Files of advisories are
 /// not judged here: they lie on a disk.
@@ -17,14 +18,16 @@ pub fn strangers(port: &Port, rules: &Rules, work: &WorkGraph, events: &[Event])
     let channels = port.channels.iter().map(|channel| channel.id.as_str());
     let members = port.pools.iter().flat_map(|pool| &pool.members).map(|member| member.id.as_str());
     let pools = port.pools.iter().map(|pool| pool.id.as_str());
-    let known = Known {
+    let mut known = Known {
         places: places().collect(),
         stages: rules.stages.iter().map(|stage| stage.id.as_str()).collect(),
         tasks: work.task_ids().collect(),
         members: members.chain(pools).collect(),
         spots: places().chain(berths).chain(channels).collect(),
         ships: port.ships.iter().map(|ship| ship.id.as_str()).collect(),
+        all: BTreeSet::new(),
     };
+    known.all = known.pairs();
     let sorted = in_order(events);
     let gone = withdrawn(&sorted);
     let standing = || events.iter().filter(|event| !gone.contains(&event.number));
@@ -41,9 +44,22 @@ struct Known<'a> {
     members: Vec<&'a str>,
     spots: Vec<&'a str>,
     ships: Vec<&'a str>,
+    all: BTreeSet<(MentionKind, &'a str)>,
 }
 
-impl Known<'_> {
+impl<'a> Known<'a> {
+    fn pairs(&self) -> BTreeSet<(MentionKind, &'a str)> {
+        let lists = [
+            (MentionKind::Place, &self.places),
+            (MentionKind::Stage, &self.stages),
+            (MentionKind::Task, &self.tasks),
+            (MentionKind::Member, &self.members),
+            (MentionKind::Spot, &self.spots),
+            (MentionKind::Ship, &self.ships),
+        ];
+        lists.into_iter().flat_map(|(kind, ids)| ids.iter().map(move |id| (kind, *id))).collect()
+    }
+
     fn stranger(&self, mention: &Mention<'_>) -> Option<Finding> {
         let (code, kind, known) = match mention.kind {
             MentionKind::Place => ("work-unknown-event-place", "place", &self.places),
@@ -54,7 +70,8 @@ impl Known<'_> {
             MentionKind::Ship => ("work-unknown-event-ship", "ship", &self.ships),
             MentionKind::File => return None,
         };
-        if known.contains(&mention.id) {
+        // Records are long, and a large port has hundreds of tasks.
+        if self.all.contains(&(mention.kind, mention.id)) {
             return None;
         }
         Some(Finding::error(
