@@ -52,7 +52,8 @@ fn example(name: &str) -> PathBuf {
 
 /// What an event says, wherever it stands.
 fn said(events: impl IntoIterator<Item = Event>) -> Vec<Event> {
-    let nowhere = snugdown::finding::fault::Place { file: String::new(), line: 1, column: 1, start: 0, end: 0 };
+    let nowhere =
+        snugdown::finding::fault::Place { file: String::new(), line: 1, column: 1, start: 0, end: 0 };
     events.into_iter().map(|event| Event { place: nowhere.clone(), ..event }).collect()
 }
 
@@ -110,7 +111,10 @@ fn nothing_in_the_record_can_be_changed_or_taken_out() {
         "INSERT OR REPLACE INTO event (number, text, hash) VALUES (3, '{}', printf('%064d', 0))",
     ] {
         let refused = raw.execute(change, []).unwrap_err().to_string();
-        assert!(refused.contains("never rewritten") || refused.contains("without gaps"), "{change}: {refused}");
+        assert!(
+            refused.contains("never rewritten") || refused.contains("without gaps"),
+            "{change}: {refused}"
+        );
     }
     assert_eq!(read(&path).len(), 38);
 }
@@ -152,7 +156,8 @@ fn a_paper_that_was_changed_is_found() {
     let path = path("paper");
     let mut store = Store::create(&path).unwrap();
     let paper = b"BULLETIN".to_vec();
-    let addition = Addition { events: &events(EXAMPLE), papers: std::slice::from_ref(&paper), recorded: now() };
+    let addition =
+        Addition { events: &events(EXAMPLE), papers: std::slice::from_ref(&paper), recorded: now() };
     store.append(&Head::beginning(), addition).unwrap();
     assert_eq!(store.paper(&digest(&paper)).unwrap(), Some(paper.clone()));
     assert_eq!(store.paper(&digest(b"another")).unwrap(), None);
@@ -273,7 +278,10 @@ fn a_record_cut_short_or_with_a_flipped_byte_is_found_wherever_it_is() {
         let read = Store::open(&path).and_then(|store| Ok((store.page_faults()?, store.read()?)));
         assert!(read.is_err() || read.is_ok_and(|(faults, _)| !faults.is_empty()), "cut to {length}");
     }
-    println!("a flipped bit in {} places: {found} found, {harmless} in bytes that carry nothing", found + harmless);
+    println!(
+        "a flipped bit in {} places: {found} found, {harmless} in bytes that carry nothing",
+        found + harmless
+    );
     assert!(found > 20);
 }
 

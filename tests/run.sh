@@ -24,6 +24,9 @@ if [ "${1:-}" = all ]; then
   bash tests/outside/run.sh
   say "long runs"
   SNUGDOWN_LONG=1 cargo test --locked --release --test demo_port
+  SNUGDOWN_LONG=1 cargo test --locked --release --test record_faults -- --nocapture
+  cargo build --locked --release --bins
+  cargo run --locked --release --example record_speed
   say "benches"
   cargo bench --locked
 fi

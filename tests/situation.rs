@@ -414,8 +414,10 @@ fn what_is_withdrawn_can_be_said_again_in_the_same_minute() {
 #[test]
 fn an_advisory_taken_by_mistake_and_withdrawn_is_not_in_force() {
     let take = |file: &str| What::AdvisoryTaken { file: file.into(), digest: String::new() };
-    let events = numbered(&[(1, "A", take("1")), (2, "A", take("2")), (3, "A", What::Withdrawn { event: 2 })]);
-    let files: Vec<String> = situation(&events, at(3)).advisories.into_iter().map(|taken| taken.file).collect();
+    let events =
+        numbered(&[(1, "A", take("1")), (2, "A", take("2")), (3, "A", What::Withdrawn { event: 2 })]);
+    let files: Vec<String> =
+        situation(&events, at(3)).advisories.into_iter().map(|taken| taken.file).collect();
     assert_eq!(files, ["1"]);
 }
 

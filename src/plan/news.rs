@@ -13,7 +13,10 @@ use chrono::{DateTime, Utc};
 pub fn news_words(event: &Event, clock: &PortClock) -> String {
     let shown = |time| clock.show(Moment::at_or_before(time));
     let mut what = what_words(&event.what, &shown);
-    if let What::MeansOut { from, .. } | What::MeansBack { from, .. } = &event.what
+    if let What::MeansOut { from, .. }
+    | What::MeansBack { from, .. }
+    | What::StageDeclared { from, .. }
+    | What::StageLifted { from, .. } = &event.what
         && *from != event.known
     {
         what.push_str(&format!(" from {}", shown(*from)));
@@ -94,17 +97,15 @@ fn fact_words(fact: &Fact, shown: &dyn Fn(DateTime<Utc>) -> String) -> String {
 }
 
 fn ruling_words(ruling: &Ruling, shown: &dyn Fn(DateTime<Utc>) -> String) -> String {
-    let on = |conditions: &str| {
-        if conditions.is_empty() { String::new() } else { format!(" on condition: {conditions}") }
+    let (what, conditions) = match ruling {
+        Ruling::Hold { stage, .. } => (format!("stage {stage} held"), ""),
+        Ruling::Skip { stage } => (format!("stage {stage} skipped"), ""),
+        Ruling::Stay { ship, conditions, .. } => (format!("{ship} may stay"), conditions.as_str()),
+        Ruling::Waive { waived, conditions, .. } => (format!("{waived} waived"), conditions.as_str()),
+        Ruling::Refuse { refused } => (format!("{refused} refused"), ""),
     };
-    let what = match ruling {
-        Ruling::Hold { stage, .. } => format!("stage {stage} held"),
-        Ruling::Skip { stage } => format!("stage {stage} skipped"),
-        Ruling::Stay { ship, conditions, .. } => format!("{ship} may stay{}", on(conditions)),
-        Ruling::Waive { waived, conditions, .. } => format!("{waived} waived{}", on(conditions)),
-        Ruling::Refuse { refused } => format!("{refused} refused"),
-    };
-    format!("{what}{}", until_words(ruling.until(), shown))
+    let on = if conditions.is_empty() { String::new() } else { format!(", on condition: {conditions}") };
+    format!("{what}{}{on}", until_words(ruling.until(), shown))
 }
 
 fn until_words(until: Option<DateTime<Utc>>, shown: &dyn Fn(DateTime<Utc>) -> String) -> String {
