@@ -13,6 +13,7 @@ pub mod port;
 pub mod record;
 pub mod rules;
 pub mod schedule;
+pub mod store;
 pub mod text;
 pub mod tide;
 pub mod time;

@@ -48,6 +48,11 @@ out = { member = "T2", from = "2026-09-18T06:00-03:00" }
 
 [[event]]
 at = "2026-09-17T12:09-03:00"
+by = "Traffic service"
+unusable = { place = "main", from = "2026-09-19T12:00-03:00" }
+
+[[event]]
+at = "2026-09-17T12:09-03:00"
 by = "Berth foreman"
 not_needed = { task = "Q2/clear" }
 
@@ -199,6 +204,9 @@ names! {
     a_member_out_of_service_is_named: "audit-out-of-service", |plan| {
         line(plan, "T1-moor").members = vec![(String::from("tug"), vec![String::from("T1"), String::from("T2")])];
         move_to(plan, "T1-moor", at("2026-09-18T05:30-03:00"));
+    };
+    a_passage_through_a_channel_out_of_use_is_named: "audit-unusable", |plan| {
+        move_to(plan, "V01/sail", at("2026-09-19T13:00-03:00"));
     };
     a_gang_off_shift_is_named: "audit-off-shift", |plan| move_to(plan, "K1/tie-down", at("2026-09-18T03:00-03:00"));
     a_pilot_kept_too_long_on_duty_is_named: "audit-duty", |plan| {

@@ -234,7 +234,23 @@ fn help_reads_well() {
 fn the_manual_page_and_the_completions_name_every_command() {
     let page = text(&run(&["man"]).stdout);
     let script = text(&run(&["completions", "bash"]).stdout);
-    for command in ["check", "plan", "now", "changes", "arrivals", "completions", "man"] {
+    let commands = [
+        "check",
+        "plan",
+        "now",
+        "changes",
+        "arrivals",
+        "take",
+        "mark",
+        "tell",
+        "order",
+        "withdraw",
+        "confirm",
+        "record",
+        "completions",
+        "man",
+    ];
+    for command in commands {
         assert!(page.contains(command) && script.contains(command), "{command}");
     }
     assert!(page.contains("\\-\\-hours"), "{page}");

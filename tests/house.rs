@@ -5,7 +5,7 @@ use std::collections::{BTreeMap, BTreeSet};
 use std::path::{Path, PathBuf};
 
 /// The floor of each room; a room may import from rooms on lower floors, and from itself.
-const FLOORS: [(&str, u8); 19] = [
+const FLOORS: [(&str, u8); 20] = [
     ("units", 1),
     ("time", 1),
     ("finding", 1),
@@ -22,6 +22,7 @@ const FLOORS: [(&str, u8); 19] = [
     ("work", 6),
     ("plan", 7),
     ("output", 8),
+    ("store", 8),
     ("cli", 9),
     ("main", 10),
     ("lib", 0),
@@ -175,7 +176,9 @@ fn only_the_command_line_reads_clocks_files_or_prints() {
         }
         let code = code_of(&path);
         for pattern in ["std::fs", "std::env", "Utc::now", "SystemTime", "println!", "print!", "eprintln!"] {
-            if code.contains(pattern) {
+            // The store is the record's file; time is given to it.
+            let is_allowed = room_of(&name) == "store" && pattern == "std::fs";
+            if code.contains(pattern) && !is_allowed {
                 wrong.push(format!("{name} uses {pattern}"));
             }
         }

@@ -6,7 +6,7 @@ mod common;
 use common::Reading;
 use snugdown::plan::changes::{Changes, changes_between};
 use snugdown::plan::sheet::{Plan, TaskState};
-use snugdown::record::situation::situation;
+use snugdown::record::fold::situation;
 use std::sync::OnceLock;
 
 /// Just after the demo's last event.

@@ -6,7 +6,7 @@ mod common;
 use common::Reading;
 use snugdown::plan::changes::{Turn, changes_between};
 use snugdown::plan::sheet::{DutyState, Plan, Point, StageStatus, TaskState};
-use snugdown::time::moment::Minutes;
+use snugdown::time::moment::{Minutes, Moment};
 
 const STORM: &str = include_str!("data/small-port/approach.txt");
 const TAKEN: &str = "[[event]]\nat = \"2026-09-17T12:05-03:00\"\nby = \"Duty officer\"\ntook_advisory = { file = \"01.txt\" }\n";
@@ -291,4 +291,50 @@ fn what_adopting_the_computed_arrival_would_move_is_told_both_ways() {
         assert_eq!(plan.if_adopted[0].by.get() > 0, later);
         assert_eq!(plan.overtaken.is_empty(), later);
     }
+}
+
+#[test]
+fn a_pool_that_stops_takes_all_its_members_and_is_the_cause_of_what_no_longer_fits() {
+    let stop =
+        event("2026-09-17T12:30-03:00", "out = { member = \"pilot\", from = \"2026-09-17T13:00-03:00\" }");
+    let reading = port_with(&stop);
+    let history = reading.plans("2026-09-17T12:31-03:00");
+    let plan = history.latest().unwrap();
+    assert_eq!(plan.breaches, []);
+    for ship in ["V01/sail", "V02/sail"] {
+        assert_eq!(plan.task(ship).unwrap().state, TaskState::GivenUp, "{ship}");
+    }
+    let changes = changes_between(&history.plans[0], plan, &reading.events, &reading.port.clock);
+    let ship = changes.turned.iter().find(|turned| turned.id == "V01/sail").unwrap();
+    assert!(ship.cause.contains("pilot out of service from Thu 17 Sep 13:00"), "{}", ship.cause);
+}
+
+#[test]
+fn nobody_passes_a_channel_while_it_is_out_of_use() {
+    let shut = "unusable = { place = \"main\", from = \"2026-09-17T12:30-03:00\", until = \"2026-09-17T18:00-03:00\" }";
+    let before = plan_with("", NOW);
+    let is_within =
+        |start: Moment| ("2026-09-17T15:30Z".."2026-09-17T21:00Z").contains(&start.to_string().as_str());
+    assert!(["V01/sail", "V02/sail"].iter().any(|ship| is_within(before.task(ship).unwrap().start.unwrap())));
+    let plan = plan_with(&event("2026-09-17T12:06-03:00", shut), NOW);
+    assert_eq!(plan.breaches, []);
+    for ship in ["V01/sail", "V02/sail"] {
+        assert!(plan.task(ship).unwrap().start.is_none_or(|start| !is_within(start)), "{ship}");
+    }
+    assert!(
+        plan.notes.iter().any(|note| note.starts_with("fact: main cannot be used from")),
+        "{:?}",
+        plan.notes
+    );
+}
+
+#[test]
+fn facts_and_rulings_stand_in_the_head_until_they_end() {
+    let events =
+        event("2026-09-17T12:06-03:00", "curfew = { area = \"town\", until = \"2026-09-17T12:09-03:00\" }")
+            + &event("2026-09-17T12:06-03:00", "signal = { shown = \"two balls\" }")
+            + &event("2026-09-17T12:07-03:00", "holds = { stage = \"S2\" }");
+    let notes = plan_with(&events, NOW).notes;
+    let heads: Vec<&str> = notes.iter().filter_map(|note| note.split(" from ").next()).collect();
+    assert_eq!(heads, ["order: stage S2 held (Harbour Master)", "fact: signal two balls shown"]);
 }

@@ -31,6 +31,9 @@ if [ "${1:-}" = all ]; then
   done
   say "long runs"
   SNUGDOWN_LONG=1 cargo test --locked --release --test demo_port
+  SNUGDOWN_LONG=1 cargo test --locked --release --test record_faults -- --nocapture
+  cargo build --locked --release --bins
+  cargo run --locked --release --example record_speed
   say "benches"
   cargo bench --locked
 fi

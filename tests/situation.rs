@@ -4,8 +4,11 @@ use chrono::{DateTime, TimeDelta, Utc};
 use proptest::prelude::{Just, Strategy, any, prop_oneof, proptest};
 use snugdown::finding::fault::Place;
 use snugdown::record::event::{Event, Retracted, What};
+use snugdown::record::fact::Fact;
+use snugdown::record::fold::{Fold, in_order, situation};
 use snugdown::record::mention::{MentionKind, mentions};
-use snugdown::record::situation::{Outcome, Situation, TaskState, Way, situation};
+use snugdown::record::ruling::Ruling;
+use snugdown::record::situation::{Outcome, Situation, TaskState, Way};
 use snugdown::record::taking::Taking;
 use snugdown::time::moment::Minutes;
 use snugdown::units::speed::Knots;
@@ -18,7 +21,17 @@ fn at(minute: i64) -> DateTime<Utc> {
 
 fn event(known: i64, what: What) -> Event {
     let place = Place { file: "events.toml".into(), line: 1, column: 1, start: 0, end: 0 };
-    Event { known: at(known), by: "Duty officer".into(), what, reason: String::new(), place }
+    Event {
+        number: 1,
+        known: at(known),
+        by: "Duty officer".into(),
+        name: String::new(),
+        on_behalf: String::new(),
+        awaits_second: false,
+        what,
+        reason: String::new(),
+        place,
+    }
 }
 
 fn told(events: &[(i64, What)]) -> Situation {
@@ -361,4 +374,115 @@ proptest! {
         let (first, then) = (situation(&events, at(200)), situation(&events, at(200 + later)));
         assert_eq!(Situation { now: first.now, ..then }, first);
     }
+}
+
+/// Events numbered from 1, each known at its minute and told by its voice.
+fn numbered(events: &[(i64, &str, What)]) -> Vec<Event> {
+    let one = |(number, (known, by, what)): (usize, &(i64, &str, What))| Event {
+        number,
+        by: (*by).into(),
+        ..event(*known, what.clone())
+    };
+    (1..).zip(events).map(one).collect()
+}
+
+#[test]
+fn a_withdrawn_event_counts_as_never_said_but_not_before_that_is_known() {
+    let events = numbered(&[(1, "A", done(1)), (5, "A", What::Withdrawn { event: 1 })]);
+    assert_eq!(situation(&events, at(4)).tasks["T"].done_at(), Some(at(1)));
+    let then = situation(&events, at(5));
+    assert!(then.tasks.is_empty());
+    // A plan is made at each time at which something became known, a withdrawn report too.
+    assert_eq!(then.changes, [at(1), at(5)]);
+}
+
+#[test]
+fn a_withdrawal_that_is_itself_withdrawn_lets_the_event_count_again() {
+    let events = numbered(&[
+        (1, "A", done(1)),
+        (2, "A", What::Withdrawn { event: 1 }),
+        (3, "A", What::Withdrawn { event: 2 }),
+    ]);
+    assert_eq!(situation(&events, at(3)).tasks["T"].done_at(), Some(at(1)));
+}
+
+#[test]
+fn what_is_withdrawn_can_be_said_again_in_the_same_minute() {
+    let events = numbered(&[(1, "A", done(1)), (1, "A", What::Withdrawn { event: 1 }), (1, "A", done(1))]);
+    assert_eq!(situation(&events, at(1)).tasks["T"].done_at(), Some(at(1)));
+}
+
+#[test]
+fn an_advisory_taken_by_mistake_and_withdrawn_is_not_in_force() {
+    let take = |file: &str| What::AdvisoryTaken(Taking::of(file));
+    let events =
+        numbered(&[(1, "A", take("1")), (2, "A", take("2")), (3, "A", What::Withdrawn { event: 2 })]);
+    let files: Vec<String> =
+        situation(&events, at(3)).advisories.into_iter().map(|taken| taken.file).collect();
+    assert_eq!(files, ["1"]);
+}
+
+#[test]
+fn events_folded_one_by_one_give_the_same_situation_as_all_at_once() {
+    let events = numbered(&[
+        (1, "A", started(1)),
+        (2, "A", out(2, None)),
+        (3, "A", done(3)),
+        (4, "A", What::Withdrawn { event: 3 }),
+        (5, "A", What::TaskLeft { task: "T".into(), left: Minutes::new(30) }),
+        (6, "A", What::Withdrawn { event: 4 }),
+        (6, "A", back(6)),
+    ]);
+    let mut fold = Fold::default();
+    for event in in_order(&events) {
+        fold.add(event);
+        fold.wait_until(event.known);
+    }
+    assert_eq!(*fold.situation(), situation(&events, at(6)));
+}
+
+#[test]
+fn an_order_that_awaits_a_second_person_counts_from_another_persons_confirmation() {
+    let mut events = numbered(&[
+        (1, "Harbour Master", declared("S4", 1)),
+        (2, "Harbour Master", What::Confirmed { event: 1 }),
+        (3, "Deputy", What::Confirmed { event: 1 }),
+    ]);
+    events[0].awaits_second = true;
+    let waiting = situation(&events, at(2));
+    assert!(waiting.stages.is_empty() && waiting.waiting.contains_key(&1));
+    let confirmed = situation(&events, at(3));
+    assert_eq!(confirmed.order_in_force(), Some("S4"));
+    assert!(confirmed.waiting.is_empty());
+    // Two persons of one title are told apart by their names.
+    events[0].name = "A. Quill".into();
+    events[1].name = "B. Sallow".into();
+    assert_eq!(situation(&events, at(2)).order_in_force(), Some("S4"));
+}
+
+#[test]
+fn what_is_left_counts_from_when_it_is_known() {
+    let left = |minutes| What::TaskLeft { task: "T".into(), left: Minutes::new(minutes) };
+    assert_eq!(told_of_task(&[(100, left(60))]).takes.unwrap().value, Minutes::new(60));
+    // Begun at 40, known at 100 that 60 minutes are left: 120 in all.
+    assert_eq!(told_of_task(&[(50, started(40)), (100, left(60))]).takes.unwrap().value, Minutes::new(120));
+}
+
+#[test]
+fn a_place_is_out_of_use_until_it_can_be_used_again() {
+    let unusable = |from, until: Option<i64>| {
+        What::Told(Fact::Unusable { spot: "Q1".into(), from: at(from), until: until.map(at) })
+    };
+    let usable = |from| What::Told(Fact::Usable { spot: "Q1".into(), from: at(from) });
+    assert_eq!(told(&[(1, unusable(5, None))]).unusable("Q1"), Some((at(5), None)));
+    assert_eq!(told(&[(1, unusable(5, None)), (2, usable(9))]).unusable("Q1"), Some((at(5), Some(at(9)))));
+    assert_eq!(told(&[(1, unusable(5, None)), (2, usable(3))]).unusable("Q1"), None);
+    assert_eq!(told(&[(1, unusable(5, None))]).unusable("Q2"), None);
+}
+
+#[test]
+fn declaring_a_stage_ends_the_hold_on_it() {
+    let hold = What::Ruled(Ruling::Hold { stage: "S2".into(), until: None });
+    assert_eq!(told(&[(1, hold.clone())]).rulings.len(), 1);
+    assert!(told(&[(1, hold), (2, declared("S2", 2))]).rulings.is_empty());
 }

@@ -11,7 +11,7 @@ use snugdown::arrival::odds::{Answers, Draw, ask};
 use snugdown::arrival::onset::Onset;
 use snugdown::plan::in_force::in_force;
 use snugdown::plan::sheet::Plan;
-use snugdown::record::situation::situation;
+use snugdown::record::fold::situation;
 use snugdown::time::moment::Minutes;
 use snugdown::work::questions::questions;
 

@@ -9,6 +9,7 @@ use snugdown::finding::fault::Finding;
 use snugdown::finding::source::SourceText;
 use snugdown::port::folder::Folder;
 use snugdown::port::harbour::Port;
+use snugdown::record::event::Event;
 use snugdown::record::reader::read_events;
 use snugdown::rules::folder::read_folder;
 use snugdown::rules::stage::Rules;
@@ -173,6 +174,8 @@ fn names_in_the_record_that_the_port_does_not_have_are_found() {
         ("declares = { stage = \"S3\" }", "work-unknown-event-stage", "\"S3\""),
         ("done = { task = \"V01/sial\" }", "work-unknown-event-task", "V01/sail"),
         ("out = { member = \"T3\" }", "work-unknown-event-member", "\"T3\""),
+        ("unusable = { place = \"Q9\" }", "work-unknown-event-spot", "did you mean \"Q1\"?"),
+        ("permits_stay = { ship = \"V03\" }", "work-unknown-event-ship", "did you mean \"V01\"?"),
     ] {
         only(&found_in(event), code, &[words]);
     }
@@ -187,4 +190,35 @@ fn an_order_that_no_task_provides_for_is_found() {
         &["H1 has no tasks that stand in"],
     );
     assert_eq!(listed(&found_in("cuts = { task = \"V01/secure\" }")), "");
+}
+
+#[test]
+fn a_name_in_an_event_that_was_withdrawn_is_no_fault() {
+    let (port, rules) = read(&small_port());
+    let work = expand(&port, &rules).0;
+    let text = "[[event]]\nat = \"2026-09-17 12:00\"\nby = \"A\"\ndone = { task = \"V09/sail\" }\n\
+        [[event]]\nat = \"2026-09-17 12:01\"\nby = \"A\"\nwithdraws = { event = 1 }\n";
+    let events = read_events(&SourceText::new("events.toml", text), Some(&port.clock)).0;
+    assert_eq!(events.len(), 2);
+    assert_eq!(listed(&strangers(&port, &rules, &work, &events)), "");
+    assert!(listed(&strangers(&port, &rules, &work, &events[..1])).contains("work-unknown-event-task"));
+}
+
+#[test]
+fn a_stage_that_takes_two_persons_ordered_by_one_is_told() {
+    let (mut port, mut rules) = read(&small_port());
+    port.ships.clear();
+    rules.stages[1].needs_second = true;
+    let work = expand(&port, &rules).0;
+    let event = |more: &str| {
+        let text = format!(
+            "[[event]]\nat = \"2026-09-17 12:00\"\nby = \"Harbour Master\"\n{more}declares = {{ stage = \"S2\" }}\n"
+        );
+        read_events(&SourceText::new("events.toml", text), Some(&port.clock)).0
+    };
+    let found = |events: Vec<Event>| {
+        let found = strangers(&port, &rules, &work, &events).into_iter();
+        found.filter(|finding| finding.code == "work-ordered-alone").count()
+    };
+    assert_eq!((found(event("")), found(event("awaits_second = true\n"))), (1, 0));
 }

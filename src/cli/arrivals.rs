@@ -22,7 +22,7 @@ use crate::output::beside::{OfficialSource, beside};
 use crate::output::setting::Setting;
 use crate::output::wire::arrivals::arrivals_out;
 use crate::output::wire::value::to_text;
-use crate::record::situation::situation;
+use crate::record::fold::situation;
 use crate::time::clock::PortClock;
 use crate::time::moment::Moment;
 use crate::units::chance::Chance;
@@ -185,7 +185,7 @@ fn for_port(args: &ArrivalsArgs) -> Result<Exit, Failure> {
         })
         .collect();
     let given = given_odds(args)?;
-    let own = storms.iter().find_map(|storm| loaded.official_odds(storm.advisory, now));
+    let own = storms.iter().find_map(|storm| loaded.official_odds(storm.advisory, &then));
     let official = given.as_ref().map(|(file, odds)| (file.as_str(), odds)).or(own);
     let official = official.map(|(file, odds)| OfficialSource { file, odds });
     let telling = Telling { clock: setting.clock, banner: setting.banner(), now: Some(now), official };

@@ -46,7 +46,8 @@ Examples:
 /// Any [`Failure`].
 pub fn run(args: &ChangesArgs) -> Result<Exit, Failure> {
     let loaded = load(&args.port)?;
-    let setting = Setting::of(&loaded.port, &loaded.rules);
+    let record = loaded.head_words();
+    let setting = Setting::of(&loaded.port, &loaded.rules).with_record(&record);
     let to = match &args.to {
         Some(text) => port_time("--to", text, setting.clock)?,
         None => port_now(None, setting.clock, loaded.port.exercise)?,

@@ -1,7 +1,7 @@
 //! `snugdown check`: all faults in a port's files at once.
 
 use crate::cli::exit::{Exit, Failure};
-use crate::cli::load::examine;
+use crate::cli::load::{Look, examine};
 use crate::cli::port_args::PortArgs;
 use crate::cli::screen::show;
 use crate::finding::fault::has_error;
@@ -27,7 +27,7 @@ pub struct CheckArgs {
 /// # Errors
 /// [`Failure::Read`], [`Failure::Write`]; [`Failure::Input`] without findings, as they are shown already.
 pub fn run(args: &CheckArgs) -> Result<Exit, Failure> {
-    let examined = examine(&args.port)?;
+    let examined = examine(&args.port, Look::Whole)?;
     if args.json {
         show(&to_text(&findings_out(&examined.findings))?)?;
     } else {

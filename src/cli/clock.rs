@@ -46,6 +46,13 @@ pub fn zoned_time(option: &str, text: &str) -> Result<Moment, Failure> {
     )))
 }
 
+/// When something is written down: the system clock, to the second.
+#[must_use]
+pub fn wall_time() -> DateTime<Utc> {
+    let now = system_time();
+    DateTime::from_timestamp(now.timestamp(), 0).unwrap_or(now)
+}
+
 #[expect(clippy::disallowed_methods, reason = "this is the one place where the command line reads the clock")]
 fn system_time() -> DateTime<Utc> {
     Utc::now()

@@ -2,6 +2,7 @@
 
 use crate::finding::fault::Finding;
 use crate::finding::source::SourceText;
+use crate::store::error::StoreError;
 use std::io;
 use std::process::ExitCode;
 
@@ -48,6 +49,12 @@ pub enum Failure {
     /// The fold left no plan, which a sound one never does: exit code 1.
     #[error("no plan could be made")]
     NoPlan,
+    /// The record cannot be read or written: exit code 1, or 3 if the file itself is at fault.
+    #[error(transparent)]
+    Store(#[from] StoreError),
+    /// Somebody else has recorded something about the same since it was last looked at: exit code 6. Nothing was recorded.
+    #[error("{0}")]
+    Stale(String),
     /// The command was called in a way that makes no sense: exit code 2.
     #[error("{0}")]
     Usage(String),
@@ -69,6 +76,9 @@ impl Failure {
             Failure::Read { .. } | Failure::Write(_) | Failure::Json(_) | Failure::NoPlan => 1,
             Failure::Usage(_) => 2,
             Failure::Input { .. } => 3,
+            Failure::Store(error) if error.is_fault_of_file() => 3,
+            Failure::Store(_) => 1,
+            Failure::Stale(_) => 6,
         })
     }
 }

@@ -7,16 +7,20 @@ use crate::advisory::read::read_chosen;
 use crate::advisory::same_storm::is_same_storm;
 use crate::cli::exit::Failure;
 use crate::cli::folder::PortFolder;
+use crate::cli::kept::Kept;
 use crate::finding::fault::{Finding, nearest};
 use crate::finding::source::SourceText;
 use crate::plan::in_force::is_official;
 use crate::port::harbour::Port;
 use crate::record::event::{Event, What};
 use crate::record::taking::Taking;
+use crate::store::chain::digest;
 use std::collections::BTreeMap;
 
 /// An event takes an advisory whose file is not in the folder.
 pub const ADVISORY_MISSING: &str = "cli-advisory-missing";
+/// The file of an advisory is not the one that was taken.
+pub const ADVISORY_CHANGED: &str = "cli-advisory-changed";
 /// Warning: an advisory was issued before one that was taken earlier.
 pub const ADVISORY_OLDER: &str = "cli-advisory-older";
 /// A forecast for drills in a port that holds none.
@@ -40,6 +44,7 @@ pub struct Taken {
 /// [`Failure::Read`] if the disk does not give what is there.
 pub fn read_taken(
     folder: &PortFolder,
+    kept: &Kept,
     events: &[Event],
     findings: &mut Vec<Finding>,
     sources: &mut Vec<SourceText>,
@@ -52,10 +57,11 @@ pub fn read_taken(
     }
     let mut taken = Taken::default();
     for (key, (taking, event)) in seen {
-        let Some(bytes) = folder.bytes(&taking.file)? else {
+        let Some(bytes) = paper(folder, kept, taking)? else {
             findings.push(missing(folder, &taking.file, event));
             continue;
         };
+        findings.extend(changed(event, taking, &bytes));
         let name = folder.shown(&taking.file);
         let (found, source) = if is_official_odds(&bytes) {
             let reading = read_official_odds(&name, &bytes);
@@ -76,6 +82,28 @@ pub fn read_taken(
         sources.push(source);
     }
     Ok(taken)
+}
+
+/// An advisory as it came: from the store, else from the folder.
+fn paper(folder: &PortFolder, kept: &Kept, taking: &Taking) -> Result<Option<Vec<u8>>, Failure> {
+    match kept {
+        Kept::Store(kept) if !taking.digest.is_empty() => Ok(kept.store.paper(&taking.digest)?),
+        Kept::Store(_) | Kept::Text => folder.bytes(&taking.file),
+    }
+}
+
+/// An advisory whose file was changed after it was taken: plans made from it cannot be made again.
+fn changed(event: &Event, taking: &Taking, bytes: &[u8]) -> Option<Finding> {
+    let is_changed = !taking.digest.is_empty() && taking.digest != digest(bytes);
+    is_changed.then(|| {
+        Finding::error(
+            ADVISORY_CHANGED,
+            event.place.clone(),
+            format!("{} is not the file that was taken: its SHA-256 is {}", taking.file, digest(bytes)),
+            "an advisory stays as it came; a correction is a file of its own",
+            "put the file back as it was",
+        )
+    })
 }
 
 /// What an event takes, if it takes an advisory.

@@ -47,7 +47,8 @@ Examples:
 /// Any [`Failure`].
 pub fn run(args: &PlanArgs) -> Result<Exit, Failure> {
     let loaded = load(&args.port)?;
-    let setting = Setting::of(&loaded.port, &loaded.rules);
+    let record = loaded.head_words();
+    let setting = Setting::of(&loaded.port, &loaded.rules).with_record(&record);
     let now = port_now(args.now.as_deref(), setting.clock, loaded.port.exercise)?;
     let history = plans_until(&loaded, now);
     let plan = latest(&history)?;

@@ -9,8 +9,9 @@ pub struct PortArgs {
     /// The port's folder
     #[arg(value_name = "DIR")]
     pub folder: PathBuf,
-    /// Read this record in place of the folder's events.toml; its file names count from the port's folder
-    #[arg(long, value_name = "FILE")]
+    /// Use this record in place of the folder's own: a text, or a file that only grows; its file names count from the
+    /// port's folder
+    #[arg(long, value_name = "FILE", global = true)]
     pub record: Option<PathBuf>,
 }
 

@@ -3,7 +3,10 @@
 use crate::cli::args::{Args, Command};
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::screen::{tell, tell_findings};
-use crate::cli::{arrivals, changes, check, completions, man, now, plan, wind};
+use crate::cli::tell as telling;
+use crate::cli::{
+    arrivals, changes, check, completions, man, mark, mend, now, order, plan, record, take, wind,
+};
 use clap::{CommandFactory, Parser};
 use std::ffi::OsString;
 use std::process::ExitCode;
@@ -39,6 +42,13 @@ fn answer(command: &Command) -> Result<Exit, Failure> {
         Command::Changes(args) => changes::run(args),
         Command::Arrivals(args) => arrivals::run(args),
         Command::Wind(args) => wind::run(args),
+        Command::Take(args) => take::run(args),
+        Command::Mark(args) => mark::run(args),
+        Command::Tell(args) => telling::run(args),
+        Command::Order(args) => order::run(args),
+        Command::Withdraw(args) => mend::withdraw(args),
+        Command::Confirm(args) => mend::confirm(args),
+        Command::Record(args) => record::run(args),
         Command::Completions(args) => completions::run(args, Args::command()),
         Command::Man => man::run(Args::command()),
     }

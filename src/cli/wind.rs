@@ -19,7 +19,7 @@ use crate::output::wire::value::to_text;
 use crate::output::wire::wind::wind_out;
 use crate::plan::in_force::Chosen;
 use crate::port::harbour::Place;
-use crate::record::situation::situation;
+use crate::record::fold::situation;
 use crate::rules::limit::LimitAt;
 use crate::time::moment::{Minutes, Moment};
 use crate::units::length::{Metres, NauticalMiles};

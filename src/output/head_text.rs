@@ -70,6 +70,9 @@ pub fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan
     for note in &plan.notes {
         page.labelled(MARGIN, "note", note);
     }
+    if !setting.record.is_empty() {
+        page.labelled(MARGIN, "record", setting.record);
+    }
     if let Some(doubt) = setting.clock.doubt_at(times.now()) {
         page.labelled(MARGIN, "note", &doubt);
     }
@@ -176,7 +179,9 @@ pub fn next_stage_line(plan: &Plan) -> Option<&StageLine> {
         .or_else(|| with(StageStatus::Computed).min_by_key(|stage| stage.due))
 }
 
-fn verdict(times: &Times, plan: &Plan) -> String {
+/// How the plan stands as a whole.
+#[must_use]
+pub fn verdict(times: &Times, plan: &Plan) -> String {
     let number = |test: &dyn Fn(&crate::plan::sheet::TaskLine) -> bool| {
         plan.tasks.iter().filter(|task| test(task)).count()
     };

@@ -27,6 +27,8 @@ pub struct Setting<'a> {
     pub margin: Minutes,
     /// Local time.
     pub clock: &'a PortClock,
+    /// How far the port's record goes, in words; empty if it is a text.
+    pub record: &'a str,
 }
 
 impl<'a> Setting<'a> {
@@ -43,7 +45,14 @@ impl<'a> Setting<'a> {
             effective: &rules.effective,
             margin: rules.adopted_margin,
             clock: &port.clock,
+            record: "",
         }
+    }
+
+    /// The same, with how far the port's record goes.
+    #[must_use]
+    pub fn with_record(self, record: &'a str) -> Setting<'a> {
+        Setting { record, ..self }
     }
 
     /// What must stand on every page of a port that is not real, or of a drill; empty otherwise.

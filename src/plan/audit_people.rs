@@ -30,7 +30,7 @@ pub fn people(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) 
         let Some(member) = pool.members.get(member) else { continue };
         held.sort_by(|a, b| (a.from, a.to, &a.task).cmp(&(b.from, b.to, &b.task)));
         twice(member, &held, breaches);
-        on_call(inputs, member, &held, breaches);
+        on_call(inputs, (pool, member), &held, breaches);
         rested(pool, member, held, breaches);
     }
 }
@@ -119,8 +119,14 @@ fn twice(member: &Member, held: &[Hold], breaches: &mut Vec<Breach>) {
 }
 
 /// Members are held only while on call and in service.
-fn on_call(inputs: AuditInputs<'_>, member: &Member, held: &[Hold], breaches: &mut Vec<Breach>) {
-    let outages = inputs.situation.means.get(&member.id).map(Vec::as_slice).unwrap_or_default();
+fn on_call(
+    inputs: AuditInputs<'_>,
+    (pool, member): (&Pool, &Member),
+    held: &[Hold],
+    breaches: &mut Vec<Breach>,
+) {
+    let of = |id: &str| inputs.situation.means.get(id).cloned().unwrap_or_default();
+    let outages = [of(&member.id), of(&pool.id)].concat();
     for hold in held.iter().filter(|hold| hold.is_planned && hold.from < hold.to) {
         let (from, to) = (hold.from.to_utc(), hold.to.to_utc());
         let is_out = outages.iter().any(|out| out.from < to && out.until.is_none_or(|until| from < until));

@@ -27,8 +27,27 @@ pub fn water(inputs: AuditInputs<'_>, plan: &Plan, breaches: &mut Vec<Breach>) {
         };
         tide(inputs, task, start, breaches);
         daylight(inputs, task, (start, finish), breaches);
+        usable(inputs, task, (start, finish), breaches);
     }
     channel(inputs, plan, breaches);
+}
+
+/// Nothing is planned where a place, berth or channel was told to be out of use.
+fn usable(
+    inputs: AuditInputs<'_>,
+    task: &Task,
+    (start, finish): (Moment, Moment),
+    breaches: &mut Vec<Breach>,
+) {
+    let (start, finish) = (start.to_utc(), finish.to_utc());
+    for spot in task.spots(inputs.port) {
+        if let Some((from, until)) = inputs.situation.unusable(spot)
+            && from < finish
+            && until.is_none_or(|until| start < until)
+        {
+            breaches.push(breach("audit-unusable", &task.id, format!("{spot} cannot be used at that time")));
+        }
+    }
 }
 
 fn instants(from: Moment, to: Moment) -> impl Iterator<Item = DateTime<Utc>> {

@@ -132,6 +132,12 @@ pub fn changes_between(earlier: &Plan, later: &Plan, events: &[Event], clock: &P
         })
         .collect();
     between.sort_by_key(|event| event.known);
+    changes_by(earlier, later, between, clock)
+}
+
+/// What differs between two plans because of the events `between` them, whatever the times of the plans.
+#[must_use]
+pub fn changes_by(earlier: &Plan, later: &Plan, between: Vec<&Event>, clock: &PortClock) -> Changes {
     let teller = Teller { earlier, later, between, clock };
     let before: BTreeMap<&str, &TaskLine> =
         earlier.tasks.iter().map(|line| (line.id.as_str(), line)).collect();
@@ -264,9 +270,9 @@ impl Teller<'_> {
 
     /// What was said of a newly given-up task or its members, else what moved the deadline that it misses.
     fn because_of(&self, old: &TaskLine, new: &TaskLine) -> String {
-        let members = old.members.iter().flat_map(|(_, members)| members);
+        let members = members_and_pools(old);
         let told = std::iter::once(self.said_about(MentionKind::Task, &new.id))
-            .chain(members.map(|member| self.said_about(MentionKind::Member, member)));
+            .chain(members.into_iter().map(|member| self.said_about(MentionKind::Member, member)));
         if let Some(said) = told.flatten().next() {
             return format!("; {said}");
         }
@@ -285,7 +291,7 @@ impl Teller<'_> {
         if new.is_unreported {
             return String::from("its time passed without a report, so it is placed again");
         }
-        let members = old.members.iter().flat_map(|(_, members)| members);
+        let members = members_and_pools(old);
         if let Some(said) =
             members.into_iter().find_map(|member| self.said_about(MentionKind::Member, member))
         {
@@ -319,4 +325,9 @@ impl Teller<'_> {
         let about = |event: &&&Event| mentions(event).iter().any(|m| m.kind == kind && m.id == id);
         self.between.iter().rev().find(about).map(|event| news_words(event, self.clock))
     }
+}
+
+/// Whom a task had: news may be of a member or of its whole pool.
+fn members_and_pools(line: &TaskLine) -> Vec<&String> {
+    line.members.iter().flat_map(|(pool, members)| members.iter().chain(std::iter::once(pool))).collect()
 }

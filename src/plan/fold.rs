@@ -9,7 +9,8 @@ use crate::plan::make::{Forecast, MakeInputs, make};
 use crate::plan::odds::AllOdds;
 use crate::plan::sheet::{Breach, Plan};
 use crate::plan::storms::{forecast_of, tell_of_storms};
-use crate::record::situation::{Situation, situation};
+use crate::record::fold::{Fold, in_order, situation};
+use crate::record::situation::Situation;
 use crate::time::moment::Moment;
 use crate::work::reckoned::{AdoptedArrival, ArrivalBook};
 
@@ -52,9 +53,14 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     let end = moments.len();
     odds.ahead_of(|| {
         let mut plans: Vec<Plan> = Vec::with_capacity(end);
+        let mut events = in_order(inputs.events).into_iter().peekable();
+        let mut then = Fold::default();
         for (number, moment) in (1..).zip(moments) {
-            let then = situation(inputs.events, moment.to_utc());
-            let plan = plan_then(inputs, (&odds, &calendar), &then, plans.last(), number == end);
+            then.wait_until(moment.to_utc());
+            while let Some(event) = events.next_if(|event| event.known <= moment.to_utc()) {
+                then.add(event);
+            }
+            let plan = plan_then(inputs, (&odds, &calendar), then.situation(), plans.last(), number == end);
             plans.push(plan);
         }
         History { plans }

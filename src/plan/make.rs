@@ -10,6 +10,7 @@ use crate::plan::calendar::Calendar;
 use crate::plan::draft::{Draft, DraftInputs, draft};
 use crate::plan::heads;
 use crate::plan::lines::{LineInputs, lines};
+use crate::plan::news::standing_words;
 use crate::plan::relief::{permitted, reliefs};
 use crate::plan::sheet::{AdvisoryInForce, Clash, Plan};
 use crate::port::harbour::Port;
@@ -120,7 +121,7 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
         if_adopted: adoption,
         clashes: made.clashes.iter().cloned().chain(begun_too_soon(work, rules, &timed, situation)).collect(),
         breaches: Vec::new(),
-        notes: Vec::new(),
+        notes: standing_words(situation, &port.clock),
     };
     if with_reliefs {
         plan.reliefs = reliefs(draft_inputs, &made, &plan);

@@ -22,6 +22,7 @@ pub mod news;
 pub mod odds;
 pub mod problem;
 pub mod relief;
+pub mod review;
 pub mod roles;
 pub mod sheet;
 pub mod storms;

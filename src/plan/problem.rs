@@ -164,6 +164,10 @@ impl Stater<'_> {
             Some(DaylightNeed::Whole) => whole_in.push(self.daylight_window()),
             None => {}
         }
+        let port = self.inputs.port;
+        for spot in task.spots(port) {
+            whole_in.extend(self.usable_window(spot));
+        }
         if let Some(start) = ordered {
             let minute = WindowSet::from_spans(Span::new(start, start + Minutes::new(1)));
             start_in.push(self.window(
@@ -269,6 +273,14 @@ impl Stater<'_> {
         self.window(String::from("daylight"), String::from("daylight"), || calendar.daylight().clone())
     }
 
+    /// When a place can be used; `None` if nobody has said that it cannot.
+    fn usable_window(&mut self, spot: &str) -> Option<usize> {
+        let (from, until) = self.inputs.situation.unusable(spot)?;
+        let until = until.map_or(Moment::LATEST, Moment::at_or_after);
+        let closed = WindowSet::from_spans(Span::new(Moment::at_or_before(from), until));
+        Some(self.window(format!("use of {spot}"), format!("{spot} can be used"), || closed.gaps()))
+    }
+
     fn window(&mut self, key: String, words: String, make: impl FnOnce() -> WindowSet) -> usize {
         if let Some(known) = self.keys.get(&key) {
             return *known;
@@ -289,7 +301,7 @@ impl Stater<'_> {
                     .duty
                     .map(|hours| engine::Duty { at_most: hours.at_most, then_rest: hours.then_rest });
                 let own = pool.members.iter().map(|member| engine::Member {
-                    available: self.available(member),
+                    available: self.available(member, &pool.id),
                     duty,
                     worked: worked(member),
                 });
@@ -305,10 +317,10 @@ impl Stater<'_> {
     }
 
     /// When a member is on call and in service.
-    fn available(&self, member: &PortMember) -> WindowSet {
+    fn available(&self, member: &PortMember, pool: &str) -> WindowSet {
         let shifts = self.inputs.calendar.on_call(&member.id);
-        let outages = self.inputs.situation.means.get(&member.id).map(Vec::as_slice).unwrap_or_default();
-        let out = WindowSet::from_spans(outages.iter().filter_map(|outage| {
+        let outages = self.inputs.situation.outages(&member.id, pool);
+        let out = WindowSet::from_spans(outages.filter_map(|outage| {
             let until = outage.until.map_or(Moment::LATEST, Moment::at_or_after);
             Span::new(Moment::at_or_before(outage.from), until)
         }));

@@ -3,7 +3,9 @@
 use crate::finding::fault::Finding;
 use crate::record::codes;
 use crate::record::event::{Event, Retracted, What};
-use crate::record::situation::{Situation, TaskState, in_order};
+use crate::record::fact::Fact;
+use crate::record::fold::{Fold, in_order};
+use crate::record::situation::{Situation, TaskState};
 use crate::record::telling::show;
 use crate::time::clock::PortClock;
 use chrono::{DateTime, Utc};
@@ -12,14 +14,29 @@ use std::collections::BTreeSet;
 /// Warnings about `events`, which are in the order of the file.
 #[must_use]
 pub fn doubts(events: &[Event], clock: Option<&PortClock>) -> Vec<Finding> {
-    let sorted = in_order(events);
     let mut findings = out_of_order(events, clock);
-    findings.extend(repeats(events, &sorted));
-    let mut fold = Situation::default();
-    for (nth, event) in sorted.into_iter().enumerate() {
-        findings.extend(contradiction(&fold, event, clock));
-        findings.extend(idle(&fold, event));
-        fold.add(event, nth);
+    findings.extend(doubts_of_new(&[], events, clock));
+    findings
+}
+
+/// Warnings about `new` events that come after `known` ones; about those nothing is said.
+#[must_use]
+pub fn doubts_of_new(known: &[Event], new: &[Event], clock: Option<&PortClock>) -> Vec<Finding> {
+    let all = || known.iter().chain(new);
+    let sorted = in_order(all());
+    let is_new = |event: &Event| new.first().is_some_and(|first| first.number <= event.number);
+    let first_new = sorted.iter().position(|event| is_new(event)).unwrap_or(sorted.len());
+    let mut findings = repeats(new, &sorted);
+    let is_there = |number: usize| all().any(|event| event.number == number);
+    let mut later = sorted;
+    let rest = later.split_off(first_new);
+    let mut fold = Fold::of(later, DateTime::UNIX_EPOCH);
+    for event in rest {
+        if is_new(event) {
+            findings.extend(contradiction(fold.situation(), event, clock));
+            findings.extend(idle(fold.situation(), event, &is_there));
+        }
+        fold.add(event);
     }
     findings
 }
@@ -44,8 +61,8 @@ fn out_of_order(events: &[Event], clock: Option<&PortClock>) -> Vec<Finding> {
 
 /// Events that say the same as an earlier one.
 fn repeats(events: &[Event], once: &[&Event]) -> Vec<Finding> {
-    let kept: BTreeSet<_> = once.iter().map(|event| &event.place).collect();
-    let again = events.iter().filter(|event| !kept.contains(&event.place));
+    let kept: BTreeSet<usize> = once.iter().map(|event| event.number).collect();
+    let again = events.iter().filter(|event| !kept.contains(&event.number));
     again
         .map(|event| {
             Finding::warning(
@@ -84,6 +101,11 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
         | What::MeansOut { .. }
         | What::MeansBack { .. }
         | What::Observed { .. }
+        | What::TaskLeft { .. }
+        | What::Told(_)
+        | What::Ruled(_)
+        | What::Withdrawn { .. }
+        | What::Confirmed { .. }
         | What::PlanIssued => return None,
     };
     let (started, done) = (started?, done?);
@@ -100,7 +122,7 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
 }
 
 /// An event that ends or takes back something that was never said.
-fn idle(fold: &Situation, event: &Event) -> Option<Finding> {
+fn idle(fold: &Situation, event: &Event, is_there: &dyn Fn(usize) -> bool) -> Option<Finding> {
     let found = match &event.what {
         What::AdvisoryTaken(taking) => {
             let key = taking.key();
@@ -124,7 +146,22 @@ fn idle(fold: &Situation, event: &Event) -> Option<Finding> {
         What::MeansBack { member, from } => {
             (!is_out(fold, member, *from)).then(|| format!("{member} is not out of service at that time"))
         }
+        What::Told(fact @ (Fact::Resumes { .. } | Fact::Usable { .. })) => {
+            let (kind, about) = fact.about();
+            let is_told = fold.facts.contains_key(&(kind, about.to_owned()));
+            (!is_told).then(|| format!("nobody said that {about} had stopped or could not be used"))
+        }
+        What::Withdrawn { event: number } => (*number >= event.number || !is_there(*number))
+            .then(|| format!("there is no event {number} before this one")),
+        What::Confirmed { event: number } => match fold.waiting.get(number) {
+            None => Some(format!("event {number} waits for no confirmation")),
+            Some(order) => (!order.is_by_another(event))
+                .then(|| format!("event {number} was ordered by the same person; another has to confirm it")),
+        },
         What::ArrivalAdopted { time: Some(_), .. }
+        | What::TaskLeft { .. }
+        | What::Told(_)
+        | What::Ruled(_)
         | What::StageDeclared { .. }
         | What::TaskStarted { .. }
         | What::TaskDone { .. }

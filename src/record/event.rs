@@ -1,6 +1,8 @@
 //! One event in the port's record.
 
 use crate::finding::fault::Place;
+use crate::record::fact::Fact;
+use crate::record::ruling::Ruling;
 use crate::record::taking::Taking;
 use crate::time::moment::Minutes;
 use crate::units::speed::Knots;
@@ -11,10 +13,18 @@ use std::cmp::Ordering;
 /// Something that became known, was ordered, or was done. Never changed: a mistake is mended by a later event.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Event {
+    /// Its number in the record, from 1: a later event takes it back or confirms it by this number.
+    pub number: usize,
     /// When the port knew it.
     pub known: DateTime<Utc>,
     /// Who says so, by title.
     pub by: String,
+    /// The name of that person; empty if not said.
+    pub name: String,
+    /// The title of the one in whose place that person acts; empty if in none.
+    pub on_behalf: String,
+    /// Whether it counts only once a second person has confirmed it.
+    pub awaits_second: bool,
     /// What.
     pub what: What,
     /// How it is known, or why it is ordered; empty if not said.
@@ -86,6 +96,13 @@ pub enum What {
         /// How long it takes in all.
         takes: Minutes,
     },
+    /// From when this is known a task still takes so long: cargo left, work left.
+    TaskLeft {
+        /// Full task id.
+        task: String,
+        /// How long it still takes.
+        left: Minutes,
+    },
     /// A task may not start before this.
     TaskNotBefore {
         /// Full task id.
@@ -117,18 +134,18 @@ pub enum What {
         /// What of it.
         kind: Retracted,
     },
-    /// A member of a pool is out of service.
+    /// A member of a pool, or a whole pool, is out of service.
     MeansOut {
-        /// The member.
+        /// The member or pool.
         member: String,
         /// From when.
         from: DateTime<Utc>,
         /// Until when; `None` if unknown.
         until: Option<DateTime<Utc>>,
     },
-    /// A member of a pool is back.
+    /// A member of a pool, or a whole pool, is back.
     MeansBack {
-        /// The member.
+        /// The member or pool.
         member: String,
         /// From when.
         from: DateTime<Utc>,
@@ -146,6 +163,20 @@ pub enum What {
     },
     /// The plan made at this time was issued to those concerned.
     PlanIssued,
+    /// A fact about the port beyond its tasks and means.
+    Told(Fact),
+    /// An order about a stage, a ship or a rule that moves no time by itself.
+    Ruled(Ruling),
+    /// An earlier event was a mistake: from now on it counts as never said. Taken back itself, that event counts again.
+    Withdrawn {
+        /// The number of that event.
+        event: usize,
+    },
+    /// A second person confirms an order that waits for one.
+    Confirmed {
+        /// The number of that order.
+        event: usize,
+    },
 }
 
 /// What an event can take back about a task.
@@ -162,11 +193,30 @@ pub enum Retracted {
 }
 
 impl Event {
-    /// Orders events by when they were known, then by what they say; equal are those that say the same, wherever they stand.
+    /// Orders events by when they were known, then by what they say; equal are those that say the same, wherever they stand
+    /// and whatever their numbers.
     #[must_use]
     pub fn compare(&self, other: &Event) -> Ordering {
-        let head = (self.known, &self.by, &self.reason).cmp(&(other.known, &other.by, &other.reason));
+        let said = (&self.by, &self.name, &self.on_behalf, &self.reason, self.awaits_second);
+        let other_said = (&other.by, &other.name, &other.on_behalf, &other.reason, other.awaits_second);
+        let head = (self.known, said).cmp(&(other.known, other_said));
         // No part of an event is ever NaN, so any two can be compared.
         head.then_with(|| self.what.partial_cmp(&other.what).unwrap_or(Ordering::Equal))
+    }
+
+    /// Whether another person says `other`: told apart by their names where both are given, else by title.
+    #[must_use]
+    pub fn is_by_another(&self, other: &Event) -> bool {
+        let same = |one: &str, two: &str| one.trim().to_lowercase() == two.trim().to_lowercase();
+        match (self.name.as_str(), other.name.as_str()) {
+            ("", _) | (_, "") => !same(&self.by, &other.by),
+            (one, two) => !same(one, two),
+        }
+    }
+
+    /// The number of the event that this one takes back.
+    #[must_use]
+    pub fn withdraws(&self) -> Option<usize> {
+        if let What::Withdrawn { event } = self.what { Some(event) } else { None }
     }
 }

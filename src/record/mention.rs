@@ -2,6 +2,7 @@
 
 use crate::finding::fault::Place;
 use crate::record::event::{Event, What};
+use crate::record::ruling::Ruling;
 
 /// Something an event names by its id.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -23,8 +24,12 @@ pub enum MentionKind {
     Stage,
     /// A task, by its full id.
     Task,
-    /// A member of a pool.
+    /// A member of a pool, or a pool.
     Member,
+    /// A place, berth, channel or anchorage.
+    Spot,
+    /// A ship.
+    Ship,
     /// A file in the port's folder.
     File,
 }
@@ -48,6 +53,7 @@ pub fn mentions(event: &Event) -> Vec<Mention<'_>> {
         | What::TaskCannot { task }
         | What::TaskNotNeeded { task }
         | What::TaskTakes { task, .. }
+        | What::TaskLeft { task, .. }
         | What::TaskNotBefore { task, .. }
         | What::TaskFixed { task, .. }
         | What::CutOrdered { task }
@@ -56,6 +62,14 @@ pub fn mentions(event: &Event) -> Vec<Mention<'_>> {
         What::MeansOut { member, .. } | What::MeansBack { member, .. } => {
             vec![named(MentionKind::Member, member)]
         }
-        What::PlanIssued => Vec::new(),
+        What::Told(fact) => fact.spot().map(|spot| named(MentionKind::Spot, spot)).into_iter().collect(),
+        What::Ruled(Ruling::Hold { stage, .. } | Ruling::Skip { stage }) => {
+            vec![named(MentionKind::Stage, stage)]
+        }
+        What::Ruled(Ruling::Stay { ship, .. }) => vec![named(MentionKind::Ship, ship)],
+        What::Ruled(Ruling::Waive { .. } | Ruling::Refuse { .. })
+        | What::PlanIssued
+        | What::Withdrawn { .. }
+        | What::Confirmed { .. } => Vec::new(),
     }
 }

@@ -3,8 +3,12 @@
 pub mod codes;
 pub mod doubt;
 pub mod event;
+pub mod fact;
+pub mod fold;
 pub mod mention;
 pub mod reader;
+pub mod reader_fact;
+pub mod ruling;
 pub mod situation;
 pub mod taking;
 pub mod telling;

@@ -7,9 +7,10 @@ use crate::finding::table::{Item, Keys};
 use crate::record::codes;
 use crate::record::doubt::doubts;
 use crate::record::event::{Event, Retracted, What};
+use crate::record::reader_fact;
 use crate::record::taking::read_taking;
-use crate::record::telling::{Telling, named, task_id, wind};
-use crate::text::quantity::{id, instant, lasting};
+use crate::record::telling::{Telling, event_number, named, task_id, wind};
+use crate::text::quantity::{id, instant, lasting, lasting_or_none};
 use crate::time::clock::PortClock;
 use crate::units::wind::Averaging;
 
@@ -17,7 +18,7 @@ use crate::units::wind::Averaging;
 type Reading = for<'t> fn(&Telling<'_>, &mut Keys<'t>) -> Option<What>;
 
 /// The key of each kind of event, and how it is read.
-const KINDS: [(&str, Reading); 19] = [
+const KINDS: [(&str, Reading); 37] = [
     ("took_advisory", took_advisory),
     ("adopts_arrival", adopts_arrival),
     ("withdraws_arrival", withdraws_arrival),
@@ -37,6 +38,24 @@ const KINDS: [(&str, Reading); 19] = [
     ("back", back),
     ("observed", observed),
     ("issued", issued),
+    ("left", left),
+    ("stops", reader_fact::stops),
+    ("resumes", reader_fact::resumes),
+    ("unusable", reader_fact::unusable),
+    ("usable", reader_fact::usable),
+    ("depth_limit", reader_fact::depth_limit),
+    ("signal", reader_fact::signal),
+    ("evacuation", reader_fact::evacuation),
+    ("curfew", reader_fact::curfew),
+    ("sea", reader_fact::sea),
+    ("anchorage", reader_fact::anchorage),
+    ("holds", reader_fact::holds),
+    ("skips", reader_fact::skips),
+    ("permits_stay", reader_fact::permits_stay),
+    ("waives", reader_fact::waives),
+    ("refuses", reader_fact::refuses),
+    ("withdraws", withdraws),
+    ("confirms", confirms),
 ];
 
 /// The periods over which an observed wind may be averaged.
@@ -75,15 +94,19 @@ pub fn read_events(source: &SourceText, clock: Option<&PortClock>) -> (Vec<Event
 }
 
 fn events_of<'t>(mut file: Keys<'t>, clock: Option<&PortClock>) -> Vec<Event> {
-    let events = file.tables("event").iter().filter_map(|item| event(item, clock)).collect();
+    let tables = file.tables("event");
+    let events = (1..).zip(&tables).filter_map(|(number, item)| event(number, item, clock)).collect();
     file.finish();
     events
 }
 
-fn event(item: &Item<'_>, clock: Option<&PortClock>) -> Option<Event> {
+fn event(number: usize, item: &Item<'_>, clock: Option<&PortClock>) -> Option<Event> {
     let mut keys = item.keys("an event")?;
     let known = keys.required("at").and_then(|at| instant(&at, clock));
     let by = keys.required("by").and_then(|by| by.text());
+    let name = keys.text_or_empty("name");
+    let on_behalf = keys.text_or_empty("for");
+    let awaits_second = keys.optional("awaits_second").map_or(Some(false), |item| item.flag());
     let reason = keys.text_or_empty("reason");
     let kind = keys.one_of(&KINDS.map(|(key, _)| key));
     keys.finish();
@@ -93,7 +116,17 @@ fn event(item: &Item<'_>, clock: Option<&PortClock>) -> Option<Event> {
     let known = known.filter(|_| clock.is_some());
     let what = reading(&Telling { known, clock }, &mut said);
     said.finish();
-    Some(Event { known: known?, by: by?.to_owned(), what: what?, reason, place: kind.place() })
+    Some(Event {
+        number,
+        known: known?,
+        by: by?.to_owned(),
+        name,
+        on_behalf,
+        awaits_second: awaits_second?,
+        what: what?,
+        reason,
+        place: kind.place(),
+    })
 }
 
 fn took_advisory(_: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
@@ -156,6 +189,20 @@ fn takes(_: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
     Some(What::TaskTakes { task: task?, takes: takes? })
 }
 
+fn left(_: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
+    let task = task(keys);
+    let left = keys.required("still").and_then(|item| lasting_or_none(&item));
+    Some(What::TaskLeft { task: task?, left: left? })
+}
+
+fn withdraws(_: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
+    Some(What::Withdrawn { event: event_number(keys)? })
+}
+
+fn confirms(_: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
+    Some(What::Confirmed { event: event_number(keys)? })
+}
+
 fn not_before(telling: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
     let task = task(keys);
     let time = telling.near(keys, "time");
@@ -188,11 +235,7 @@ fn retracts(_: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
 
 fn out(telling: &Telling<'_>, keys: &mut Keys<'_>) -> Option<What> {
     let member = named(keys, "member");
-    let from = telling.any_or_known(keys, "from");
-    let until = match keys.optional("until") {
-        Some(item) if item.as_text() != Some("unknown") => telling.end_after(&item, from).map(Some),
-        _ => Some(None),
-    };
+    let (from, until) = telling.from_until(keys);
     Some(What::MeansOut { member: member?, from: from?, until: until? })
 }
 

@@ -1,7 +1,9 @@
 //! The situation at a time: what follows from all that was known by then.
 
 use crate::finding::fault::Place;
-use crate::record::event::{Event, Retracted, What};
+use crate::record::event::Event;
+use crate::record::fact::{Fact, FactKind};
+use crate::record::ruling::{Ruling, RulingKind};
 use crate::record::taking::Taking;
 use crate::time::moment::Minutes;
 use crate::units::speed::Knots;
@@ -11,7 +13,7 @@ use std::collections::BTreeMap;
 
 /// What the port knows at a time, as plain values; nothing in it is computed from a forecast.
 ///
-/// Made by [`situation`]. Ids are as they were written: whether the port has such a task, stage, place or member is judged
+/// Made by [`crate::record::fold::situation`]. Ids are as they were written: whether the port has such a task, stage, place or member is judged
 /// above, with the help of [`crate::record::mention::mentions`].
 #[derive(Clone, Debug, PartialEq, Default)]
 pub struct Situation {
@@ -26,12 +28,18 @@ pub struct Situation {
     pub stages: BTreeMap<String, StageState>,
     /// Tasks of which anything was told or ordered, by full task id.
     pub tasks: BTreeMap<String, TaskState>,
-    /// Outages of members of pools, by member, in order of their beginning; a member with none is left out.
+    /// Outages of members of pools and of whole pools, by id, in order of their beginning; one with none is left out.
     pub means: BTreeMap<String, Vec<Outage>>,
     /// Observed winds, in the order in which they blew.
     pub observed: Vec<Observation>,
     /// When plans were issued, in order.
     pub issued: Vec<Said>,
+    /// The last fact about each thing, whether it still holds or not.
+    pub facts: BTreeMap<(FactKind, String), Told<Fact>>,
+    /// The last ruling about each thing, whether it still holds or not.
+    pub rulings: BTreeMap<(RulingKind, String), Told<Ruling>>,
+    /// Orders that wait for a second person, by their number.
+    pub waiting: BTreeMap<usize, Event>,
     /// The distinct times at which something became known, in order: at each of them the plan is made again.
     pub changes: Vec<DateTime<Utc>>,
 }
@@ -220,41 +228,6 @@ pub struct Observation {
     pub said: Said,
 }
 
-/// The situation at `now`: folds all events known at or before it, in order of time known, ties in the order given.
-///
-/// Later events mend earlier ones:
-/// * The same event twice counts once (it may stand at two places of the record), and so does a file taken twice: the first
-///   taking counts.
-/// * **Arrival**: adopting replaces what was adopted for the place, withdrawing takes it away.
-/// * **Stage**: declaring replaces an earlier declaration and takes away a lifting; lifting stands beside the declaration.
-/// * **Task, progress**: of done, cannot and not needed the last told counts. A start told after one of them takes it away
-///   if the work began later than it (it goes on again); an earlier start is only told late, and the outcome stands. A
-///   finish before the start told so far takes that start away.
-/// * **Task, orders**: of each kind (time taken, not before, fixed start, other way) the last counts; progress leaves them
-///   alone, and so they leave progress. [`What::TaskRetracted`] takes away what was said of one kind.
-/// * **Member**: news of an outage that is running at its beginning moves the end of that outage; other news is an outage
-///   more. Back ends what is running at that time, and takes away an outage that would begin at that very time; a later
-///   one stays.
-/// * **Observation**: told again for the same place, time and averaging replaces.
-#[must_use]
-pub fn situation(events: &[Event], now: DateTime<Utc>) -> Situation {
-    let mut fold = Situation { now, ..Situation::default() };
-    for (nth, event) in in_order(events).into_iter().take_while(|event| event.known <= now).enumerate() {
-        fold.add(event, nth);
-    }
-    fold
-}
-
-/// The events in order of time known, ties in the order given, without those that say the same as one before.
-#[must_use]
-pub fn in_order(events: &[Event]) -> Vec<&Event> {
-    let mut once: Vec<(usize, &Event)> = events.iter().enumerate().collect();
-    once.sort_by(|(_, a), (_, b)| a.compare(b));
-    once.dedup_by(|(_, later), (_, earlier)| later.compare(earlier).is_eq());
-    once.sort_by_key(|(nth, event)| (event.known, *nth));
-    once.into_iter().map(|(_, event)| event).collect()
-}
-
 impl Situation {
     /// The stage that was declared last and holds now: the one with the latest beginning, then the one told last.
     #[must_use]
@@ -280,139 +253,25 @@ impl Situation {
         self.advisories.iter().any(|taken| taken.file == key && (taken.by_order || !taking.by_order))
     }
 
-    /// Takes in the next event by [`in_order`], the `nth` from 0; for all up to a time see [`situation`].
-    pub fn add(&mut self, event: &Event, nth: usize) {
-        if matches!(&event.what, What::AdvisoryTaken(taking) if self.has_taken(taking)) {
-            return;
-        }
-        if self.changes.last() != Some(&event.known) {
-            self.changes.push(event.known);
-        }
-        let said = Said {
-            known: event.known,
-            nth,
-            by: event.by.clone(),
-            reason: event.reason.clone(),
-            written: event.place.clone(),
-        };
-        self.tell(&event.what, said);
-    }
-
-    fn tell(&mut self, what: &What, said: Said) {
-        match what {
-            What::AdvisoryTaken(taking) => {
-                self.advisories.push(TakenAdvisory { file: taking.key(), by_order: taking.by_order, said });
-            }
-            What::ArrivalAdopted { place, wind, time } => self.adopt(place, *wind, *time, said),
-            What::StageDeclared { stage, from } => {
-                let declared = Some(Told { value: *from, said });
-                self.stages.insert(stage.clone(), StageState { declared, lifted: None });
-            }
-            What::StageLifted { stage, from } => {
-                self.stages.entry(stage.clone()).or_default().lifted = Some(Told { value: *from, said });
-            }
-            What::TaskStarted { task, at, members } => {
-                self.task(task).start(Started { at: *at, members: members.clone(), said });
-            }
-            What::TaskDone { task, at, evidence } => self.task(task).finish(*at, evidence, said),
-            What::TaskCannot { task } => self.task(task).outcome = Some(Outcome::Cannot { said }),
-            What::TaskNotNeeded { task } => self.task(task).outcome = Some(Outcome::NotNeeded { said }),
-            What::TaskTakes { task, takes } => self.task(task).takes = Some(Told { value: *takes, said }),
-            What::TaskNotBefore { task, time } => {
-                self.task(task).not_before = Some(Told { value: *time, said });
-            }
-            What::TaskFixed { task, start } => {
-                self.task(task).fixed = start.map(|value| Told { value, said });
-            }
-            What::CutOrdered { task } => self.task(task).way = Some(Told { value: Way::Cut, said }),
-            What::SubstituteOrdered { task } => {
-                self.task(task).way = Some(Told { value: Way::Substitute, said });
-            }
-            What::TaskRetracted { task, kind } => self.task(task).retract(*kind),
-            What::MeansOut { member, from, until } => self.take_out(member, *from, *until, said),
-            What::MeansBack { member, from } => self.bring_back(member, *from, &said),
-            What::Observed { place, wind, averaging, at } => {
-                let place = place.clone();
-                self.observe(Observation { place, wind: *wind, averaging: *averaging, at: *at, said });
-            }
-            What::PlanIssued => self.issued.push(said),
+    /// The times [from, until) at which a place, berth or channel cannot be used; `None` until something else is told.
+    #[must_use]
+    pub fn unusable(&self, spot: &str) -> Option<(DateTime<Utc>, Option<DateTime<Utc>>)> {
+        match &self.facts.get(&(FactKind::Use, spot.to_owned()))?.value {
+            Fact::Unusable { from, until, .. } => Some((*from, *until)),
+            Fact::Stops { .. }
+            | Fact::Resumes { .. }
+            | Fact::Usable { .. }
+            | Fact::DepthLimit { .. }
+            | Fact::Signal { .. }
+            | Fact::Authorities { .. }
+            | Fact::Sea { .. }
+            | Fact::Anchorage { .. } => None,
         }
     }
 
-    fn task(&mut self, task: &str) -> &mut TaskState {
-        self.tasks.entry(task.to_owned()).or_default()
-    }
-
-    fn adopt(&mut self, place: &str, wind: Knots, time: Option<DateTime<Utc>>, said: Said) {
-        let Some(time) = time else {
-            self.adopted.remove(place);
-            return;
-        };
-        let advisory_file = self.advisories.last().map(|taken| taken.file.clone());
-        self.adopted.insert(place.to_owned(), Adopted { wind, time, advisory_file, said });
-    }
-
-    fn take_out(&mut self, member: &str, from: DateTime<Utc>, until: Option<DateTime<Utc>>, said: Said) {
-        if until.is_some_and(|until| until <= from) {
-            return;
-        }
-        let outages = self.means.entry(member.to_owned()).or_default();
-        let mut is_news_of_one = false;
-        for outage in outages.iter_mut().filter(|outage| outage.holds(from)) {
-            outage.until = until;
-            outage.said = said.clone();
-            is_news_of_one = true;
-        }
-        if !is_news_of_one {
-            outages.push(Outage { from, until, said });
-            outages.sort_by_key(|outage| (outage.from, outage.said.nth));
-        }
-    }
-
-    fn bring_back(&mut self, member: &str, from: DateTime<Utc>, said: &Said) {
-        let Some(outages) = self.means.get_mut(member) else { return };
-        outages.retain(|outage| outage.from != from);
-        for outage in outages.iter_mut().filter(|outage| outage.holds(from)) {
-            outage.until = Some(from);
-            outage.said = said.clone();
-        }
-        if outages.is_empty() {
-            self.means.remove(member);
-        }
-    }
-
-    fn observe(&mut self, new: Observation) {
-        let first = self.observed.partition_point(|old| old.at < new.at);
-        let after = self.observed.partition_point(|old| old.at <= new.at);
-        let is_same = |old: &Observation| old.place == new.place && old.averaging == new.averaging;
-        match self.observed.iter_mut().take(after).skip(first).find(|old| is_same(old)) {
-            Some(old) => *old = new,
-            None => self.observed.insert(after, new),
-        }
-    }
-}
-
-impl TaskState {
-    fn start(&mut self, started: Started) {
-        if self.outcome.as_ref().is_some_and(|outcome| outcome.since() < started.at) {
-            self.outcome = None;
-        }
-        self.started = Some(started);
-    }
-
-    fn finish(&mut self, at: DateTime<Utc>, evidence: &str, said: Said) {
-        if self.started.as_ref().is_some_and(|started| started.at > at) {
-            self.started = None;
-        }
-        self.outcome = Some(Outcome::Done { at, evidence: evidence.to_owned(), said });
-    }
-
-    fn retract(&mut self, kind: Retracted) {
-        match kind {
-            Retracted::Progress => (self.started, self.outcome) = (None, None),
-            Retracted::Takes => self.takes = None,
-            Retracted::NotBefore => self.not_before = None,
-            Retracted::Way => self.way = None,
-        }
+    /// The outages of a member and of its pool.
+    pub fn outages<'a>(&'a self, member: &str, pool: &str) -> impl Iterator<Item = &'a Outage> + use<'a> {
+        let of = |id: &str| self.means.get(id).into_iter().flatten();
+        of(member).chain(of(pool))
     }
 }

@@ -1,7 +1,7 @@
 //! What an event that takes an advisory says: the file, and what picks a forecast out of a file that holds several.
 
 use crate::finding::table::{Item, Keys};
-use crate::record::telling::file_name;
+use crate::record::telling::{file_digest, file_name};
 use chrono::{DateTime, NaiveDateTime, Utc};
 
 /// An advisory as it was taken.
@@ -15,6 +15,8 @@ pub struct Taking {
     pub technique: Option<String>,
     /// The base time, for a deck; where a drill begins, for a best track.
     pub cycle: Option<DateTime<Utc>>,
+    /// The SHA-256 of its bytes in hexadecimal digits; empty if not said.
+    pub digest: String,
     /// By order this advisory is planned on though it is not from the port's official source.
     pub by_order: bool,
 }
@@ -43,12 +45,14 @@ pub fn read_taking(keys: &mut Keys<'_>) -> Option<Taking> {
     let storm = keys.optional("storm").map(|item| word(&item));
     let technique = keys.optional("technique").map(|item| word(&item));
     let cycle = keys.optional("cycle").map(|item| cycle(&item));
+    let digest = keys.optional("sha256").map_or(Some(String::new()), |item| file_digest(&item));
     let by_order = keys.optional("by_order").map(|item| item.flag());
     Some(Taking {
         file: file?,
         storm: all_or_none(storm)?,
         technique: all_or_none(technique)?,
         cycle: all_or_none(cycle)?,
+        digest: digest?,
         by_order: by_order.unwrap_or(Some(false))?,
     })
 }

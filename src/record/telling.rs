@@ -21,6 +21,9 @@ const LONGEST_TASK: usize = 81;
 /// The longest file name, in characters (our choice).
 const LONGEST_FILE: usize = 200;
 
+/// The highest number of an event (our choice): a hundred storms of ten thousand.
+const MOST_EVENTS: u32 = 1_000_000;
+
 /// When an event was known, and the port's clock; without one of them times are read but not compared.
 #[derive(Clone, Copy, Debug)]
 pub struct Telling<'a> {
@@ -80,6 +83,18 @@ impl Telling<'_> {
             "correct one of the two times",
         );
         None
+    }
+
+    /// When something begins ("from"; when it is known if not given) and ends ("until"; `None` within if not given, or
+    /// "unknown").
+    #[must_use]
+    pub fn from_until(&self, keys: &mut Keys<'_>) -> (Option<DateTime<Utc>>, Option<Option<DateTime<Utc>>>) {
+        let from = self.any_or_known(keys, "from");
+        let until = match keys.optional("until") {
+            Some(item) if item.as_text() != Some("unknown") => self.end_after(&item, from).map(Some),
+            _ => Some(None),
+        };
+        (from, until)
     }
 
     /// A time for a finding: as on the port's clock, or in UTC if that is not known.
@@ -165,6 +180,24 @@ pub fn file_name(item: &Item<'_>) -> Option<String> {
             "a name from that folder on, with forward slashes: \"advisories/12.txt\"",
             "put the file into the folder and name it so",
         );
+        return None;
+    }
+    Some(text.to_owned())
+}
+
+/// The number of an event under "event".
+#[must_use]
+pub fn event_number(keys: &mut Keys<'_>) -> Option<usize> {
+    let number = keys.required("event")?.count(1, MOST_EVENTS)?;
+    usize::try_from(number).ok()
+}
+
+/// The SHA-256 of a file in 64 lower-case hexadecimal digits.
+#[must_use]
+pub fn file_digest(item: &Item<'_>) -> Option<String> {
+    let text = item.text()?;
+    if text.len() != 64 || !text.chars().all(|c| matches!(c, '0'..='9' | 'a'..='f')) {
+        item.bad_value("this cannot be a SHA-256", "64 digits 0 to 9 and a to f");
         return None;
     }
     Some(text.to_owned())

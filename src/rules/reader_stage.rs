@@ -64,6 +64,7 @@ fn read_stage(item: &Item<'_>, desk: &Desk<'_>) -> Option<Stage> {
     let direction = keys.optional("direction").map_or(Some(StageDirection::Closing), |item| {
         item.word(&[("closing", StageDirection::Closing), ("reopening", StageDirection::Reopening)])
     });
+    let needs_second = keys.optional("two_persons").map_or(Some(false), |item| item.flag());
     keys.finish();
     Some(Stage {
         id: id?.to_owned(),
@@ -73,6 +74,7 @@ fn read_stage(item: &Item<'_>, desk: &Desk<'_>) -> Option<Stage> {
         after: after?,
         status,
         direction: direction?,
+        needs_second: needs_second?,
         written: item.place(),
     })
 }

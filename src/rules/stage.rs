@@ -46,6 +46,8 @@ pub struct Stage {
     pub status: Vec<(String, String)>,
     /// Whether it belongs to the way down (closing) or up (re-opening).
     pub direction: StageDirection,
+    /// Whether declaring and lifting it counts only once a second person has confirmed it.
+    pub needs_second: bool,
     /// Where it stands in its file.
     pub written: Place,
 }

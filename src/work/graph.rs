@@ -1,5 +1,6 @@
 //! The graph of tasks and stages: nodes, edges, and finding one by its id.
 
+use crate::port::harbour::Port;
 use crate::rules::limit::{Deadline, LimitAt};
 use crate::rules::task::{DaylightNeed, IfGivenUp, Leave, LinkKind, NotBefore, Passage, Stake, TideNeed};
 use crate::time::moment::Minutes;
@@ -141,6 +142,21 @@ pub struct TaskNeed {
     pub before: Minutes,
     /// And this long after the finish.
     pub after: Minutes,
+}
+
+impl Task {
+    /// The berths, places and channels without which it cannot be done: those of its plant or berth, and the channel that
+    /// it passes. A ship may do whatever it must at a berth that can no longer be used, since it has to get away from it.
+    #[must_use]
+    pub fn spots<'a>(&'a self, port: &'a Port) -> Vec<&'a str> {
+        let berth = match self.thing {
+            Thing::Port | Thing::Ship(_) => None,
+            Thing::Plant(plant) => port.plant.get(plant).and_then(|plant| port.berth(&plant.berth)),
+            Thing::Berth(berth) => port.berths.get(berth),
+        };
+        let at = berth.into_iter().flat_map(|berth| [berth.id.as_str(), berth.place.as_str()]);
+        at.chain(self.passage.as_ref().map(|(passage, _)| passage.channel.as_str())).collect()
+    }
 }
 
 impl WorkGraph {

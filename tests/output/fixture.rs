@@ -32,6 +32,7 @@ pub fn setting(clock: &PortClock) -> Setting<'_> {
         effective: "2026-06-01",
         margin: Minutes::hours(1),
         clock,
+        record: "",
     }
 }
 

@@ -10,6 +10,8 @@ pub mod head;
 pub mod now;
 pub mod plan;
 pub mod port;
+pub mod record;
+pub mod review;
 pub mod task;
 pub mod value;
 pub mod wind;

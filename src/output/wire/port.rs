@@ -18,6 +18,9 @@ pub struct PortOut {
     pub authority: String,
     /// Whose warnings count.
     pub official_source: String,
+    /// How far the port's record goes: its last event and the head of its chain; left out if the record is a text.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub record: Option<String>,
 }
 
 /// The port of a setting.
@@ -30,5 +33,6 @@ pub fn port(setting: &Setting) -> PortOut {
         rules: setting.rules.to_owned(),
         authority: setting.authority.to_owned(),
         official_source: setting.official_source.to_owned(),
+        record: (!setting.record.is_empty()).then(|| setting.record.to_owned()),
     }
 }
