@@ -40,7 +40,7 @@ impl History {
 #[must_use]
 pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     let last = situation(inputs.events, now.to_utc());
-    let odds = AllOdds::of(inputs, &last);
+    let odds = AllOdds::of(inputs, now.to_utc());
     let mut moments: Vec<Moment> = last.changes.iter().map(|known| Moment::at_or_after(*known)).collect();
     moments.push(now);
     moments.dedup();
@@ -92,7 +92,7 @@ fn plan_then(
 #[must_use]
 pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
     let then = situation(inputs.events, plan.now.to_utc());
-    let odds = AllOdds::of(inputs, &then);
+    let odds = AllOdds::of(inputs, plan.now.to_utc());
     let forecast = forecast_in_force(inputs, &odds, &then);
     let book = arrival_book(inputs, &odds, &then, forecast.as_ref());
     let Inputs { port, rules, work, .. } = *inputs;

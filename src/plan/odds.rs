@@ -3,8 +3,10 @@
 use crate::advisory::forecast::Advisory;
 use crate::arrival::odds::{Answers, ask};
 use crate::plan::inputs::Inputs;
-use crate::record::situation::Situation;
+use crate::record::event::What;
+use crate::record::fold::in_order;
 use crate::work::questions::questions;
+use chrono::{DateTime, Utc};
 use std::collections::BTreeMap;
 use std::sync::OnceLock;
 use std::sync::atomic::{AtomicUsize, Ordering};
@@ -21,13 +23,15 @@ pub struct AllOdds<'a> {
 }
 
 impl<'a> AllOdds<'a> {
-    /// The advisories that were taken and are at hand; no odds yet.
+    /// The advisories that were taken by `now` and are at hand, those withdrawn since too: earlier plans stood on them. No
+    /// odds yet.
     #[must_use]
-    pub fn of(inputs: &Inputs<'a>, last: &Situation) -> AllOdds<'a> {
+    pub fn of(inputs: &Inputs<'a>, now: DateTime<Utc>) -> AllOdds<'a> {
         let mut entries = Vec::new();
         let mut by_file = BTreeMap::new();
-        for taken in &last.advisories {
-            let Some((file, advisory)) = inputs.forecasts.get_key_value(&taken.file) else { continue };
+        for event in in_order(inputs.events).into_iter().take_while(|event| event.known <= now) {
+            let What::AdvisoryTaken { file, .. } = &event.what else { continue };
+            let Some((file, advisory)) = inputs.forecasts.get_key_value(file) else { continue };
             by_file.entry(file.as_str()).or_insert_with(|| {
                 entries.push((advisory, OnceLock::new()));
                 entries.len() - 1
