@@ -1,5 +1,5 @@
 //! Plans of a small port, from its files to the finished sheet.
-#![allow(clippy::unwrap_used, reason = "a test that finds no plan must fail")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test that finds no plan must fail")]
 
 mod common;
 
@@ -337,4 +337,14 @@ fn facts_and_rulings_stand_in_the_head_until_they_end() {
     let notes = plan_with(&events, NOW).notes;
     let heads: Vec<&str> = notes.iter().filter_map(|note| note.split(" from ").next()).collect();
     assert_eq!(heads, ["order: stage S2 held (Harbour Master)", "fact: signal two balls shown"]);
+}
+
+#[test]
+fn a_plan_made_before_an_advisory_was_withdrawn_still_stands_on_it() {
+    let reading = port_with(&event("2026-09-17T12:08-03:00", "withdraws = { event = 1 }"));
+    let history = reading.plans(NOW);
+    let [taken, withdrawn, now] = history.plans.as_slice() else { panic!("{} plans", history.plans.len()) };
+    assert!(taken.advisory.is_some());
+    assert!(withdrawn.advisory.is_none() && now.advisory.is_none());
+    assert!(history.plans.iter().all(|plan| plan.breaches.is_empty()));
 }

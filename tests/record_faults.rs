@@ -2,7 +2,8 @@
 //!
 //! `SNUGDOWN_LONG=1` makes the long run; `--nocapture` shows the figures. The failing disk is `faults/shim.c`, built with the C
 //! compiler that the program itself needs.
-#![cfg(all(test, target_os = "linux"))]
+#![cfg(test)]
+#![cfg(target_os = "linux")]
 
 use snugdown::store::file::{Entry, Store};
 use std::collections::BTreeMap;

@@ -26,8 +26,8 @@ pub struct Args {
 
 /// Stands under the help of the whole program.
 const AFTER_HELP: &str = "\
-A port is a folder of TOML files: port, rules, tasks, ships, means ..., and a record of what was known, ordered and done:
-record.sqlite, to which take, mark, tell and order add, or a text, events.toml.
+A port is a folder of TOML files: port, rules, tasks, ships, means ..., and a record of what was known, ordered and \
+done: record.sqlite, to which take, mark, tell and order add, or a text, events.toml.
 A plan depends on that folder and the time alone. The harbour master decides; the program advises.
 
 Examples:

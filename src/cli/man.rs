@@ -21,10 +21,14 @@ pub fn run(mut command: Command) -> Result<Exit, Failure> {
 }
 
 fn render_options(command: &Command, page: &mut Vec<u8>) -> Result<(), Failure> {
-    page.extend(format!(".SH {}\n", command.get_name().to_uppercase()).bytes());
+    let title = command.get_bin_name().unwrap_or_default().to_uppercase();
+    page.extend(format!(".SH {title}\n").bytes());
     let man = Man::new(command.clone());
     man.render_synopsis_section(page)?;
     man.render_description_section(page)?;
     man.render_options_section(page)?;
+    for one in command.get_subcommands().filter(|one| one.get_name() != "help") {
+        render_options(one, page)?;
+    }
     Ok(())
 }

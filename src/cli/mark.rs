@@ -42,7 +42,7 @@ pub struct MarkArgs {
 const EXAMPLES: &str = "\
 Examples:
   snugdown mark quillhaven started V04/sail --with P3 --with T1 --by 'Traffic service'
-  snugdown mark quillhaven done U1/pin U2/pin --at '2026-09-17 11:00' --by 'Duty manager' --evidence 'seen by two'
+  snugdown mark quillhaven done U1/pin U2/pin --by 'Duty manager' --evidence 'seen by two'
   snugdown mark quillhaven cannot Q03 --by Foreman --reason 'the hoist is broken'";
 
 /// How work goes on.

@@ -22,10 +22,10 @@ const EXAMPLES: &str = "\
 A stage for which the rules ask two_persons counts only when another person has confirmed the order: see 'confirm'.
 
 Examples:
-  snugdown order quillhaven adopt pilot-station '34 kt' '2026-09-18 14:00' --by 'Harbour Master' --name 'A. Quill'
-  snugdown order quillhaven declare S3 --by 'Deputy' --for 'Harbour Master' --reason '24 h before the earliest gale'
+  snugdown order quillhaven adopt pilot-station '34 kt' '2026-09-18 14:00' --by 'Harbour Master'
+  snugdown order quillhaven declare S3 --by Deputy --for 'Harbour Master' --reason 'gale in 24 h'
   snugdown order quillhaven fix V04/sail '2026-09-17 10:00' --by 'Harbour Master'
-  snugdown order quillhaven waive 'two tugs for V10' --until '2026-09-17 18:00' --conditions 'in daylight' --by 'Harbour Master'";
+  snugdown order quillhaven waive 'two tugs for V10' --until '2026-09-17 18:00' --by 'Harbour Master'";
 
 /// The orders.
 #[derive(Clone, Debug, Subcommand)]

@@ -6,7 +6,7 @@ use crate::cli::load::Loaded;
 use crate::plan::fold::{History, plan_at};
 use crate::plan::inputs::Inputs;
 use crate::plan::sheet::Plan;
-use crate::record::event::What;
+use crate::record::fold::situation;
 use crate::schedule::search::Effort;
 use crate::time::moment::{Minutes, Moment};
 
@@ -40,12 +40,9 @@ pub fn latest(history: &History) -> Result<&Plan, Failure> {
 /// the last advisory was taken; `None` if none was taken either.
 #[must_use]
 pub fn compared_with(loaded: &Loaded, now: Moment) -> Option<Moment> {
-    let last = |test: &dyn Fn(&What) -> bool| {
-        let known = loaded.events.iter().filter(|event| test(&event.what)).map(|event| event.known);
-        known.map(Moment::at_or_after).filter(|known| *known <= now).max()
-    };
-    let issued = last(&|what| matches!(what, What::PlanIssued));
-    issued.or_else(|| Some(last(&|what| matches!(what, What::AdvisoryTaken(_)))? - Minutes::new(1)))
+    let then = situation(&loaded.events, now.to_utc());
+    let issued = then.issued.last().map(|said| Moment::at_or_after(said.known));
+    issued.or_else(|| Some(Moment::at_or_after(then.advisories.last()?.said.known) - Minutes::new(1)))
 }
 
 /// How a command ends that showed this plan: what cannot be done in time goes before a stale forecast.

@@ -36,8 +36,8 @@ pub struct RecordArgs {
 
 /// Stands under the help of the command.
 const AFTER_HELP: &str = "\
-The record is one file, record.sqlite: while nobody writes, a copy of it is the whole record. 'backup' copies it while
-others write. Each event's hash covers its text and the hash before it, so that no event can be changed unseen; plans name
+The record is one file, record.sqlite: while nobody writes, a copy of it is the whole record. 'backup' copies it while \
+others write. Each event's hash covers its text and the hash before it, so that no event can be changed unseen; plans name \
 the last one, and 'verify --head' holds the record against what stands on paper.
 
 Examples:

@@ -90,7 +90,7 @@ fn opened(
 }
 
 const EXAMPLES: &str = "\
-Taking the same bytes twice records nothing the second time. The newest advisory by its time of issue is in force, a
+Taking the same bytes twice records nothing the second time. The newest advisory by its time of issue is in force, a \
 correction before what it corrects, whatever the order in which they came in.
 
 Examples:

@@ -19,7 +19,7 @@ pub struct TellArgs {
 }
 
 const EXAMPLES: &str = "\
-The plan works with means, ready times, times taken, places out of use and observed winds; the other facts stand in its
+The plan works with means, ready times, times taken, places out of use and observed winds; the other facts stand in its \
 head until they end.
 
 Examples:
@@ -136,7 +136,7 @@ pub enum FactArgs {
 /// Something that lasts from a time until another.
 #[derive(Clone, Debug, Args)]
 pub struct Spell {
-    /// What
+    /// What it is about: a member, pool, service, place, signal or area
     #[arg(value_name = "WHAT")]
     pub what: String,
     /// From when; else when it became known
@@ -150,7 +150,7 @@ pub struct Spell {
 /// Something that holds from a time on.
 #[derive(Clone, Debug, Args)]
 pub struct Since {
-    /// What
+    /// What it is about: a member, pool, service, place, signal or area
     #[arg(value_name = "WHAT")]
     pub what: String,
     /// From when; else when it became known

@@ -5,8 +5,8 @@ use clap::Args;
 
 /// Stands under the help of every command that records something.
 pub const RECORDING: &str = "\
-Each command adds to the port's record, record.sqlite, which is made if the port has none; nothing in it is ever changed.
-A mistake is mended with 'withdraw', or with --replaces beside the right command. After recording, the plan is made again
+Each command adds to the port's record, record.sqlite, which is made if the port has none; nothing in it is ever changed. \
+A mistake is mended with 'withdraw', or with --replaces beside the right command. After recording, the plan is made again \
 and what changed is told in a few lines; the exit code is 0 as soon as it is recorded.";
 
 /// Whose record, who says it, when it was known.

@@ -45,7 +45,7 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     let mut moments: Vec<Moment> = last.changes.iter().map(|known| Moment::at_or_after(*known)).collect();
     moments.push(now);
     moments.dedup();
-    let odds = AllOdds::of(inputs, &last, &moments);
+    let odds = AllOdds::of(inputs, now, &moments);
     let first = moments.first().copied().unwrap_or(now);
     // A record that begins long ago (or in a mistyped year) must not fill the memory with tides.
     let from = (first - REACH.0).max(now - LONGEST_RECORD);
@@ -97,7 +97,7 @@ fn plan_then(
 #[must_use]
 pub fn audit_plan(inputs: &Inputs<'_>, plan: &Plan) -> Vec<Breach> {
     let then = situation(inputs.events, plan.now.to_utc());
-    let odds = AllOdds::of(inputs, &then, &[plan.now]);
+    let odds = AllOdds::of(inputs, plan.now, &[plan.now]);
     let force = in_force(inputs.forecasts, inputs.port, &then.advisories, then.now);
     let forecast = forecast_of(&force, &odds, inputs.port, inputs.rules.reckoning);
     let book = arrival_book(inputs, &odds, &then, forecast.as_ref());

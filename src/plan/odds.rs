@@ -5,8 +5,8 @@ use crate::arrival::earlier::earlier_of;
 use crate::arrival::odds::{Answers, ask};
 use crate::plan::in_force::{at_adoption, in_force};
 use crate::plan::inputs::Inputs;
-use crate::record::fold::situation;
-use crate::record::situation::Situation;
+use crate::record::event::What;
+use crate::record::fold::{in_order, situation};
 use crate::time::moment::Moment;
 use crate::work::questions::questions;
 use std::collections::BTreeMap;
@@ -28,14 +28,15 @@ pub struct AllOdds<'a> {
 }
 
 impl<'a> AllOdds<'a> {
-    /// The advisories that were taken and are at hand, and which of them were in force together at one of `moments`; no
-    /// odds yet.
+    /// The advisories that were taken by `now` and are at hand, those withdrawn since too, as earlier plans stood on them;
+    /// and which of them were in force together at one of `moments`. No odds yet.
     #[must_use]
-    pub fn of(inputs: &Inputs<'a>, last: &Situation, moments: &[Moment]) -> AllOdds<'a> {
+    pub fn of(inputs: &Inputs<'a>, now: Moment, moments: &[Moment]) -> AllOdds<'a> {
         let mut entries = Vec::new();
         let mut by_file = BTreeMap::new();
-        for taken in &last.advisories {
-            let Some((file, advisory)) = inputs.forecasts.get_key_value(&taken.file) else { continue };
+        for event in in_order(inputs.events).into_iter().take_while(|event| event.known <= now.to_utc()) {
+            let What::AdvisoryTaken(taking) = &event.what else { continue };
+            let Some((file, advisory)) = inputs.forecasts.get_key_value(&taking.key()) else { continue };
             by_file.entry(file.as_str()).or_insert_with(|| {
                 entries.push((advisory, OnceLock::new()));
                 entries.len() - 1
