@@ -341,7 +341,10 @@ fn a_stale_write_shows_both_versions_and_records_nothing() {
     // What others said of something else is no reason to refuse.
     recorded(&folder, "12:12", &["mark", "done", "V01/secure", "--seen", "1"]);
     let (_, told) = recorded(&folder, "12:13", &["mark", "done", "H2", "--seen", "2"]);
-    assert!(told.contains("H2 was told before: cannot be done (Duty officer)"), "{told}");
+    assert!(
+        told.contains("event 2: H2 cannot be done (Duty officer: no launch); what you say now counts"),
+        "{told}"
+    );
 }
 
 #[test]
