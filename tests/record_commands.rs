@@ -32,8 +32,13 @@ fn run(folder: &Path, arguments: &[&str]) -> Output {
     command.env_remove("COLUMNS").current_dir(folder).args(arguments).stdin(Stdio::null()).output().unwrap()
 }
 
-/// Records something at a time of Thursday, and gives what was said.
+/// Records something at a time of Thursday, without planning again, and gives what was said.
 fn record(folder: &Path, at: &str, arguments: &[&str]) -> Output {
+    record_and_plan(folder, at, &[arguments, &["--record-only"]].concat())
+}
+
+/// Records something at a time of Thursday, plans again, and gives what was said.
+fn record_and_plan(folder: &Path, at: &str, arguments: &[&str]) -> Output {
     let now = format!("2026-09-17 {at}");
     let by = ["--by", "Duty officer", "--now", &now];
     run(folder, &[&arguments[..1], &["."], &arguments[1..], &by].concat())
@@ -71,11 +76,26 @@ fn task(plan: &Value, id: &str) -> Value {
 #[test]
 fn an_advisory_taken_is_kept_in_the_record_and_planned_on() {
     let folder = port("take");
-    let (out, _) = recorded(&folder, "12:10", &["take", "approach.txt"]);
+    let out = text(&record_and_plan(&folder, "12:10", &["take", "approach.txt"]).stdout);
+    assert!(out.starts_with("recorded: event 1, chain "), "{out}");
     assert!(out.contains("news      approach.txt taken (Duty officer)") && out.contains("verdict"), "{out}");
     // The record alone holds it.
     fs::remove_file(folder.join("approach.txt")).unwrap();
     assert_eq!(plan(&folder, "12:20")["advisory"]["file"], "approach.txt");
+}
+
+#[test]
+fn what_a_fact_changed_is_told_in_a_few_lines_with_what_no_longer_fits_first() {
+    let folder = port("changes");
+    recorded(&folder, "12:05", &["take", "approach.txt"]);
+    // P1 is the only pilot for the larger ship.
+    let told = record_and_plan(&folder, "12:30", &["tell", "out", "P1", "--reason", "ill"]);
+    let out = text(&told.stdout);
+    assert_eq!(told.status.code(), Some(0), "{out}");
+    let at = |words: &str| out.find(words).unwrap_or_else(|| panic!("{words} is not in {out}"));
+    assert!(at("news      P1 out of service (Duty officer: ill)") < at("NO LONGER FITS: "));
+    assert!(at("V01/sail") < at("verdict   ") && out.contains("CANNOT BE DONE IN TIME"), "{out}");
+    assert!(out.lines().count() <= 20, "{out}");
 }
 
 #[test]
@@ -169,10 +189,10 @@ fn every_kind_of_progress_is_recorded_with_who_when_and_evidence() {
     let folder = port("progress");
     fs::write(folder.join("photo.jpg"), b"abc").unwrap();
     let one = |arguments: &[&str]| recorded(&folder, "12:10", arguments);
-    one(&["mark", "started", "V01/secure", "--with", "L1", "--name", "A. Quill", "--record-only"]);
-    one(&["mark", "done", "H1", "--evidence", "signed", "--proof", "photo.jpg", "--record-only"]);
-    one(&["mark", "cannot", "Q1/clear", "--reason", "no crane", "--record-only"]);
-    one(&["mark", "not-needed", "Q2/clear", "--record-only"]);
+    one(&["mark", "started", "V01/secure", "--with", "L1", "--name", "A. Quill"]);
+    one(&["mark", "done", "H1", "--evidence", "signed", "--proof", "photo.jpg"]);
+    one(&["mark", "cannot", "Q1/clear", "--reason", "no crane"]);
+    one(&["mark", "not-needed", "Q2/clear"]);
     assert_eq!(
         words(&folder),
         [
@@ -219,7 +239,7 @@ fn every_fact_has_its_command() {
         &["sea", "pilot-station", "3.2 m", "--at", "2026-09-17 12:00"],
         &["anchorage", "quays", "full"],
     ] {
-        recorded(&folder, "12:10", &[&["tell"], fact, &["--record-only"]].concat());
+        recorded(&folder, "12:10", &[&["tell"], fact, &[]].concat());
     }
     let said: Vec<String> = words(&folder)
         .iter()
@@ -275,7 +295,7 @@ fn every_order_has_its_command() {
         &["refuse", "V02 to shift"],
         &["issue"],
     ] {
-        let who = ["--name", "A. Quill", "--for", "Harbour Master", "--reason", "test", "--record-only"];
+        let who = ["--name", "A. Quill", "--for", "Harbour Master", "--reason", "test"];
         recorded(&folder, "12:10", &[&["order"], order, &who].concat());
     }
     let said: Vec<String> = words(&folder)
@@ -341,7 +361,10 @@ fn a_stale_write_shows_both_versions_and_records_nothing() {
     // What others said of something else is no reason to refuse.
     recorded(&folder, "12:12", &["mark", "done", "V01/secure", "--seen", "1"]);
     let (_, told) = recorded(&folder, "12:13", &["mark", "done", "H2", "--seen", "2"]);
-    assert!(told.contains("H2 was told before: cannot be done (Duty officer)"), "{told}");
+    assert!(
+        told.contains("event 2: H2 cannot be done (Duty officer: no launch); what you say now counts"),
+        "{told}"
+    );
 }
 
 #[test]
@@ -417,7 +440,7 @@ fn a_text_goes_in_and_comes_out_the_same() {
 #[test]
 fn an_advisory_changed_after_it_was_taken_is_found() {
     let folder = port("changed-advisory");
-    recorded(&folder, "12:10", &["take", "approach.txt", "--record-only"]);
+    recorded(&folder, "12:10", &["take", "approach.txt"]);
     assert_eq!(run(&folder, &["record", "export", ".", "out"]).status.code(), Some(0));
     fs::copy(folder.join("out/events.toml"), folder.join("copy.toml")).unwrap();
     fs::write(folder.join("approach.txt"), TEXT.to_owned() + " ").unwrap();
@@ -445,8 +468,8 @@ fn the_record_verifies_itself_and_against_what_stands_on_paper() {
 #[test]
 fn python_finds_the_record_as_sound_as_the_program_does() {
     let folder = port("python");
-    recorded(&folder, "12:10", &["take", "approach.txt", "--record-only"]);
-    recorded(&folder, "12:11", &["mark", "done", "H1", "H2", "--record-only", "--reason", "Ærø \"<&>\" 港"]);
+    recorded(&folder, "12:10", &["take", "approach.txt"]);
+    recorded(&folder, "12:11", &["mark", "done", "H1", "H2", "--reason", "Ærø \"<&>\" 港"]);
     let script = Path::new(env!("CARGO_MANIFEST_DIR")).join("tests/outside/record_chain.py");
     let check = |path: &Path| Command::new("python3").arg(&script).arg(path).output().unwrap();
     let sound = check(&folder.join("record.sqlite"));
@@ -468,12 +491,12 @@ fn python_finds_the_record_as_sound_as_the_program_does() {
 #[test]
 fn a_backup_is_a_record_of_its_own() {
     let folder = port("backup");
-    recorded(&folder, "12:10", &["mark", "done", "H1", "--record-only"]);
+    recorded(&folder, "12:10", &["mark", "done", "H1"]);
     assert_eq!(run(&folder, &["record", "backup", ".", "copy.sqlite"]).status.code(), Some(0));
     let again = run(&folder, &["record", "backup", ".", "copy.sqlite"]);
     assert_eq!(again.status.code(), Some(1), "{}", text(&again.stderr));
     // A drill goes on in the copy, and the port's own record knows nothing of it.
-    recorded(&folder, "12:11", &["mark", "done", "H2", "--record", "copy.sqlite", "--record-only"]);
+    recorded(&folder, "12:11", &["mark", "done", "H2", "--record", "copy.sqlite"]);
     assert_eq!(list(&folder).len(), 1);
     let there = run(&folder, &["record", "list", ".", "--record", "copy.sqlite"]);
     assert!(text(&there.stdout).contains("H2 done"));
@@ -483,19 +506,13 @@ fn a_backup_is_a_record_of_its_own() {
 fn a_clock_put_back_is_told_and_a_wrong_one_refused() {
     let folder = port("clock");
     // Known far in the future of any clock that runs this test.
-    let ahead = run(
-        &folder,
-        &["tell", ".", "signal", "x", "--by", "A", "--now", "2190-01-01 00:00", "--record-only"],
-    );
+    let ahead = run(&folder, &["tell", ".", "signal", "x", "--by", "A", "--now", "2190-01-01 00:00"]);
     assert_eq!(ahead.status.code(), Some(0), "{}", text(&ahead.stderr));
     let now = run(&folder, &["tell", ".", "signal", "y", "--by", "A"]);
     assert_eq!(now.status.code(), Some(2));
     assert!(text(&now.stderr).contains("set the clock, or give the time with --now"));
     // An hour back, as when clocks are changed: told as out of order, and recorded with its own time.
-    let back = run(
-        &folder,
-        &["tell", ".", "signal", "z", "--by", "A", "--now", "2189-12-31 23:00", "--record-only"],
-    );
+    let back = run(&folder, &["tell", ".", "signal", "z", "--by", "A", "--now", "2189-12-31 23:00"]);
     assert_eq!(back.status.code(), Some(0), "{}", text(&back.stderr));
     assert_eq!(list(&folder).len(), 2);
 }
@@ -503,10 +520,10 @@ fn a_clock_put_back_is_told_and_a_wrong_one_refused() {
 #[test]
 fn asked_and_done_stand_side_by_side_afterwards() {
     let folder = port("review");
-    recorded(&folder, "12:10", &["take", "approach.txt", "--record-only"]);
-    recorded(&folder, "12:11", &["order", "declare", "S1", "--record-only"]);
-    recorded(&folder, "12:30", &["mark", "started", "V01/secure", "--record-only"]);
-    recorded(&folder, "15:00", &["mark", "done", "V01/secure", "--at", "2026-09-17 14:45", "--record-only"]);
+    recorded(&folder, "12:10", &["take", "approach.txt"]);
+    recorded(&folder, "12:11", &["order", "declare", "S1"]);
+    recorded(&folder, "12:30", &["mark", "started", "V01/secure"]);
+    recorded(&folder, "15:00", &["mark", "done", "V01/secure", "--at", "2026-09-17 14:45"]);
     let call = ["record", "review", ".", "--now", "2026-09-17 15:10", "--as"];
     let form = |form: &str| text(&run(&folder, &[&call[..], &[form]].concat()).stdout);
     let json: Value = serde_json::from_str(&form("json")).unwrap();

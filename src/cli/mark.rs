@@ -6,8 +6,9 @@ use crate::cli::exit::{Exit, Failure};
 use crate::cli::folder::read_bytes;
 use crate::cli::screen::tell;
 use crate::cli::write_args::{RECORDING, WriteArgs};
-use crate::plan::news::outcome_words;
-use crate::record::fold::situation;
+use crate::plan::news::news_words;
+use crate::record::event::{Event, What};
+use crate::record::fold::withdrawn;
 use crate::store::chain::digest;
 use clap::{Args, ValueEnum};
 use std::path::PathBuf;
@@ -66,12 +67,10 @@ pub fn run(args: &MarkArgs) -> Result<Exit, Failure> {
     check_fit(args)?;
     let desk = Desk::open(&args.write)?;
     let evidence = evidence(args)?;
-    let now = situation(&desk.loaded.events, desk.now.to_utc());
     for task in &args.tasks {
-        if let Some(words) =
-            now.tasks.get(task).and_then(|state| outcome_words(state, &desk.loaded.port.clock))
-        {
-            tell(&format!("snugdown: {task} was told before: {words}; what you say now counts"));
+        if let Some(before) = told_before(&desk.loaded.events, task) {
+            let words = news_words(before, &desk.loaded.port.clock);
+            tell(&format!("snugdown: event {}: {words}; what you say now counts", before.number));
         }
     }
     let draft = |task: &String| match args.what {
@@ -91,6 +90,38 @@ pub fn run(args: &MarkArgs) -> Result<Exit, Failure> {
     };
     let drafts: Vec<Draft> = args.tasks.iter().map(draft).collect();
     desk.record(&drafts, &[])
+}
+
+/// The last event, if it still stands, that said how a task ended; looked for without folding the whole record.
+fn told_before<'a>(events: &'a [Event], task: &str) -> Option<&'a Event> {
+    let is_end = |event: &&Event| match &event.what {
+        What::TaskDone { task: told, .. }
+        | What::TaskCannot { task: told }
+        | What::TaskNotNeeded { task: told } => told == task,
+        What::AdvisoryTaken { .. }
+        | What::ArrivalAdopted { .. }
+        | What::StageDeclared { .. }
+        | What::StageLifted { .. }
+        | What::TaskStarted { .. }
+        | What::TaskTakes { .. }
+        | What::TaskLeft { .. }
+        | What::TaskNotBefore { .. }
+        | What::TaskFixed { .. }
+        | What::CutOrdered { .. }
+        | What::SubstituteOrdered { .. }
+        | What::TaskRetracted { .. }
+        | What::MeansOut { .. }
+        | What::MeansBack { .. }
+        | What::Observed { .. }
+        | What::PlanIssued
+        | What::Told(_)
+        | What::Ruled(_)
+        | What::Withdrawn { .. }
+        | What::Confirmed { .. } => false,
+    };
+    let all: Vec<&Event> = events.iter().collect();
+    let gone = withdrawn(&all);
+    events.iter().rev().filter(is_end).find(|event| !gone.contains(&event.number))
 }
 
 /// An option that would be lost in silence is refused.

@@ -3,7 +3,7 @@
 use crate::record::event::{Event, What};
 use crate::record::fact::{AnchorageState, Fact, Measure};
 use crate::record::ruling::Ruling;
-use crate::record::situation::{Outcome, Situation, TaskState};
+use crate::record::situation::Situation;
 use crate::time::clock::PortClock;
 use crate::time::moment::Moment;
 use chrono::{DateTime, Utc};
@@ -111,18 +111,6 @@ fn ruling_words(ruling: &Ruling, shown: &dyn Fn(DateTime<Utc>) -> String) -> Str
 
 fn until_words(until: Option<DateTime<Utc>>, shown: &dyn Fn(DateTime<Utc>) -> String) -> String {
     until.map_or_else(String::new, |until| format!(" until {}", shown(until)))
-}
-
-/// How a task ended, as told so far: "done Thu 17 Sep 06:00 -03 (09:00Z) (Agent)"; `None` while it is open.
-#[must_use]
-pub fn outcome_words(state: &TaskState, clock: &PortClock) -> Option<String> {
-    Some(match state.outcome.as_ref()? {
-        Outcome::Done { at, said, .. } => {
-            format!("done {} ({})", clock.show(Moment::at_or_before(*at)), said.by)
-        }
-        Outcome::Cannot { said } => format!("cannot be done ({})", said.by),
-        Outcome::NotNeeded { said } => format!("not needed ({})", said.by),
-    })
 }
 
 /// The facts and rulings that hold or will hold, and the orders that wait for a second person, in words: they stand in the

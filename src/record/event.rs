@@ -199,9 +199,9 @@ impl Event {
     pub fn compare(&self, other: &Event) -> Ordering {
         let said = (&self.by, &self.name, &self.on_behalf, &self.reason, self.awaits_second);
         let other_said = (&other.by, &other.name, &other.on_behalf, &other.reason, other.awaits_second);
-        let head = (self.known, said).cmp(&(other.known, other_said));
-        // No part of an event is ever NaN, so any two can be compared.
-        head.then_with(|| self.what.partial_cmp(&other.what).unwrap_or(Ordering::Equal))
+        // No part of an event is ever NaN, so any two can be compared. What they say differs sooner than who says it.
+        let what = self.what.partial_cmp(&other.what).unwrap_or(Ordering::Equal);
+        self.known.cmp(&other.known).then(what).then_with(|| said.cmp(&other_said))
     }
 
     /// Whether another person says `other`: told apart by their names where both are given, else by title.

@@ -42,14 +42,25 @@ pub fn situation(events: &[Event], now: DateTime<Utc>) -> Situation {
 /// one was withdrawn.
 #[must_use]
 pub fn in_order<'a>(events: impl IntoIterator<Item = &'a Event>) -> Vec<&'a Event> {
-    let mut once: Vec<(usize, &Event)> = events.into_iter().enumerate().collect();
-    let taken_back: BTreeSet<usize> = once.iter().filter_map(|(_, event)| event.withdraws()).collect();
-    once.sort_by(|(_, a), (_, b)| a.compare(b));
-    once.dedup_by(|(_, later), (_, earlier)| {
-        later.compare(earlier).is_eq() && !taken_back.contains(&earlier.number)
-    });
-    once.sort_by_key(|(nth, event)| (event.known, *nth));
-    once.into_iter().map(|(_, event)| event).collect()
+    let mut sorted: Vec<&Event> = events.into_iter().collect();
+    let taken_back: BTreeSet<usize> = sorted.iter().filter_map(|event| event.withdraws()).collect();
+    sorted.sort_by_key(|event| event.known);
+    let mut once = Vec::with_capacity(sorted.len());
+    // Only events of the same time can say the same.
+    for same_time in sorted.chunk_by(|a, b| a.known == b.known) {
+        if let [only] = same_time {
+            once.push(*only);
+            continue;
+        }
+        let mut ranked: Vec<(usize, &Event)> = same_time.iter().copied().enumerate().collect();
+        ranked.sort_by(|(_, a), (_, b)| a.compare(b));
+        ranked.dedup_by(|(_, later), (_, earlier)| {
+            later.compare(earlier).is_eq() && !taken_back.contains(&earlier.number)
+        });
+        ranked.sort_by_key(|(nth, _)| *nth);
+        once.extend(ranked.into_iter().map(|(_, event)| event));
+    }
+    once
 }
 
 /// A situation that grows event by event, in the order of [`in_order`].
