@@ -23,7 +23,9 @@ cross_serial = [0.7, 0.7]
 intensity_serial = [0.7, 0.7]
 size_serial = [0.7, 0.7]
 radii_relaxation_h = 36
-accuracy_divisor = 1.5
+accuracy_usual_nmi = 15
+accuracy_power = 1
+accuracy_fades_h = 12
 intensity_with_size = 0
 size_follows_intensity = 0.5
 [elsewhere]

@@ -118,7 +118,19 @@ pub struct ErrorRow {
     pub bias: [f64; 4],
     /// Correlation between the error 12 h earlier and the error at this lead; unused at lead 0.
     pub serial: [f64; 4],
+    /// For intensity and size, by which share a forecast's departure from a storm of 60 kt and from a mean storm of its strength does
+    /// not come true.
+    pub pull: [f64; 2],
+    /// Standard deviation of [`crate::wind::structure::Change::lopsided`], each way.
+    pub lopsided: f64,
+    /// Its correlation with that 12 h earlier.
+    pub lopsided_serial: f64,
 }
+
+/// The greatest wind (kt) and the mean reach of 34 kt (n mi) of the storms whose deviations stand in a table.
+pub const WIND_OF_THE_TABLE_KT: f64 = 60.0;
+/// See [`WIND_OF_THE_TABLE_KT`].
+pub const REACH_OF_THE_TABLE_NMI: f64 = 100.0;
 
 /// A fault in an error table's numbers.
 #[derive(Clone, Debug, PartialEq, thiserror::Error)]
@@ -170,9 +182,16 @@ pub struct Settings {
     /// Hours in which a storm's own size relaxes by the factor e to the mean vortex after the last given
     /// radii, 1..1000.
     pub radii_relaxation_h: f64,
-    /// The stated accuracy of the centre divided by this is the standard deviation of its position along and
-    /// across, 0.5..5.
-    pub accuracy_divisor: f64,
+    /// The usual accuracy that advisories state of the present centre, n mi, 1..300: the centre's deviations in the table are of such
+    /// forecasts.
+    pub accuracy_usual_nmi: f64,
+    /// With which power the centre's deviations grow with the stated accuracy at lead 0, 0..2.
+    pub accuracy_power: f64,
+    /// Hours of lead in which that power falls to 0, 1..1000.
+    pub accuracy_fades_h: f64,
+    /// With which power deviations grow: of along, cross and intensity with the forecast wind / 60 kt, of size with the forecast reach of
+    /// gales / 100 n mi; each -2..2.
+    pub scaling: [f64; 4],
 }
 
 impl ErrorTable {
@@ -202,7 +221,12 @@ impl ErrorTable {
         within("intensity_with_size", 0.0, settings.intensity_with_size, MUTUAL_BOUNDS)?;
         within("size_follows_intensity", 0.0, settings.size_follows_intensity, FOLLOWS_BOUNDS)?;
         within("radii_relaxation_h", 0.0, settings.radii_relaxation_h, RELAXATION_BOUNDS)?;
-        within("accuracy_divisor", 0.0, settings.accuracy_divisor, ACCURACY_BOUNDS)?;
+        within("accuracy_usual_nmi", 0.0, settings.accuracy_usual_nmi, ACCURACY_BOUNDS)?;
+        within("accuracy_power", 0.0, settings.accuracy_power, POWER_BOUNDS)?;
+        within("accuracy_fades_h", 0.0, settings.accuracy_fades_h, FADING_BOUNDS)?;
+        for (name, value) in SCALING.iter().zip(settings.scaling) {
+            within(name, 0.0, value, SCALING_BOUNDS)?;
+        }
         Ok(ErrorTable { name: name.into(), sources, rows, settings, notes: Vec::new() })
     }
 
@@ -250,6 +274,9 @@ impl ErrorTable {
             deviation: mix(a.deviation, b.deviation).map(|d| d.max(0.0)),
             bias: mix(a.bias, b.bias),
             serial: if share > 0.0 { b.serial } else { a.serial },
+            lopsided: a.lopsided + (b.lopsided - a.lopsided) * share,
+            lopsided_serial: if share > 0.0 { b.lopsided_serial } else { a.lopsided_serial },
+            pull: [0, 1].map(|i| a.pull[i] + (b.pull[i] - a.pull[i]) * share),
         }
     }
 
@@ -267,8 +294,15 @@ impl ErrorTable {
 
 impl ErrorRow {
     /// No error at all: what the single track is made with.
-    pub const NONE: ErrorRow =
-        ErrorRow { lead_h: 0.0, deviation: [0.0; 4], bias: [0.0; 4], serial: [0.0; 4] };
+    pub const NONE: ErrorRow = ErrorRow {
+        lead_h: 0.0,
+        deviation: [0.0; 4],
+        bias: [0.0; 4],
+        serial: [0.0; 4],
+        pull: [0.0; 2],
+        lopsided: 0.0,
+        lopsided_serial: 0.0,
+    };
 
     fn check(&self) -> Result<(), TableError> {
         within("lead_h", self.lead_h, self.lead_h, LEAD_BOUNDS)?;
@@ -276,6 +310,11 @@ impl ErrorRow {
             for (column, value) in columns.iter().zip(values) {
                 within(column.name, self.lead_h, value, column.bounds)?;
             }
+        }
+        for (column, value) in
+            OPTIONAL.iter().zip([self.pull[0], self.pull[1], self.lopsided, self.lopsided_serial])
+        {
+            within(column.name, self.lead_h, value, column.bounds)?;
         }
         Ok(())
     }
@@ -316,14 +355,31 @@ pub const COLUMNS: [[Column; 4]; 3] = [
     ],
 ];
 
+/// Columns of [`ErrorRow::pull`], [`ErrorRow::lopsided`], [`ErrorRow::lopsided_serial`].
+pub const OPTIONAL: [Column; 4] = [
+    Column { name: "intensity_pull", bounds: (-1.0, 1.0) },
+    Column { name: "size_pull", bounds: (-1.0, 1.0) },
+    Column { name: "lopsided", bounds: (0.0, 2.0) },
+    Column { name: "lopsided_serial", bounds: (0.0, 1.0) },
+];
+
+/// Keys of [`Settings::scaling`].
+pub const SCALING: [&str; 4] = ["along_by_wind", "cross_by_wind", "intensity_by_wind", "size_by_reach"];
+
+/// Bounds of [`Settings::scaling`].
+pub const SCALING_BOUNDS: (f64, f64) = (-2.0, 2.0);
+/// Bounds of [`Settings::accuracy_fades_h`].
+pub const FADING_BOUNDS: (f64, f64) = (1.0, 1000.0);
 /// Bounds of [`Settings::intensity_with_size`].
 pub const MUTUAL_BOUNDS: (f64, f64) = (-1.0, 1.0);
 /// Bounds of [`Settings::size_follows_intensity`].
-pub const FOLLOWS_BOUNDS: (f64, f64) = (0.0, 1.0);
+pub const FOLLOWS_BOUNDS: (f64, f64) = (0.0, 0.95);
 /// Bounds of [`Settings::radii_relaxation_h`].
 pub const RELAXATION_BOUNDS: (f64, f64) = (1.0, 1000.0);
-/// Bounds of [`Settings::accuracy_divisor`].
-pub const ACCURACY_BOUNDS: (f64, f64) = (0.5, 5.0);
+/// Bounds of [`Settings::accuracy_usual_nmi`].
+pub const ACCURACY_BOUNDS: (f64, f64) = (1.0, 300.0);
+/// Bounds of [`Settings::accuracy_power`].
+pub const POWER_BOUNDS: (f64, f64) = (0.0, 2.0);
 
 fn within(what: &'static str, lead_h: f64, value: f64, (least, most): (f64, f64)) -> Result<(), TableError> {
     if is_within(value, (least, most)) {
@@ -391,7 +447,10 @@ mod tests {
         intensity_with_size: 0.0,
         size_follows_intensity: 0.5,
         radii_relaxation_h: 36.0,
-        accuracy_divisor: 1.5,
+        accuracy_usual_nmi: 15.0,
+        accuracy_power: 1.0,
+        accuracy_fades_h: 12.0,
+        scaling: [0.0; 4],
     };
 
     fn row(lead_h: f64, along: f64) -> ErrorRow {

@@ -1,8 +1,9 @@
 //! Reads a file of forecast-error tables.
 
 use crate::arrival::errors::{
-    ACCURACY_BOUNDS, Basin, COLUMNS, ErrorRow, ErrorTable, ErrorTables, FOLLOWS_BOUNDS, LEAD_BOUNDS,
-    MUTUAL_BOUNDS, RELAXATION_BOUNDS, Settings, is_within,
+    ACCURACY_BOUNDS, Basin, COLUMNS, ErrorRow, ErrorTable, ErrorTables, FADING_BOUNDS, FOLLOWS_BOUNDS,
+    LEAD_BOUNDS, MUTUAL_BOUNDS, OPTIONAL, POWER_BOUNDS, RELAXATION_BOUNDS, SCALING, SCALING_BOUNDS, Settings,
+    is_within,
 };
 use crate::finding::fault::{Finding, nearest, sort_findings};
 use crate::finding::source::SourceText;
@@ -35,7 +36,13 @@ struct RawTable {
     basins: Vec<Spanned<String>>,
     sources: Vec<String>,
     radii_relaxation_h: Spanned<f64>,
-    accuracy_divisor: Spanned<f64>,
+    accuracy_usual_nmi: Spanned<f64>,
+    accuracy_power: Spanned<f64>,
+    accuracy_fades_h: Spanned<f64>,
+    along_by_wind: Option<Spanned<f64>>,
+    cross_by_wind: Option<Spanned<f64>>,
+    intensity_by_wind: Option<Spanned<f64>>,
+    size_by_reach: Option<Spanned<f64>>,
     intensity_with_size: Spanned<f64>,
     size_follows_intensity: Spanned<f64>,
     lead_h: Numbers,
@@ -51,6 +58,10 @@ struct RawTable {
     cross_serial: Numbers,
     intensity_serial: Numbers,
     size_serial: Numbers,
+    intensity_pull: Option<Numbers>,
+    size_pull: Option<Numbers>,
+    lopsided: Option<Numbers>,
+    lopsided_serial: Option<Numbers>,
 }
 
 /// Reads error tables.
@@ -168,6 +179,23 @@ impl Reader<'_> {
                 }
             }
         }
+        for (i, (column, numbers)) in OPTIONAL
+            .iter()
+            .zip([&raw.intensity_pull, &raw.size_pull, &raw.lopsided, &raw.lopsided_serial])
+            .enumerate()
+        {
+            let Some(numbers) = numbers else { continue };
+            let values = self.numbers(numbers, column.name, column.bounds);
+            self.length(numbers, column.name, leads.len());
+            for (row, value) in rows.iter_mut().zip(values) {
+                match i {
+                    0 | 1 => row.pull[i] = value,
+                    2 => row.lopsided = value,
+                    _ => row.lopsided_serial = value,
+                }
+            }
+        }
+        let scaling = [&raw.along_by_wind, &raw.cross_by_wind, &raw.intensity_by_wind, &raw.size_by_reach];
         let settings = Settings {
             intensity_with_size: self.number(&raw.intensity_with_size, "intensity_with_size", MUTUAL_BOUNDS),
             size_follows_intensity: self.number(
@@ -176,7 +204,13 @@ impl Reader<'_> {
                 FOLLOWS_BOUNDS,
             ),
             radii_relaxation_h: self.number(&raw.radii_relaxation_h, "radii_relaxation_h", RELAXATION_BOUNDS),
-            accuracy_divisor: self.number(&raw.accuracy_divisor, "accuracy_divisor", ACCURACY_BOUNDS),
+            accuracy_usual_nmi: self.number(&raw.accuracy_usual_nmi, "accuracy_usual_nmi", ACCURACY_BOUNDS),
+            accuracy_power: self.number(&raw.accuracy_power, "accuracy_power", POWER_BOUNDS),
+            accuracy_fades_h: self.number(&raw.accuracy_fades_h, "accuracy_fades_h", FADING_BOUNDS),
+            scaling: std::array::from_fn(|i| match scaling[i] {
+                Some(value) => self.number(value, SCALING[i], SCALING_BOUNDS),
+                None => 0.0,
+            }),
         };
         let table = ErrorTable::new(raw.name.get_ref(), raw.sources.clone(), rows, settings).ok()?;
         (self.findings.len() == before).then_some(table)

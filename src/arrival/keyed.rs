@@ -23,12 +23,22 @@ pub enum Component {
     Intensity,
     /// The wind radii.
     Size,
+    /// How much further winds reach in the north.
+    North,
+    /// How much further they reach in the east.
+    East,
 }
 
 impl Component {
-    /// All four, in the order in which arrays hold them.
-    pub const ALL: [Component; 4] =
-        [Component::Along, Component::Cross, Component::Intensity, Component::Size];
+    /// All of them, in the order in which arrays hold them.
+    pub const ALL: [Component; 6] = [
+        Component::Along,
+        Component::Cross,
+        Component::Intensity,
+        Component::Size,
+        Component::North,
+        Component::East,
+    ];
 
     /// Its place in such arrays.
     #[must_use]
@@ -38,6 +48,8 @@ impl Component {
             Component::Cross => 1,
             Component::Intensity => 2,
             Component::Size => 3,
+            Component::North => 4,
+            Component::East => 5,
         }
     }
 }

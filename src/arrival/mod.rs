@@ -9,3 +9,4 @@ pub mod odds;
 pub mod onset;
 pub mod question;
 pub mod scenario;
+pub mod spread;

@@ -4,16 +4,18 @@
 //! with e from the standard normal distribution, for each of along, cross, intensity and size; an error is
 //! deviation x z + bias.
 
-use crate::arrival::course::{Course, Step, Storm};
+use crate::arrival::course::{Course, Step};
 use crate::arrival::keyed::{BLOCK, Component, Keyed};
+use crate::wind::climatology::radius_of_greatest_wind_nmi;
 use crate::wind::field::Vortex;
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, displaced, dot, plus};
+use crate::wind::structure::{Change, Expected};
 use std::cell::OnceCell;
 
 /// The innovations of one block of scenarios: for each node and component, one number for each scenario.
 #[derive(Clone, Debug)]
 pub struct Draws {
-    nodes: Vec<[Vec<f64>; 4]>,
+    nodes: Vec<[Vec<f64>; 6]>,
 }
 
 impl Draws {
@@ -27,11 +29,11 @@ impl Draws {
     }
 
     /// Standard errors at the nodes for the scenario `index` (counted over all blocks).
-    fn standard_errors(&self, course: &Course, index: usize, out: &mut Vec<[f64; 4]>) {
+    fn standard_errors(&self, course: &Course, index: usize, out: &mut Vec<[f64; 6]>) {
         out.clear();
-        let mut last = [0.0; 4];
+        let mut last = [0.0; 6];
         for (node, (serial, drawn)) in course.serial.iter().zip(&self.nodes).enumerate() {
-            let mut fresh = [0.0; 4];
+            let mut fresh = [0.0; 6];
             for (e, numbers) in fresh.iter_mut().zip(drawn) {
                 *e = numbers.get(index % BLOCK).copied().unwrap_or(0.0);
             }
@@ -46,22 +48,33 @@ impl Draws {
     }
 }
 
+/// The least size of a storm as a multiple of its forecast. Our choice.
+const LEAST_SIZE: f64 = 0.05;
+
 /// How a storm is to be at one step.
 #[derive(Clone, Copy, Debug)]
 struct State {
     centre: Vector,
-    wind_kt: f64,
-    /// The size error as a factor.
-    size: f64,
+    change: Change,
 }
 
 impl State {
-    fn of(step: &Step, storm: &Storm, [along, cross, intensity, size]: [f64; 4]) -> State {
+    fn of(step: &Step, storm: &Expected, [along, cross, intensity, size, north, east]: [f64; 6]) -> State {
         State {
             centre: displaced(step.centre, step.along, step.cross, along, cross),
-            wind_kt: (storm.table.expected.wind_kt + intensity).clamp(0.0, 250.0),
-            size: libm::exp(size),
+            change: Change {
+                wind_kt: (storm.wind_kt + intensity).clamp(0.0, 250.0),
+                size: (1.0 + size).max(LEAST_SIZE),
+                lopsided: [north, east],
+            },
         }
+    }
+
+    /// A bound of the reach of 34 kt or of the core, n mi. Much cheaper than the reach itself, it keeps far places out of the inner loop.
+    fn bound_nmi(&self, storm: &Expected) -> f64 {
+        let core =
+            storm.mean_gale_ratio * self.change.size * radius_of_greatest_wind_nmi(0.0, storm.latitude);
+        storm.bound_nmi(&self.change).max(core)
     }
 }
 
@@ -80,7 +93,7 @@ struct Stop {
 #[derive(Clone, Debug, Default)]
 pub struct Scenario {
     /// Standard errors at the nodes; none for the forecast's own track.
-    errors: Vec<[f64; 4]>,
+    errors: Vec<[f64; 6]>,
     stops: Vec<Stop>,
     /// The greatest bound of the reach of 34 kt, and the longest way from stop to stop, in radians.
     widest: f64,
@@ -102,16 +115,16 @@ impl Scenario {
     }
 
     /// The errors along, across, in intensity and size at a step.
-    fn error(&self, step: &Step) -> [f64; 4] {
+    fn error(&self, step: &Step) -> [f64; 6] {
         match (self.errors.get(step.node), self.errors.get(step.node + 1)) {
             (Some(now), Some(next)) => std::array::from_fn(|i| {
                 step.from_node[i] * now[i] + step.from_next[i] * next[i] + step.bias[i]
             }),
-            _ => [0.0; 4],
+            _ => [0.0; 6],
         }
     }
 
-    fn state<'a>(&self, course: &'a Course, k: usize) -> Option<(State, &'a Storm)> {
+    fn state<'a>(&self, course: &'a Course, k: usize) -> Option<(State, &'a Expected)> {
         let (step, storm) = (course.steps.get(k)?, course.storms.get(k)?);
         Some((State::of(step, storm, self.error(step)), storm))
     }
@@ -125,7 +138,7 @@ impl Scenario {
         self.fastest = 1.0 / EARTH_RADIUS_NMI;
         for k in &course.stops {
             let Some((state, storm)) = self.state(course, *k) else { continue };
-            let bound = state.size * storm.bound_nmi(state.wind_kt) / EARTH_RADIUS_NMI;
+            let bound = state.bound_nmi(storm) / EARTH_RADIUS_NMI;
             self.widest = self.widest.max(bound);
             if let Some(last) = self.stops.last_mut() {
                 let moved = plus(state.centre, -1.0, last.centre);
@@ -167,6 +180,6 @@ impl Scenario {
             return Some(vortex);
         }
         let (state, storm) = self.state(course, k)?;
-        Some(kept.get_or_init(|| Vortex::realised(&storm.table, state.centre, state.wind_kt, state.size)))
+        Some(kept.get_or_init(|| Vortex::realised(storm, state.centre, &state.change)))
     }
 }

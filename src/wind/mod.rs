@@ -7,7 +7,6 @@ pub mod exposure;
 pub mod field;
 pub mod height;
 pub mod profile;
-pub mod reach_table;
 pub mod sphere;
 pub mod structure;
 pub mod track;

@@ -1,0 +1,109 @@
+//! How far one advisory's forecast may be wrong at each of its hours: the error table, seen from this storm.
+
+use crate::advisory::forecast::Advisory;
+use crate::arrival::errors::{ErrorTable, REACH_OF_THE_TABLE_NMI, WIND_OF_THE_TABLE_KT};
+use crate::wind::structure::Expected;
+
+/// Hours between the nodes at which errors are drawn; between them they are interpolated.
+const NODE_H: f64 = 12.0;
+
+/// Bounds of the greatest wind (kt) and of the gale reach (n mi) by which deviations are scaled. Our choice: beyond them too few
+/// storms were seen.
+const WINDS_KT: (f64, f64) = (25.0, 130.0);
+const REACHES_NMI: (f64, f64) = (30.0, 250.0);
+
+/// No centre is known better than this (n mi), whatever is stated. Our choice.
+const LEAST_ACCURACY_NMI: f64 = 5.0;
+
+/// Error sizes of one advisory by hours after issue.
+#[derive(Debug)]
+pub struct Spread<'a> {
+    table: &'a ErrorTable,
+    lead_at_issue_h: f64,
+    /// The stated accuracy as a multiple of the usual one.
+    accuracy: f64,
+    widening: [f64; 4],
+}
+
+impl<'a> Spread<'a> {
+    /// The sizes for an advisory.
+    #[must_use]
+    pub fn of(advisory: &Advisory, table: &'a ErrorTable) -> Spread<'a> {
+        let mut widening = [1.0; 4];
+        for assumption in &advisory.assumed {
+            let by = assumption.widens;
+            for (factor, own) in widening.iter_mut().zip([by.track, by.track, by.intensity, by.size]) {
+                *factor *= own.max(1.0);
+            }
+        }
+        let usual = table.settings().accuracy_usual_nmi;
+        let accuracy = advisory.accuracy.map_or(1.0, |stated| stated.get().max(LEAST_ACCURACY_NMI) / usual);
+        let lead_at_issue_h = (advisory.issued - advisory.base).num_seconds().max(0) as f64 / 3600.0;
+        Spread { table, lead_at_issue_h, accuracy, widening }
+    }
+
+    /// Deviations and means of the errors at an hour for which `expected` is forecast.
+    ///
+    /// deviation = table x (V / 60 kt)^w x (a / usual)^(p (1 - lead / fade)) for the centre, V the forecast wind, a the stated accuracy;
+    /// table x (V / 60 kt)^w for the intensity; table x (R / 100 n mi)^r for the size, R the forecast gale reach.
+    /// mean = bias + pull x (60 kt - V) for the intensity, bias - pull x ln(ratio) for the size, ratio that of the storm's reach to a
+    /// mean storm's.
+    #[must_use]
+    pub fn at(&self, hour: f64, expected: &Expected) -> ([f64; 6], [f64; 6]) {
+        let lead = hour + self.lead_at_issue_h;
+        let (row, settings) = (self.table.at(lead), self.table.settings());
+        let wind = expected.wind_kt.clamp(WINDS_KT.0, WINDS_KT.1) / WIND_OF_THE_TABLE_KT;
+        let reach = expected.gale_nmi().clamp(REACHES_NMI.0, REACHES_NMI.1) / REACH_OF_THE_TABLE_NMI;
+        let fading = (1.0 - lead / settings.accuracy_fades_h).clamp(0.0, 1.0);
+        let mut deviation = row.deviation;
+        for (i, own) in deviation.iter_mut().enumerate() {
+            let of = if i == 3 { reach } else { wind };
+            let centre = if i < 2 { libm::pow(self.accuracy, settings.accuracy_power * fading) } else { 1.0 };
+            *own *= libm::pow(of, settings.scaling[i]) * centre * self.widening[i];
+        }
+        let mut bias = row.bias;
+        bias[2] += row.pull[0] * (WIND_OF_THE_TABLE_KT - expected.wind_kt);
+        bias[3] -= row.pull[1] * libm::log(expected.mean_gale_ratio);
+        let [along, cross, intensity, size] = deviation;
+        let lopsided = row.lopsided;
+        ([along, cross, intensity, size, lopsided, lopsided], [bias[0], bias[1], bias[2], bias[3], 0.0, 0.0])
+    }
+
+    /// How far radii follow the strength.
+    #[must_use]
+    pub fn size_follows_intensity(&self) -> f64 {
+        self.table.settings().size_follows_intensity
+    }
+
+    /// Serial correlations at the nodes of a forecast of `end_h` hours.
+    #[must_use]
+    pub fn serial(&self, end_h: f64) -> Vec<[f64; 6]> {
+        let last = f64::ceil((end_h + self.lead_at_issue_h) / NODE_H).max(0.0) as usize;
+        let at = |node: usize| {
+            let row = self.table.at(node as f64 * NODE_H);
+            let [along, cross, intensity, size] = row.serial;
+            [along, cross, intensity, size, row.lopsided_serial, row.lopsided_serial]
+        };
+        (0..=last + 1).map(at).collect()
+    }
+
+    /// The node at or before an hour, and how far the hour lies on the way to the next node, 0..1.
+    #[must_use]
+    pub fn node(&self, hour: f64) -> (usize, f64) {
+        let position = (hour + self.lead_at_issue_h) / NODE_H;
+        let node = f64::floor(position).max(0.0);
+        (node as usize, position - node)
+    }
+
+    /// The weights of the nodes before and after an hour.
+    ///
+    /// z = ((1 - s) z0 + s z1) / sqrt((1 - s)^2 + s^2 + 2 s (1 - s) phi): without the root the variance would
+    /// dip between nodes.
+    #[must_use]
+    pub fn weights(&self, hour: f64, serial: &[[f64; 6]]) -> [[f64; 6]; 2] {
+        let (node, s) = self.node(hour);
+        let phi = serial.get(node + 1).copied().unwrap_or([1.0; 6]);
+        let norm = phi.map(|phi| f64::sqrt((1.0 - s) * (1.0 - s) + s * s + 2.0 * s * (1.0 - s) * phi));
+        [norm.map(|norm| (1.0 - s) / norm), norm.map(|norm| s / norm)]
+    }
+}
