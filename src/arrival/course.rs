@@ -44,11 +44,11 @@ pub struct Step {
     pub cross: Vector,
     /// What the standard errors at the node at or before are multiplied with: deviation, widened by what was
     /// assumed, times the node's weight; the weights keep a variance of one.
-    pub from_node: [f64; 6],
+    pub from_node: [f64; 4],
     /// The same for the node after.
-    pub from_next: [f64; 6],
+    pub from_next: [f64; 4],
     /// Means of the errors.
-    pub bias: [f64; 6],
+    pub bias: [f64; 4],
     /// The error node at or before.
     pub node: usize,
 }
@@ -67,7 +67,7 @@ pub struct Course {
     /// Index of the step at the end of the forecast.
     pub end: usize,
     /// Correlation of each component's error at a node with that at the node before; the first is unused.
-    pub serial: Vec<[f64; 6]>,
+    pub serial: Vec<[f64; 4]>,
     /// Correlation of intensity and size innovations.
     pub intensity_with_size: f64,
     /// Issue time.
@@ -224,7 +224,7 @@ struct Forecast<'a> {
 }
 
 impl Forecast<'_> {
-    fn steps(&self, minutes: &[i64], end_minute: f64, serial: &[[f64; 6]]) -> (Vec<Step>, Vec<Expected>) {
+    fn steps(&self, minutes: &[i64], end_minute: f64, serial: &[[f64; 4]]) -> (Vec<Step>, Vec<Expected>) {
         let mut heading: Option<Vector> = None;
         let mut steps = Vec::with_capacity(minutes.len());
         let mut storms = Vec::with_capacity(minutes.len());
@@ -277,7 +277,7 @@ impl Forecast<'_> {
     }
 }
 
-fn times(a: [f64; 6], b: [f64; 6]) -> [f64; 6] {
+fn times(a: [f64; 4], b: [f64; 4]) -> [f64; 4] {
     std::array::from_fn(|i| a[i] * b[i])
 }
 

@@ -105,8 +105,8 @@ impl fmt::Display for Basin {
     }
 }
 
-/// The errors at one lead time. Arrays hold along, cross (n mi), intensity (kt), size (natural logarithm of
-/// the radius), in the order of [`crate::arrival::keyed::Component::ALL`].
+/// The errors at one lead time. Arrays hold along, cross (n mi), intensity (kt), size (as a share of the
+/// radii), in the order of [`crate::arrival::keyed::Component::ALL`].
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct ErrorRow {
     /// Hours after the base time of the forecast.
@@ -118,13 +118,6 @@ pub struct ErrorRow {
     pub bias: [f64; 4],
     /// Correlation between the error 12 h earlier and the error at this lead; unused at lead 0.
     pub serial: [f64; 4],
-    /// For intensity and size, by which share a forecast's departure from a storm of 60 kt and from a mean storm of its strength does
-    /// not come true.
-    pub pull: [f64; 2],
-    /// Standard deviation of [`crate::wind::structure::Change::lopsided`], each way.
-    pub lopsided: f64,
-    /// Its correlation with that 12 h earlier.
-    pub lopsided_serial: f64,
 }
 
 /// The greatest wind (kt) and the mean reach of 34 kt (n mi) of the storms whose deviations stand in a table.
@@ -274,9 +267,6 @@ impl ErrorTable {
             deviation: mix(a.deviation, b.deviation).map(|d| d.max(0.0)),
             bias: mix(a.bias, b.bias),
             serial: if share > 0.0 { b.serial } else { a.serial },
-            lopsided: a.lopsided + (b.lopsided - a.lopsided) * share,
-            lopsided_serial: if share > 0.0 { b.lopsided_serial } else { a.lopsided_serial },
-            pull: [0, 1].map(|i| a.pull[i] + (b.pull[i] - a.pull[i]) * share),
         }
     }
 
@@ -294,15 +284,8 @@ impl ErrorTable {
 
 impl ErrorRow {
     /// No error at all: what the single track is made with.
-    pub const NONE: ErrorRow = ErrorRow {
-        lead_h: 0.0,
-        deviation: [0.0; 4],
-        bias: [0.0; 4],
-        serial: [0.0; 4],
-        pull: [0.0; 2],
-        lopsided: 0.0,
-        lopsided_serial: 0.0,
-    };
+    pub const NONE: ErrorRow =
+        ErrorRow { lead_h: 0.0, deviation: [0.0; 4], bias: [0.0; 4], serial: [0.0; 4] };
 
     fn check(&self) -> Result<(), TableError> {
         within("lead_h", self.lead_h, self.lead_h, LEAD_BOUNDS)?;
@@ -310,11 +293,6 @@ impl ErrorRow {
             for (column, value) in columns.iter().zip(values) {
                 within(column.name, self.lead_h, value, column.bounds)?;
             }
-        }
-        for (column, value) in
-            OPTIONAL.iter().zip([self.pull[0], self.pull[1], self.lopsided, self.lopsided_serial])
-        {
-            within(column.name, self.lead_h, value, column.bounds)?;
         }
         Ok(())
     }
@@ -339,13 +317,13 @@ pub const COLUMNS: [[Column; 4]; 3] = [
         Column { name: "along_nmi", bounds: (0.0, 3000.0) },
         Column { name: "cross_nmi", bounds: (0.0, 3000.0) },
         Column { name: "intensity_kt", bounds: (0.0, 200.0) },
-        Column { name: "size_log", bounds: (0.0, 3.0) },
+        Column { name: "size_share", bounds: (0.0, 3.0) },
     ],
     [
         Column { name: "along_bias_nmi", bounds: (-3000.0, 3000.0) },
         Column { name: "cross_bias_nmi", bounds: (-3000.0, 3000.0) },
         Column { name: "intensity_bias_kt", bounds: (-200.0, 200.0) },
-        Column { name: "size_bias_log", bounds: (-3.0, 3.0) },
+        Column { name: "size_bias_share", bounds: (-3.0, 3.0) },
     ],
     [
         Column { name: "along_serial", bounds: (0.0, 1.0) },
@@ -353,14 +331,6 @@ pub const COLUMNS: [[Column; 4]; 3] = [
         Column { name: "intensity_serial", bounds: (0.0, 1.0) },
         Column { name: "size_serial", bounds: (0.0, 1.0) },
     ],
-];
-
-/// Columns of [`ErrorRow::pull`], [`ErrorRow::lopsided`], [`ErrorRow::lopsided_serial`].
-pub const OPTIONAL: [Column; 4] = [
-    Column { name: "intensity_pull", bounds: (-1.0, 1.0) },
-    Column { name: "size_pull", bounds: (-1.0, 1.0) },
-    Column { name: "lopsided", bounds: (0.0, 2.0) },
-    Column { name: "lopsided_serial", bounds: (0.0, 1.0) },
 ];
 
 /// Keys of [`Settings::scaling`].

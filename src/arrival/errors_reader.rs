@@ -2,7 +2,7 @@
 
 use crate::arrival::errors::{
     ACCURACY_BOUNDS, Basin, COLUMNS, ErrorRow, ErrorTable, ErrorTables, FADING_BOUNDS, FOLLOWS_BOUNDS,
-    LEAD_BOUNDS, MUTUAL_BOUNDS, OPTIONAL, POWER_BOUNDS, RELAXATION_BOUNDS, SCALING, SCALING_BOUNDS, Settings,
+    LEAD_BOUNDS, MUTUAL_BOUNDS, POWER_BOUNDS, RELAXATION_BOUNDS, SCALING, SCALING_BOUNDS, Settings,
     is_within,
 };
 use crate::finding::fault::{Finding, nearest, sort_findings};
@@ -49,19 +49,15 @@ struct RawTable {
     along_nmi: Numbers,
     cross_nmi: Numbers,
     intensity_kt: Numbers,
-    size_log: Numbers,
+    size_share: Numbers,
     along_bias_nmi: Option<Numbers>,
     cross_bias_nmi: Option<Numbers>,
     intensity_bias_kt: Option<Numbers>,
-    size_bias_log: Option<Numbers>,
+    size_bias_share: Option<Numbers>,
     along_serial: Numbers,
     cross_serial: Numbers,
     intensity_serial: Numbers,
     size_serial: Numbers,
-    intensity_pull: Option<Numbers>,
-    size_pull: Option<Numbers>,
-    lopsided: Option<Numbers>,
-    lopsided_serial: Option<Numbers>,
 }
 
 /// Reads error tables.
@@ -159,8 +155,8 @@ impl Reader<'_> {
         let before = self.findings.len();
         let leads = self.numbers(&raw.lead_h, "lead_h", LEAD_BOUNDS);
         self.leads(&raw.lead_h);
-        let deviation = [&raw.along_nmi, &raw.cross_nmi, &raw.intensity_kt, &raw.size_log].map(Some);
-        let bias = [&raw.along_bias_nmi, &raw.cross_bias_nmi, &raw.intensity_bias_kt, &raw.size_bias_log]
+        let deviation = [&raw.along_nmi, &raw.cross_nmi, &raw.intensity_kt, &raw.size_share].map(Some);
+        let bias = [&raw.along_bias_nmi, &raw.cross_bias_nmi, &raw.intensity_bias_kt, &raw.size_bias_share]
             .map(Option::as_ref);
         let serial =
             [&raw.along_serial, &raw.cross_serial, &raw.intensity_serial, &raw.size_serial].map(Some);
@@ -176,22 +172,6 @@ impl Reader<'_> {
                     if let Some(cell) = kinds.into_iter().nth(kind).and_then(|c| c.get_mut(component)) {
                         *cell = value;
                     }
-                }
-            }
-        }
-        for (i, (column, numbers)) in OPTIONAL
-            .iter()
-            .zip([&raw.intensity_pull, &raw.size_pull, &raw.lopsided, &raw.lopsided_serial])
-            .enumerate()
-        {
-            let Some(numbers) = numbers else { continue };
-            let values = self.numbers(numbers, column.name, column.bounds);
-            self.length(numbers, column.name, leads.len());
-            for (row, value) in rows.iter_mut().zip(values) {
-                match i {
-                    0 | 1 => row.pull[i] = value,
-                    2 => row.lopsided = value,
-                    _ => row.lopsided_serial = value,
                 }
             }
         }

@@ -23,22 +23,12 @@ pub enum Component {
     Intensity,
     /// The wind radii.
     Size,
-    /// How much further winds reach in the north.
-    North,
-    /// How much further they reach in the east.
-    East,
 }
 
 impl Component {
-    /// All of them, in the order in which arrays hold them.
-    pub const ALL: [Component; 6] = [
-        Component::Along,
-        Component::Cross,
-        Component::Intensity,
-        Component::Size,
-        Component::North,
-        Component::East,
-    ];
+    /// All four, in the order in which arrays hold them.
+    pub const ALL: [Component; 4] =
+        [Component::Along, Component::Cross, Component::Intensity, Component::Size];
 
     /// Its place in such arrays.
     #[must_use]
@@ -48,8 +38,6 @@ impl Component {
             Component::Cross => 1,
             Component::Intensity => 2,
             Component::Size => 3,
-            Component::North => 4,
-            Component::East => 5,
         }
     }
 }

@@ -15,7 +15,7 @@ use std::cell::OnceCell;
 /// The innovations of one block of scenarios: for each node and component, one number for each scenario.
 #[derive(Clone, Debug)]
 pub struct Draws {
-    nodes: Vec<[Vec<f64>; 6]>,
+    nodes: Vec<[Vec<f64>; 4]>,
 }
 
 impl Draws {
@@ -29,11 +29,11 @@ impl Draws {
     }
 
     /// Standard errors at the nodes for the scenario `index` (counted over all blocks).
-    fn standard_errors(&self, course: &Course, index: usize, out: &mut Vec<[f64; 6]>) {
+    fn standard_errors(&self, course: &Course, index: usize, out: &mut Vec<[f64; 4]>) {
         out.clear();
-        let mut last = [0.0; 6];
+        let mut last = [0.0; 4];
         for (node, (serial, drawn)) in course.serial.iter().zip(&self.nodes).enumerate() {
-            let mut fresh = [0.0; 6];
+            let mut fresh = [0.0; 4];
             for (e, numbers) in fresh.iter_mut().zip(drawn) {
                 *e = numbers.get(index % BLOCK).copied().unwrap_or(0.0);
             }
@@ -59,13 +59,12 @@ struct State {
 }
 
 impl State {
-    fn of(step: &Step, storm: &Expected, [along, cross, intensity, size, north, east]: [f64; 6]) -> State {
+    fn of(step: &Step, storm: &Expected, [along, cross, intensity, size]: [f64; 4]) -> State {
         State {
             centre: displaced(step.centre, step.along, step.cross, along, cross),
             change: Change {
                 wind_kt: (storm.wind_kt + intensity).clamp(0.0, 250.0),
                 size: (1.0 + size).max(LEAST_SIZE),
-                lopsided: [north, east],
             },
         }
     }
@@ -93,7 +92,7 @@ struct Stop {
 #[derive(Clone, Debug, Default)]
 pub struct Scenario {
     /// Standard errors at the nodes; none for the forecast's own track.
-    errors: Vec<[f64; 6]>,
+    errors: Vec<[f64; 4]>,
     stops: Vec<Stop>,
     /// The greatest bound of the reach of 34 kt, and the longest way from stop to stop, in radians.
     widest: f64,
@@ -115,12 +114,12 @@ impl Scenario {
     }
 
     /// The errors along, across, in intensity and size at a step.
-    fn error(&self, step: &Step) -> [f64; 6] {
+    fn error(&self, step: &Step) -> [f64; 4] {
         match (self.errors.get(step.node), self.errors.get(step.node + 1)) {
             (Some(now), Some(next)) => std::array::from_fn(|i| {
                 step.from_node[i] * now[i] + step.from_next[i] * next[i] + step.bias[i]
             }),
-            _ => [0.0; 6],
+            _ => [0.0; 4],
         }
     }
 

@@ -44,12 +44,11 @@ impl<'a> Spread<'a> {
 
     /// Deviations and means of the errors at an hour for which `expected` is forecast.
     ///
-    /// deviation = table x (V / 60 kt)^w x (a / usual)^(p (1 - lead / fade)) for the centre, V the forecast wind, a the stated accuracy;
-    /// table x (V / 60 kt)^w for the intensity; table x (R / 100 n mi)^r for the size, R the forecast gale reach.
-    /// mean = bias + pull x (60 kt - V) for the intensity, bias - pull x ln(ratio) for the size, ratio that of the storm's reach to a
-    /// mean storm's.
+    /// * centre: table x (V / 60 kt)^w x (a / a_usual)^(p (1 - lead / fade)), V the forecast wind, a the stated accuracy;
+    /// * intensity: table x (V / 60 kt)^w;
+    /// * size: table x (R / 100 n mi)^r, R the forecast reach of gales.
     #[must_use]
-    pub fn at(&self, hour: f64, expected: &Expected) -> ([f64; 6], [f64; 6]) {
+    pub fn at(&self, hour: f64, expected: &Expected) -> ([f64; 4], [f64; 4]) {
         let lead = hour + self.lead_at_issue_h;
         let (row, settings) = (self.table.at(lead), self.table.settings());
         let wind = expected.wind_kt.clamp(WINDS_KT.0, WINDS_KT.1) / WIND_OF_THE_TABLE_KT;
@@ -61,12 +60,7 @@ impl<'a> Spread<'a> {
             let centre = if i < 2 { libm::pow(self.accuracy, settings.accuracy_power * fading) } else { 1.0 };
             *own *= libm::pow(of, settings.scaling[i]) * centre * self.widening[i];
         }
-        let mut bias = row.bias;
-        bias[2] += row.pull[0] * (WIND_OF_THE_TABLE_KT - expected.wind_kt);
-        bias[3] -= row.pull[1] * libm::log(expected.mean_gale_ratio);
-        let [along, cross, intensity, size] = deviation;
-        let lopsided = row.lopsided;
-        ([along, cross, intensity, size, lopsided, lopsided], [bias[0], bias[1], bias[2], bias[3], 0.0, 0.0])
+        (deviation, row.bias)
     }
 
     /// How far radii follow the strength.
@@ -77,14 +71,9 @@ impl<'a> Spread<'a> {
 
     /// Serial correlations at the nodes of a forecast of `end_h` hours.
     #[must_use]
-    pub fn serial(&self, end_h: f64) -> Vec<[f64; 6]> {
+    pub fn serial(&self, end_h: f64) -> Vec<[f64; 4]> {
         let last = f64::ceil((end_h + self.lead_at_issue_h) / NODE_H).max(0.0) as usize;
-        let at = |node: usize| {
-            let row = self.table.at(node as f64 * NODE_H);
-            let [along, cross, intensity, size] = row.serial;
-            [along, cross, intensity, size, row.lopsided_serial, row.lopsided_serial]
-        };
-        (0..=last + 1).map(at).collect()
+        (0..=last + 1).map(|node| self.table.at(node as f64 * NODE_H).serial).collect()
     }
 
     /// The node at or before an hour, and how far the hour lies on the way to the next node, 0..1.
@@ -100,9 +89,9 @@ impl<'a> Spread<'a> {
     /// z = ((1 - s) z0 + s z1) / sqrt((1 - s)^2 + s^2 + 2 s (1 - s) phi): without the root the variance would
     /// dip between nodes.
     #[must_use]
-    pub fn weights(&self, hour: f64, serial: &[[f64; 6]]) -> [[f64; 6]; 2] {
+    pub fn weights(&self, hour: f64, serial: &[[f64; 4]]) -> [[f64; 4]; 2] {
         let (node, s) = self.node(hour);
-        let phi = serial.get(node + 1).copied().unwrap_or([1.0; 6]);
+        let phi = serial.get(node + 1).copied().unwrap_or([1.0; 4]);
         let norm = phi.map(|phi| f64::sqrt((1.0 - s) * (1.0 - s) + s * s + 2.0 * s * (1.0 - s) * phi));
         [norm.map(|norm| (1.0 - s) / norm), norm.map(|norm| s / norm)]
     }

@@ -127,8 +127,6 @@ pub struct Change {
     pub wind_kt: f64,
     /// Reach as a multiple of what the forecast says for that wind.
     pub size: f64,
-    /// How far the winds reach further on the north and on the east side, as a share of the mean reach in a storm that just has the wind.
-    pub lopsided: [f64; 2],
 }
 
 impl Expected {
@@ -160,38 +158,30 @@ impl Expected {
     /// A bound of the reach of 34 kt in any quadrant, n mi.
     #[must_use]
     pub fn bound_nmi(&self, change: &Change) -> f64 {
-        let share = 34.0 / change.wind_kt.max(34.0);
-        let [north, east] = change.lopsided;
         let widest = self.shapes[0].into_iter().fold(1.0, f64::max);
-        // To keep the mean, quadrants cut off at zero narrow the others: never the other way.
-        let widest = widest + (north.abs() + east.abs()) * tilt_in(share);
+        let share = 34.0 / change.wind_kt.max(34.0);
         widest * change.size * self.base_nmi[0] * growth(share, self.follows)
     }
 
     /// The reach in n mi of the three given speeds.
     ///
-    /// R = size x R_f x g(u / V) / g(u / V_f) x shape, u the given speed, V the realised and V_f the forecast wind (u, if it is below);
-    /// zero where V is below u. g is [`growth`]. Shape is the forecast quadrant over the mean of the four; as the storm grows stronger
-    /// than forecast, quadrants below the mean come up to it; to them (u / V)^2.5 of the lopsidedness is added, what falls below zero is
-    /// cut off, and the mean is kept.
+    /// R = size x R_f x g(u / V) / g(u / V_f), u the given speed, R_f the forecast reach, V the realised and V_f the forecast wind (u, if
+    /// it is below); zero where V is below u. g is [`growth`]. As the storm grows stronger than forecast, quadrants below the storm's mean
+    /// come up to it.
     #[must_use]
     pub fn reach(&self, change: &Change) -> [[f64; 4]; 3] {
         let stronger = ((change.wind_kt - self.wind_kt) / FILLED_AT_KT).clamp(0.0, 1.0);
-        let [north, east] = change.lopsided;
-        let tilt = [north + east, east - north, -north - east, north - east];
         let mut reach = [[0.0; 4]; 3];
         let mut outside = [f64::INFINITY; 4];
         for (i, (out, speed)) in reach.iter_mut().zip(GIVEN_SPEEDS_KT).enumerate() {
             if change.wind_kt < speed {
                 break;
             }
-            let share = speed / change.wind_kt;
-            let filled = pairwise(self.shapes[i], self.lacks[i], |shape, lacks| shape + stronger * lacks);
-            let cut = pairwise(filled, tilt, |shape, tilt| (shape + tilt_in(share) * tilt).max(0.0));
-            let sum = |row: [f64; 4]| row[0] + row[1] + row[2] + row[3];
-            let scale = change.size * self.base_nmi[i] * growth(share, self.follows) * sum(filled) / sum(cut);
+            let scale = change.size * self.base_nmi[i] * growth(speed / change.wind_kt, self.follows);
+            let filled =
+                pairwise(self.shapes[i], self.lacks[i], |shape, lacks| (shape + stronger * lacks) * scale);
             // A stronger wind never reaches beyond a weaker one.
-            *out = pairwise(cut, outside, |shape, outside| f64::min(shape * scale, outside));
+            *out = pairwise(filled, outside, f64::min);
             outside = *out;
         }
         reach
@@ -207,14 +197,6 @@ fn growth(share: f64, follows: f64) -> f64 {
     1.0 - follows * share * share * share
 }
 
-/// How far the lopsidedness of a storm that just has a wind shows in one in which it is the share `u / V` of the greatest: (u / V)^2.5, times
-/// cos 45 degrees, as quadrants point half way between north and east.
-///
-/// Measured at 24 h in storms of 35, 40, 45, 50, 60, 72, 90 kt: 0.76, 0.56, 0.48, 0.36, 0.23, 0.18, 0.13 of the mean reach (data as above).
-fn tilt_in(share: f64) -> f64 {
-    share * share * f64::sqrt(share) * std::f64::consts::FRAC_1_SQRT_2
-}
-
 #[cfg(test)]
 mod tests {
     use super::{Change, Expected, Structure};
@@ -225,7 +207,7 @@ mod tests {
     }
 
     fn to(wind_kt: f64) -> Change {
-        Change { wind_kt, size: 1.0, lopsided: [0.0; 2] }
+        Change { wind_kt, size: 1.0 }
     }
 
     #[test]
