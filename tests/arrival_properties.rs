@@ -11,7 +11,7 @@ use snugdown::arrival::errors::{ErrorRow, ErrorTable};
 use snugdown::arrival::odds::{Answer, Answers, Draw, LEAST_ONSETS, Quantile, ask, ask_on};
 use snugdown::arrival::onset::Onset;
 use snugdown::arrival::question::Question;
-use snugdown::geo::position::Position;
+use snugdown::geo::position::{Position, wrap_longitude};
 use snugdown::time::moment::{Minutes, Moment};
 use snugdown::units::chance::Chance;
 use snugdown::units::speed::Knots;
@@ -144,16 +144,28 @@ fn mirrored(storm: &Advisory) -> Advisory {
     Advisory { points, ..storm.clone() }
 }
 
+/// The made-up forecast and its questions, moved west: in the open Pacific no land is near, on either side of the equator and
+/// of the date line, as land would tell the two apart.
+fn in_open_sea(west: f64) -> (Advisory, Vec<Question>) {
+    let shift = |p: Position| Position::new(p.latitude(), wrap_longitude(p.longitude() - west)).unwrap();
+    let mut storm = full_forecast();
+    for p in &mut storm.points {
+        p.position = shift(p.position);
+    }
+    let moved = questions().into_iter().map(|q| Question { position: shift(q.position), ..q }).collect();
+    (storm, moved)
+}
+
 #[test]
 fn a_mirrored_storm_has_the_same_odds_to_the_byte_and_mirrored_winds() {
-    let north = full_forecast();
+    let (north, asked) = in_open_sea(70.0);
     let south = mirrored(&north);
     let table = shipped().for_advisory(&north);
-    let flipped: Vec<Question> = questions()
-        .into_iter()
-        .map(|q| Question { position: at(-q.position.latitude(), q.position.longitude()), ..q })
+    let flipped: Vec<Question> = asked
+        .iter()
+        .map(|q| Question { position: at(-q.position.latitude(), q.position.longitude()), ..q.clone() })
         .collect();
-    let up = ask(&north, &table, &questions(), Draw::default());
+    let up = ask(&north, &table, &asked, Draw::default());
     let down = ask(&south, &table, &flipped, Draw::default());
     let mut directions = 0;
     for (a, b) in up.answers.iter().zip(&down.answers) {
@@ -172,16 +184,10 @@ fn a_mirrored_storm_has_the_same_odds_to_the_byte_and_mirrored_winds() {
 
 #[test]
 fn the_date_line_is_no_seam() {
-    let shift = |p: Position| Position::new(p.latitude(), p.longitude() - 113.0).unwrap();
-    let here = full_forecast();
-    let mut there = here.clone();
-    for p in &mut there.points {
-        p.position = shift(p.position);
-    }
-    let moved: Vec<Question> =
-        questions().into_iter().map(|q| Question { position: shift(q.position), ..q }).collect();
+    let (here, asked) = in_open_sea(70.0);
+    let (there, moved) = in_open_sea(113.0);
     let table = shipped().for_advisory(&here);
-    let a = ask(&here, &table, &questions(), Draw::default());
+    let a = ask(&here, &table, &asked, Draw::default());
     let b = ask(&there, &table, &moved, Draw::default());
     for (x, y) in a.answers.iter().zip(&b.answers) {
         assert_eq!(x.onsets.len(), y.onsets.len());

@@ -11,6 +11,8 @@
 
 pub mod advisories;
 pub mod best_track;
+pub mod cases;
+pub mod fitted;
 pub mod matched;
 pub mod official;
 pub mod table;

@@ -10,10 +10,12 @@ pub fn table(rows: &[Row]) -> Table {
         "by (h)",
         "rows",
         "came",
+        "told",
         "ours",
         "official",
         "recalibrated",
         "single track",
+        "told / official",
         "ours / official",
         "ours / recalibrated",
         "ours / single",
@@ -31,7 +33,9 @@ fn line(name: &str, rows: &[Row], leads: &[usize]) -> Vec<String> {
     let square = |row: &Row, teller| {
         leads
             .iter()
-            .map(|i| (row.told(teller, *i) - row.happened(*i)) * (row.told(teller, *i) - row.happened(*i)))
+            .map(|i| {
+                (row.chance(teller, *i) - row.happened(*i)) * (row.chance(teller, *i) - row.happened(*i))
+            })
             .sum::<f64>()
     };
     let mean =
@@ -39,9 +43,11 @@ fn line(name: &str, rows: &[Row], leads: &[usize]) -> Vec<String> {
     let came: f64 = rows.iter().map(|row| leads.iter().map(|i| row.happened(*i)).sum::<f64>()).sum();
     let mut cells = vec![name.to_owned(), (rows.len() * leads.len()).to_string(), came.to_string()];
     cells.extend(
-        [Teller::Ours, Teller::Official, Teller::Recalibrated, Teller::Single]
+        [Teller::Told, Teller::Ours, Teller::Official, Teller::Recalibrated, Teller::Single]
             .map(|t| format!("{:.4}", mean(t))),
     );
+    let sums = Sums::of(rows, |row| Some([square(row, Teller::Told), square(row, Teller::Official)]));
+    cells.push(with_interval(sums.ratio(), sums.interval(), 3));
     for other in [Teller::Official, Teller::Recalibrated, Teller::Single] {
         let sums = Sums::of(rows, |row| Some([square(row, Teller::Ours), square(row, other)]));
         cells.push(with_interval(sums.ratio(), sums.interval(), 3));

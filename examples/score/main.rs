@@ -19,6 +19,7 @@ mod resampled;
 
 use archive::Archive;
 use reckoned::Row;
+use snugdown::advisory::forecast::Advisory;
 use snugdown::arrival::errors::ErrorTables;
 use snugdown::arrival::errors_reader::read_error_tables;
 use snugdown::cli::load::shipped_tables;
@@ -62,7 +63,9 @@ fn main() {
     let tables = tables(asked.table.as_deref());
     let mut rows: Vec<Row> = Vec::new();
     for season in archive.seasons() {
-        rows.extend(reckoned::rows(&archive, &season, &tables));
+        let left_out = asked.leaves_out_season.then(|| archive::fitted::table(&archive, Some(&season)));
+        let table = |advisory: &Advisory| left_out.clone().unwrap_or_else(|| tables.for_advisory(advisory));
+        rows.extend(reckoned::rows(&archive, &season, table));
     }
     let seasons = archive.seasons();
     recalibrated::fill(&mut rows, &seasons);

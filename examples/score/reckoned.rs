@@ -5,7 +5,8 @@ use crate::archive::advisories::Entry;
 use crate::archive::best_track::There;
 use crate::archive::official::{LEADS_H, OfficialOdds};
 use chrono::{DateTime, TimeDelta, Utc};
-use snugdown::arrival::errors::ErrorTables;
+use snugdown::advisory::forecast::Advisory;
+use snugdown::arrival::errors::ErrorTable;
 use snugdown::arrival::odds::{Answer, Draw, ask};
 use snugdown::arrival::question::{Question, Sought};
 use snugdown::time::moment::{Minutes, Moment};
@@ -17,7 +18,9 @@ use std::fmt::Write;
 /// Who told.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Teller {
-    /// This program.
+    /// This program, to whoever does not see whether the wind blows at issue.
+    Told,
+    /// This program, given that the wind does not blow at issue, as in all rows that count.
     Ours,
     /// The office.
     Official,
@@ -42,6 +45,8 @@ pub struct Row {
     /// End of the forecast, hours after issue.
     pub end_h: f64,
     /// Chances by [`LEADS_H`].
+    pub told: [f64; 7],
+    /// Chances by [`LEADS_H`].
     pub ours: [f64; 7],
     /// Chances by [`LEADS_H`].
     pub official: [f64; 7],
@@ -60,8 +65,9 @@ impl Row {
     }
 
     /// What a teller said about lead number `i`.
-    pub fn told(&self, teller: Teller, i: usize) -> f64 {
+    pub fn chance(&self, teller: Teller, i: usize) -> f64 {
         match teller {
+            Teller::Told => self.told[i],
             Teller::Ours => self.ours[i],
             Teller::Official => self.official[i],
             Teller::Recalibrated => self.recalibrated[i],
@@ -76,16 +82,21 @@ impl Row {
 }
 
 /// The rows of a season's Atlantic storms.
-pub fn rows(archive: &Archive, season: &str, tables: &ErrorTables) -> Vec<Row> {
+pub fn rows(archive: &Archive, season: &str, table: impl Fn(&Advisory) -> ErrorTable) -> Vec<Row> {
     let atlantic = |entry: &&Entry| entry.key.starts_with("AL") && entry.season() == season;
-    archive.entries.iter().filter(atlantic).flat_map(|entry| rows_of(archive, entry, tables)).collect()
+    archive
+        .entries
+        .iter()
+        .filter(atlantic)
+        .flat_map(|entry| rows_of(archive, entry, &table(&entry.advisory)))
+        .collect()
 }
 
 fn hours(from: DateTime<Utc>, to: DateTime<Utc>) -> f64 {
     (to - from).num_seconds() as f64 / 3600.0
 }
 
-fn rows_of(archive: &Archive, entry: &Entry, tables: &ErrorTables) -> Vec<Row> {
+fn rows_of(archive: &Archive, entry: &Entry, table: &ErrorTable) -> Vec<Row> {
     let key = (entry.key.clone(), entry.issued.clone());
     let (Some(official), Some(track)) = (archive.official.get(&key), archive.tracks.get(&entry.key)) else {
         return Vec::new();
@@ -112,8 +123,7 @@ fn rows_of(archive: &Archive, entry: &Entry, tables: &ErrorTables) -> Vec<Row> {
     if questions.is_empty() {
         return Vec::new();
     }
-    let answers =
-        ask(advisory, &tables.for_advisory(advisory), &questions, Draw { scenarios: 1000, most: 1000 });
+    let answers = ask(advisory, table, &questions, Draw { scenarios: 1000, most: 1000 });
     asked
         .iter()
         .zip(&answers.answers)
@@ -138,7 +148,8 @@ fn row(entry: &Entry, odds: &OfficialOdds, onset_h: Option<f64>, answer: &Answer
         onset_h,
         age_h: hours(advisory.base, advisory.issued),
         end_h: after_issue(answer.forecast_end),
-        ours: by.map(|t| answer.chance_by(t).get()),
+        told: by.map(|t| answer.chance_by(t).get()),
+        ours: by.map(|t| answer.chance_by_unless_there(t).get()),
         official: odds.chances,
         recalibrated: odds.chances,
         single: by.map(|t| f64::from(answer.single_track.is_some_and(|onset| onset <= t))),
@@ -149,7 +160,7 @@ fn row(entry: &Entry, odds: &OfficialOdds, onset_h: Option<f64>, answer: &Answer
 /// All rows as a table.
 pub fn csv(rows: &[Row]) -> String {
     let mut text = String::from("storm,issued,site,age_h,end_h,onset_h,earliest_h,likely_h,latest_h");
-    for teller in ["ours", "official", "recalibrated", "single"] {
+    for teller in ["told", "ours", "official", "recalibrated", "single"] {
         for lead in LEADS_H {
             write!(text, ",{teller}_{lead}").unwrap();
         }
@@ -162,9 +173,9 @@ pub fn csv(rows: &[Row]) -> String {
         for i in 0..3 {
             write!(text, ",{}", number(row.quantiles_h.map(|quantiles| quantiles[i]))).unwrap();
         }
-        for teller in [Teller::Ours, Teller::Official, Teller::Recalibrated, Teller::Single] {
+        for teller in [Teller::Told, Teller::Ours, Teller::Official, Teller::Recalibrated, Teller::Single] {
             for i in 0..7 {
-                write!(text, ",{:.4}", row.told(teller, i)).unwrap();
+                write!(text, ",{:.4}", row.chance(teller, i)).unwrap();
             }
         }
         text.push('\n');

@@ -36,7 +36,7 @@ pub fn table(rows: &[Row]) -> Table {
 
 fn line(rows: &[Row], i: usize, [low, high]: [f64; 2]) -> Option<Vec<String>> {
     let is_in = |row: &Row| {
-        let percent = 100.0 * row.told(Teller::Ours, i);
+        let percent = 100.0 * row.chance(Teller::Ours, i);
         percent >= low && percent < high
     };
     let within: Vec<&Row> = rows.iter().filter(|row| is_in(row)).collect();
@@ -50,7 +50,7 @@ fn line(rows: &[Row], i: usize, [low, high]: [f64; 2]) -> Option<Vec<String>> {
         100.0 * within.iter().map(|row| of(row)).sum::<f64>() / within.len() as f64
     };
     let sums = Sums::of(rows, |row| {
-        is_in(row).then(|| [100.0 * (row.happened(i) - row.told(Teller::Ours, i)), 1.0])
+        is_in(row).then(|| [100.0 * (row.happened(i) - row.chance(Teller::Ours, i)), 1.0])
     });
     let interval = sums.interval();
     let is_off = storms.len() >= ENOUGH_STORMS && (interval[0] > 0.0 || interval[1] < 0.0);
@@ -59,7 +59,7 @@ fn line(rows: &[Row], i: usize, [low, high]: [f64; 2]) -> Option<Vec<String>> {
         format!("{low:.0} to {:.0}", high.min(100.0)),
         within.len().to_string(),
         storms.len().to_string(),
-        format!("{:.1}", mean(&|row| row.told(Teller::Ours, i))),
+        format!("{:.1}", mean(&|row| row.chance(Teller::Ours, i))),
         format!("{:.1}", mean(&|row| row.happened(i))),
         with_interval(sums.ratio(), interval, 1),
         if is_off { "off" } else { "" }.to_owned(),

@@ -6,22 +6,17 @@
 //! odds to the byte.
 
 use crate::advisory::forecast::{Advisory, Ending, ForecastPoint, Motion, Quadrants, Reach, WindRadii};
-use crate::advisory::own_spread::TrackDeviation;
 use crate::arrival::errors::ErrorTable;
-use crate::arrival::own_track::own_factor;
+use crate::arrival::landfall::{Landfall, Waypoint};
+use crate::arrival::spread::Spread;
 use crate::geo::position::Position;
 use crate::time::moment::Moment;
 use crate::units::speed::Knots;
-use crate::wind::climatology::{radius_of_greatest_wind_nmi, reach_nmi};
 use crate::wind::field::Hemisphere;
-use crate::wind::reach_table::ReachTable;
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, dot, east_and_north, normalised, plus, vector_of};
 use crate::wind::structure::{Expected, Structure};
 use crate::wind::track::Track;
 use chrono::{DateTime, Utc};
-
-/// Hours between the nodes at which errors are drawn; between them they are interpolated.
-pub const NODE_H: f64 = 12.0;
 
 /// Hours from stop to stop. Our choice: with it one onset in ten thousand is missed that every hour would show, as
 /// a wind may come and go within them; see `arrival::onset`.
@@ -59,32 +54,6 @@ pub struct Step {
     pub node: usize,
 }
 
-/// The forecast's strength and size at one time.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Storm {
-    /// Reach of the winds for any strength.
-    pub table: ReachTable,
-    /// Upper bounds of the reach of 34 kt or the core (n mi, before the size error) for storms of up to 35,
-    /// 40, ... 90 kt.
-    bounds: [f64; BOUNDS],
-}
-
-const BOUNDS: usize = 12;
-
-impl Storm {
-    fn of(expected: Expected) -> Storm {
-        Storm { bounds: bounds(&expected), table: ReachTable::of(expected) }
-    }
-
-    /// A bound of the reach of 34 kt, or of the core if that is wider, for a storm of `wind_kt` before its
-    /// size error. Much cheaper than the reach itself, it keeps far places out of the inner loop.
-    #[must_use]
-    pub fn bound_nmi(&self, wind_kt: f64) -> f64 {
-        let class = ((wind_kt - 30.0).max(0.0) / 5.0) as usize;
-        self.bounds[class.min(BOUNDS - 1)]
-    }
-}
-
 /// A forecast ready for scenarios.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Course {
@@ -92,7 +61,7 @@ pub struct Course {
     /// only).
     pub steps: Vec<Step>,
     /// Forecast strength and size at each step.
-    pub storms: Vec<Storm>,
+    pub storms: Vec<Expected>,
     /// Steps from one of which to the next a place is followed at a stride, rising: the first, every third, the end
     /// of the forecast, every third after it, the last.
     pub stops: Vec<usize>,
@@ -110,6 +79,8 @@ pub struct Course {
     pub hemisphere: Hemisphere,
     /// What was assumed about the storm, in words.
     pub notes: Vec<String>,
+    /// Land near the forecast's way; `None` if there is none.
+    pub land: Option<Landfall>,
 }
 
 impl Course {
@@ -131,7 +102,7 @@ impl Course {
             track: Track::through(&fixes)?,
             winds,
             structure,
-            errors: Errors::new(advisory, table),
+            spread: Spread::of(advisory, table),
             first_heading: first_heading(advisory, hemisphere),
         };
         let forecast_end = Moment::at_or_before(northern.last_valid()).max(issued);
@@ -143,10 +114,10 @@ impl Course {
             minutes.extend((1..=LOOK_AHEAD_H as i64).map(|hour| end_minute + 60 * hour));
         }
         let notes = notes(&forecast.structure, issued, forecast_end);
-        let serial = forecast.errors.serial(end_minute as f64 / 60.0);
+        let serial = forecast.spread.serial(end_minute as f64 / 60.0);
         let (steps, storms) = forecast.steps(&minutes, end_minute as f64, &serial);
         let stops = stops(end, steps.len());
-        Some(Course {
+        let course = Course {
             steps,
             storms,
             stops,
@@ -157,7 +128,26 @@ impl Course {
             forecast_end,
             hemisphere,
             notes,
-        })
+            land: None,
+        };
+        let land = course.near_land();
+        Some(Course { land, ..course })
+    }
+
+    /// The land around the forecast's way, stop by stop up to its end.
+    fn near_land(&self) -> Option<Landfall> {
+        let stops = self.stops.iter().take_while(|k| **k <= self.end);
+        let there = stops.filter_map(|k| Some((self.steps.get(*k)?, self.storms.get(*k)?)));
+        let (way, winds): (Vec<Waypoint>, Vec<f64>) =
+            there.map(|(step, storm)| (self.waypoint(step, step.centre), storm.wind_kt)).unzip();
+        Landfall::of(&way, &winds)
+    }
+
+    /// A centre at a step as the map has it: on its own side of the equator.
+    #[must_use]
+    pub fn waypoint(&self, step: &Step, [x, y, z]: Vector) -> Waypoint {
+        let latitude = mirrored_latitude(libm::asin(z.clamp(-1.0, 1.0)).to_degrees(), self.hemisphere);
+        (step.minute / 60.0, latitude, libm::atan2(y, x).to_degrees())
     }
 
     /// A position as this course sees it.
@@ -247,84 +237,16 @@ fn first_heading(advisory: &Advisory, hemisphere: Hemisphere) -> f64 {
     }
 }
 
-/// Error sizes of one advisory by hours after issue.
-struct Errors<'a> {
-    table: &'a ErrorTable,
-    lead_at_issue_h: f64,
-    start_nmi: Option<f64>,
-    own: Vec<TrackDeviation>,
-    widening: [f64; 4],
-}
-
-impl<'a> Errors<'a> {
-    fn new(advisory: &Advisory, table: &'a ErrorTable) -> Errors<'a> {
-        let mut widening = [1.0; 4];
-        for assumption in &advisory.assumed {
-            let by = assumption.widens;
-            for (factor, own) in widening.iter_mut().zip([by.track, by.track, by.intensity, by.size]) {
-                *factor *= own.max(1.0);
-            }
-        }
-        let start_nmi = advisory.accuracy.map(|a| a.get() / table.settings().accuracy_divisor);
-        let lead_at_issue_h = hours_between(advisory.base, advisory.issued).max(0.0);
-        Errors { table, lead_at_issue_h, start_nmi, own: advisory.own_track_deviations(), widening }
-    }
-
-    /// Deviations and biases. The present centre's own accuracy replaces the table's at lead 0 and fades into
-    /// the next 12 h.
-    fn at(&self, hour: f64) -> ([f64; 4], [f64; 4]) {
-        let lead = hour + self.lead_at_issue_h;
-        let row = self.table.at(lead);
-        let mut deviation = row.deviation;
-        let own = own_factor(&self.own, self.table, lead);
-        deviation.iter_mut().take(2).for_each(|track| *track *= own);
-        if let Some(start) = self.start_nmi {
-            let fading = (1.0 - lead / NODE_H).clamp(0.0, 1.0);
-            let at_start = self.table.at(0.0).deviation;
-            for (own, table) in deviation.iter_mut().zip(at_start).take(2) {
-                *own += (start - table) * fading;
-            }
-        }
-        for (own, factor) in deviation.iter_mut().zip(self.widening) {
-            *own = own.max(0.0) * factor;
-        }
-        (deviation, row.bias)
-    }
-
-    fn serial(&self, end_h: f64) -> Vec<[f64; 4]> {
-        let last = f64::ceil((end_h + self.lead_at_issue_h) / NODE_H).max(0.0) as usize;
-        (0..=last + 1).map(|node| self.table.at(node as f64 * NODE_H).serial).collect()
-    }
-
-    /// The node at or before an hour, and how far the hour lies on the way to the next node, 0..1.
-    fn node(&self, hour: f64) -> (usize, f64) {
-        let position = (hour + self.lead_at_issue_h) / NODE_H;
-        let node = f64::floor(position).max(0.0);
-        (node as usize, position - node)
-    }
-
-    /// The weights of the nodes before and after an hour.
-    ///
-    /// z = ((1 - s) z0 + s z1) / sqrt((1 - s)^2 + s^2 + 2 s (1 - s) phi): without the root the variance would
-    /// dip between nodes.
-    fn weights(&self, hour: f64, serial: &[[f64; 4]]) -> [[f64; 4]; 2] {
-        let (node, s) = self.node(hour);
-        let phi = serial.get(node + 1).copied().unwrap_or([1.0; 4]);
-        let norm = phi.map(|phi| f64::sqrt((1.0 - s) * (1.0 - s) + s * s + 2.0 * s * (1.0 - s) * phi));
-        [norm.map(|norm| (1.0 - s) / norm), norm.map(|norm| s / norm)]
-    }
-}
-
 struct Forecast<'a> {
     track: Track,
     winds: Vec<(f64, f64)>,
     structure: Structure,
-    errors: Errors<'a>,
+    spread: Spread<'a>,
     first_heading: f64,
 }
 
 impl Forecast<'_> {
-    fn steps(&self, minutes: &[i64], end_minute: f64, serial: &[[f64; 4]]) -> (Vec<Step>, Vec<Storm>) {
+    fn steps(&self, minutes: &[i64], end_minute: f64, serial: &[[f64; 4]]) -> (Vec<Step>, Vec<Expected>) {
         let mut heading: Option<Vector> = None;
         let mut steps = Vec::with_capacity(minutes.len());
         let mut storms = Vec::with_capacity(minutes.len());
@@ -343,13 +265,13 @@ impl Forecast<'_> {
                 along[0] * centre[1] - along[1] * centre[0],
             ]);
             let ratios = self.structure.ratios_at(held);
-            let follows = self.errors.table.settings().size_follows_intensity;
+            let follows = self.spread.size_follows_intensity();
             let expected = Expected::new(linear_at(&self.winds, held), latitude, ratios, follows);
-            storms.push(Storm::of(expected));
-            let (deviation, bias) = self.errors.at(held);
+            let (deviation, bias) = self.spread.at(held, &expected);
+            storms.push(expected);
             let [from_node, from_next] =
-                self.errors.weights(held, serial).map(|weights| times(weights, deviation));
-            let (node, _) = self.errors.node(held);
+                self.spread.weights(held, serial).map(|weights| times(weights, deviation));
+            let (node, _) = self.spread.node(held);
             steps.push(Step { minute, centre, along, cross, from_node, from_next, bias, node });
         }
         (steps, storms)
@@ -378,7 +300,7 @@ impl Forecast<'_> {
 }
 
 fn times(a: [f64; 4], b: [f64; 4]) -> [f64; 4] {
-    [a[0] * b[0], a[1] * b[1], a[2] * b[2], a[3] * b[3]]
+    std::array::from_fn(|i| a[i] * b[i])
 }
 
 /// The stops of a course of `count` steps whose forecast ends with step `end`.
@@ -387,23 +309,6 @@ fn stops(end: usize, count: usize) -> Vec<usize> {
     let mut stops: Vec<usize> = (0..end).step_by(STRIDE).chain((end..last).step_by(STRIDE)).collect();
     stops.push(last);
     stops
-}
-
-fn bounds(expected: &Expected) -> [f64; BOUNDS] {
-    let latitude = expected.latitude;
-    let widest = expected.ratios[0].iter().copied().fold(0.0, f64::max);
-    let widest = if widest > 0.0 { widest } else { 1.0 };
-    // The reach lies between that of the forecast and of the realised strength.
-    let core = radius_of_greatest_wind_nmi(0.0, latitude).max(expected.usual_gale_nmi());
-    let mut bounds = [widest * core; BOUNDS];
-    let mut wind = 30.0;
-    for bound in &mut bounds {
-        wind += 5.0;
-        *bound = bound.max(widest * reach_nmi(34.0, wind, latitude));
-    }
-    // The last one is for every stronger storm.
-    bounds[BOUNDS - 1] = bounds[BOUNDS - 1].max(widest * reach_nmi(34.0, 400.0, latitude));
-    bounds
 }
 
 fn linear_at(values: &[(f64, f64)], hour: f64) -> f64 {

@@ -105,8 +105,8 @@ impl fmt::Display for Basin {
     }
 }
 
-/// The errors at one lead time. Arrays hold along, cross (n mi), intensity (kt), size (natural logarithm of
-/// the radius), in the order of [`crate::arrival::keyed::Component::ALL`].
+/// The errors at one lead time. Arrays hold along, cross (n mi), intensity (kt), size (as a share of the
+/// radii), in the order of [`crate::arrival::keyed::Component::ALL`].
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct ErrorRow {
     /// Hours after the base time of the forecast.
@@ -119,6 +119,11 @@ pub struct ErrorRow {
     /// Correlation between the error 12 h earlier and the error at this lead; unused at lead 0.
     pub serial: [f64; 4],
 }
+
+/// The greatest wind (kt) and the mean reach of 34 kt (n mi) of the storms whose deviations stand in a table.
+pub const WIND_OF_THE_TABLE_KT: f64 = 60.0;
+/// See [`WIND_OF_THE_TABLE_KT`].
+pub const REACH_OF_THE_TABLE_NMI: f64 = 100.0;
 
 /// A fault in an error table's numbers.
 #[derive(Clone, Debug, PartialEq, thiserror::Error)]
@@ -170,9 +175,16 @@ pub struct Settings {
     /// Hours in which a storm's own size relaxes by the factor e to the mean vortex after the last given
     /// radii, 1..1000.
     pub radii_relaxation_h: f64,
-    /// The stated accuracy of the centre divided by this is the standard deviation of its position along and
-    /// across, 0.5..5.
-    pub accuracy_divisor: f64,
+    /// The usual accuracy that advisories state of the present centre, n mi, 1..300: the centre's deviations in the table are of such
+    /// forecasts.
+    pub accuracy_usual_nmi: f64,
+    /// With which power the centre's deviations grow with the stated accuracy at lead 0, 0..2.
+    pub accuracy_power: f64,
+    /// Hours of lead in which that power falls to 0, 1..1000.
+    pub accuracy_fades_h: f64,
+    /// With which power deviations grow: of along, cross and intensity with the forecast wind / 60 kt, of size with the forecast reach of
+    /// gales / 100 n mi; each -2..2.
+    pub scaling: [f64; 4],
 }
 
 impl ErrorTable {
@@ -202,7 +214,12 @@ impl ErrorTable {
         within("intensity_with_size", 0.0, settings.intensity_with_size, MUTUAL_BOUNDS)?;
         within("size_follows_intensity", 0.0, settings.size_follows_intensity, FOLLOWS_BOUNDS)?;
         within("radii_relaxation_h", 0.0, settings.radii_relaxation_h, RELAXATION_BOUNDS)?;
-        within("accuracy_divisor", 0.0, settings.accuracy_divisor, ACCURACY_BOUNDS)?;
+        within("accuracy_usual_nmi", 0.0, settings.accuracy_usual_nmi, ACCURACY_BOUNDS)?;
+        within("accuracy_power", 0.0, settings.accuracy_power, POWER_BOUNDS)?;
+        within("accuracy_fades_h", 0.0, settings.accuracy_fades_h, FADING_BOUNDS)?;
+        for (name, value) in SCALING.iter().zip(settings.scaling) {
+            within(name, 0.0, value, SCALING_BOUNDS)?;
+        }
         Ok(ErrorTable { name: name.into(), sources, rows, settings, notes: Vec::new() })
     }
 
@@ -300,13 +317,13 @@ pub const COLUMNS: [[Column; 4]; 3] = [
         Column { name: "along_nmi", bounds: (0.0, 3000.0) },
         Column { name: "cross_nmi", bounds: (0.0, 3000.0) },
         Column { name: "intensity_kt", bounds: (0.0, 200.0) },
-        Column { name: "size_log", bounds: (0.0, 3.0) },
+        Column { name: "size_share", bounds: (0.0, 3.0) },
     ],
     [
         Column { name: "along_bias_nmi", bounds: (-3000.0, 3000.0) },
         Column { name: "cross_bias_nmi", bounds: (-3000.0, 3000.0) },
         Column { name: "intensity_bias_kt", bounds: (-200.0, 200.0) },
-        Column { name: "size_bias_log", bounds: (-3.0, 3.0) },
+        Column { name: "size_bias_share", bounds: (-3.0, 3.0) },
     ],
     [
         Column { name: "along_serial", bounds: (0.0, 1.0) },
@@ -316,14 +333,23 @@ pub const COLUMNS: [[Column; 4]; 3] = [
     ],
 ];
 
+/// Keys of [`Settings::scaling`].
+pub const SCALING: [&str; 4] = ["along_by_wind", "cross_by_wind", "intensity_by_wind", "size_by_reach"];
+
+/// Bounds of [`Settings::scaling`].
+pub const SCALING_BOUNDS: (f64, f64) = (-2.0, 2.0);
+/// Bounds of [`Settings::accuracy_fades_h`].
+pub const FADING_BOUNDS: (f64, f64) = (1.0, 1000.0);
 /// Bounds of [`Settings::intensity_with_size`].
 pub const MUTUAL_BOUNDS: (f64, f64) = (-1.0, 1.0);
 /// Bounds of [`Settings::size_follows_intensity`].
-pub const FOLLOWS_BOUNDS: (f64, f64) = (0.0, 1.0);
+pub const FOLLOWS_BOUNDS: (f64, f64) = (0.0, 0.95);
 /// Bounds of [`Settings::radii_relaxation_h`].
 pub const RELAXATION_BOUNDS: (f64, f64) = (1.0, 1000.0);
-/// Bounds of [`Settings::accuracy_divisor`].
-pub const ACCURACY_BOUNDS: (f64, f64) = (0.5, 5.0);
+/// Bounds of [`Settings::accuracy_usual_nmi`].
+pub const ACCURACY_BOUNDS: (f64, f64) = (1.0, 300.0);
+/// Bounds of [`Settings::accuracy_power`].
+pub const POWER_BOUNDS: (f64, f64) = (0.0, 2.0);
 
 fn within(what: &'static str, lead_h: f64, value: f64, (least, most): (f64, f64)) -> Result<(), TableError> {
     if is_within(value, (least, most)) {
@@ -391,7 +417,10 @@ mod tests {
         intensity_with_size: 0.0,
         size_follows_intensity: 0.5,
         radii_relaxation_h: 36.0,
-        accuracy_divisor: 1.5,
+        accuracy_usual_nmi: 15.0,
+        accuracy_power: 1.0,
+        accuracy_fades_h: 12.0,
+        scaling: [0.0; 4],
     };
 
     fn row(lead_h: f64, along: f64) -> ErrorRow {

@@ -1,8 +1,9 @@
 //! Reads a file of forecast-error tables.
 
 use crate::arrival::errors::{
-    ACCURACY_BOUNDS, Basin, COLUMNS, ErrorRow, ErrorTable, ErrorTables, FOLLOWS_BOUNDS, LEAD_BOUNDS,
-    MUTUAL_BOUNDS, RELAXATION_BOUNDS, Settings, is_within,
+    ACCURACY_BOUNDS, Basin, COLUMNS, ErrorRow, ErrorTable, ErrorTables, FADING_BOUNDS, FOLLOWS_BOUNDS,
+    LEAD_BOUNDS, MUTUAL_BOUNDS, POWER_BOUNDS, RELAXATION_BOUNDS, SCALING, SCALING_BOUNDS, Settings,
+    is_within,
 };
 use crate::finding::fault::{Finding, nearest, sort_findings};
 use crate::finding::source::SourceText;
@@ -35,18 +36,24 @@ struct RawTable {
     basins: Vec<Spanned<String>>,
     sources: Vec<String>,
     radii_relaxation_h: Spanned<f64>,
-    accuracy_divisor: Spanned<f64>,
+    accuracy_usual_nmi: Spanned<f64>,
+    accuracy_power: Spanned<f64>,
+    accuracy_fades_h: Spanned<f64>,
+    along_by_wind: Option<Spanned<f64>>,
+    cross_by_wind: Option<Spanned<f64>>,
+    intensity_by_wind: Option<Spanned<f64>>,
+    size_by_reach: Option<Spanned<f64>>,
     intensity_with_size: Spanned<f64>,
     size_follows_intensity: Spanned<f64>,
     lead_h: Numbers,
     along_nmi: Numbers,
     cross_nmi: Numbers,
     intensity_kt: Numbers,
-    size_log: Numbers,
+    size_share: Numbers,
     along_bias_nmi: Option<Numbers>,
     cross_bias_nmi: Option<Numbers>,
     intensity_bias_kt: Option<Numbers>,
-    size_bias_log: Option<Numbers>,
+    size_bias_share: Option<Numbers>,
     along_serial: Numbers,
     cross_serial: Numbers,
     intensity_serial: Numbers,
@@ -148,8 +155,8 @@ impl Reader<'_> {
         let before = self.findings.len();
         let leads = self.numbers(&raw.lead_h, "lead_h", LEAD_BOUNDS);
         self.leads(&raw.lead_h);
-        let deviation = [&raw.along_nmi, &raw.cross_nmi, &raw.intensity_kt, &raw.size_log].map(Some);
-        let bias = [&raw.along_bias_nmi, &raw.cross_bias_nmi, &raw.intensity_bias_kt, &raw.size_bias_log]
+        let deviation = [&raw.along_nmi, &raw.cross_nmi, &raw.intensity_kt, &raw.size_share].map(Some);
+        let bias = [&raw.along_bias_nmi, &raw.cross_bias_nmi, &raw.intensity_bias_kt, &raw.size_bias_share]
             .map(Option::as_ref);
         let serial =
             [&raw.along_serial, &raw.cross_serial, &raw.intensity_serial, &raw.size_serial].map(Some);
@@ -168,6 +175,7 @@ impl Reader<'_> {
                 }
             }
         }
+        let scaling = [&raw.along_by_wind, &raw.cross_by_wind, &raw.intensity_by_wind, &raw.size_by_reach];
         let settings = Settings {
             intensity_with_size: self.number(&raw.intensity_with_size, "intensity_with_size", MUTUAL_BOUNDS),
             size_follows_intensity: self.number(
@@ -176,7 +184,13 @@ impl Reader<'_> {
                 FOLLOWS_BOUNDS,
             ),
             radii_relaxation_h: self.number(&raw.radii_relaxation_h, "radii_relaxation_h", RELAXATION_BOUNDS),
-            accuracy_divisor: self.number(&raw.accuracy_divisor, "accuracy_divisor", ACCURACY_BOUNDS),
+            accuracy_usual_nmi: self.number(&raw.accuracy_usual_nmi, "accuracy_usual_nmi", ACCURACY_BOUNDS),
+            accuracy_power: self.number(&raw.accuracy_power, "accuracy_power", POWER_BOUNDS),
+            accuracy_fades_h: self.number(&raw.accuracy_fades_h, "accuracy_fades_h", FADING_BOUNDS),
+            scaling: std::array::from_fn(|i| match scaling[i] {
+                Some(value) => self.number(value, SCALING[i], SCALING_BOUNDS),
+                None => 0.0,
+            }),
         };
         let table = ErrorTable::new(raw.name.get_ref(), raw.sources.clone(), rows, settings).ok()?;
         (self.findings.len() == before).then_some(table)

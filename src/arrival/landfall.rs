@@ -9,6 +9,7 @@
 //! that keeps to the forecast's way over land has the forecast's strength.
 
 use crate::geo::land::LandMask;
+use crate::geo::position::wrap_longitude;
 use crate::wind::inland::{ashore, further_inland};
 
 /// Hours in which, back over the sea, what is lacking of the wind shrinks by the factor e. Our choice, not fitted: about a
@@ -40,7 +41,10 @@ impl Landfall {
     #[must_use]
     pub fn of(way: &[Waypoint], winds_kt: &[f64]) -> Option<Landfall> {
         let (south, north) = bounds(way.iter().map(|(_, latitude, _)| *latitude))?;
-        let (west, east) = bounds(way.iter().map(|(_, _, longitude)| *longitude))?;
+        // Counted from the first point's, so that the date line is no seam.
+        let (_, _, first) = way.first()?;
+        let eastward = |longitude: f64| first + wrap_longitude(longitude - first);
+        let (west, east) = bounds(way.iter().map(|(_, _, longitude)| eastward(*longitude)))?;
         let width = east - west + 2.0 * MARGIN_DEGREES;
         let mask =
             LandMask::over(south - MARGIN_DEGREES, north + MARGIN_DEGREES, west - MARGIN_DEGREES, width);

@@ -15,4 +15,5 @@ pub mod question;
 pub mod scenario;
 pub mod seas;
 pub mod series;
+pub mod spread;
 pub mod threads;

@@ -91,6 +91,14 @@ impl Answer {
         Chance::share(self.already + self.reached.len(), self.onsets.len())
     }
 
+    /// The chance that the wind has come by `t`, given that it does not blow at issue: for those who can see
+    /// that, and for scores that leave out places where it blows. Zero if it blows in every scenario.
+    #[must_use]
+    pub fn chance_by_unless_there(&self, t: Moment) -> Chance {
+        let after_issue = self.reached.partition_point(|onset| *onset <= t);
+        Chance::share(after_issue, (self.onsets.len() - self.already).max(1))
+    }
+
     /// The share of scenarios in which it blows at issue.
     #[must_use]
     pub fn already_share(&self) -> Chance {

@@ -46,7 +46,10 @@ mod tests {
             intensity_with_size: 0.0,
             size_follows_intensity: 0.5,
             radii_relaxation_h: 36.0,
-            accuracy_divisor: 1.5,
+            accuracy_usual_nmi: 30.0,
+            accuracy_power: 0.0,
+            accuracy_fades_h: 12.0,
+            scaling: [0.0; 4],
         };
         let row =
             |lead_h, along, cross| ErrorRow { lead_h, deviation: [along, cross, 1.0, 0.1], ..ErrorRow::NONE };

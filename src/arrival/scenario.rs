@@ -4,11 +4,13 @@
 //! with e from the standard normal distribution, for each of along, cross, intensity and size; an error is
 //! deviation x z + bias.
 
-use crate::arrival::course::{Course, Step, Storm};
+use crate::arrival::course::{Course, Step};
 use crate::arrival::keyed::{BLOCK, Component, Keyed};
+use crate::arrival::landfall::History;
+use crate::wind::climatology::radius_of_greatest_wind_nmi;
 use crate::wind::field::Vortex;
-use crate::wind::profile::GIVEN_SPEEDS_KT;
 use crate::wind::sphere::{EARTH_RADIUS_NMI, Vector, displaced, dot, plus};
+use crate::wind::structure::{Change, Expected};
 use std::cell::OnceCell;
 
 /// The innovations of one block of scenarios: for each node and component, one number for each scenario.
@@ -47,22 +49,33 @@ impl Draws {
     }
 }
 
+/// The least size of a storm as a multiple of its forecast. Our choice.
+const LEAST_SIZE: f64 = 0.05;
+
 /// How a storm is to be at one step.
 #[derive(Clone, Copy, Debug)]
 struct State {
     centre: Vector,
-    wind_kt: f64,
-    /// The size error as a factor.
-    size: f64,
+    change: Change,
 }
 
 impl State {
-    fn of(step: &Step, storm: &Storm, [along, cross, intensity, size]: [f64; 4]) -> State {
+    /// `land` is what the scenario's own way over land makes of the forecast's wind.
+    fn of(step: &Step, storm: &Expected, land: f64, [along, cross, intensity, size]: [f64; 4]) -> State {
         State {
             centre: displaced(step.centre, step.along, step.cross, along, cross),
-            wind_kt: (storm.table.expected.wind_kt + intensity).clamp(0.0, 250.0),
-            size: libm::exp(size),
+            change: Change {
+                wind_kt: (storm.wind_kt * land + intensity).clamp(0.0, 250.0),
+                size: (1.0 + size).max(LEAST_SIZE),
+            },
         }
+    }
+
+    /// A bound of the reach of 34 kt or of the core, n mi. Much cheaper than the reach itself, it keeps far places out of the inner loop.
+    fn bound_nmi(&self, storm: &Expected) -> f64 {
+        let core =
+            storm.mean_gale_ratio * self.change.size * radius_of_greatest_wind_nmi(0.0, storm.latitude);
+        storm.bound_nmi(&self.change).max(core)
     }
 }
 
@@ -87,6 +100,8 @@ pub struct Scenario {
     widest: f64,
     fastest: f64,
     vortices: Vec<OnceCell<Vortex>>,
+    /// At each step the factor on the forecast's wind by the scenario's own way over land; empty far from land.
+    land: Vec<f64>,
 }
 
 impl Scenario {
@@ -112,21 +127,23 @@ impl Scenario {
         }
     }
 
-    fn state<'a>(&self, course: &'a Course, k: usize) -> Option<(State, &'a Storm)> {
+    fn state<'a>(&self, course: &'a Course, k: usize) -> Option<(State, &'a Expected)> {
         let (step, storm) = (course.steps.get(k)?, course.storms.get(k)?);
-        Some((State::of(step, storm, self.error(step)), storm))
+        let land = self.land.get(k).copied().unwrap_or(1.0);
+        Some((State::of(step, storm, land, self.error(step)), storm))
     }
 
     fn fill(&mut self, course: &Course) {
         self.vortices.clear();
         self.vortices.resize_with(course.steps.len(), OnceCell::new);
         self.stops.clear();
+        self.cross_land(course);
         self.widest = 0.0;
         // Never nothing: a storm that stands still is looked at again after a day or so.
         self.fastest = 1.0 / EARTH_RADIUS_NMI;
         for k in &course.stops {
             let Some((state, storm)) = self.state(course, *k) else { continue };
-            let bound = state.size * storm.bound_nmi(state.wind_kt) / EARTH_RADIUS_NMI;
+            let bound = state.bound_nmi(storm) / EARTH_RADIUS_NMI;
             self.widest = self.widest.max(bound);
             if let Some(last) = self.stops.last_mut() {
                 let moved = plus(state.centre, -1.0, last.centre);
@@ -137,6 +154,27 @@ impl Scenario {
             }
             self.stops.push(Stop { centre: state.centre, bound, far2: bound * bound });
         }
+    }
+
+    /// The factors of land, worked out at the stops and linear between them; from the end of the forecast on they stay.
+    fn cross_land(&mut self, course: &Course) {
+        self.land.clear();
+        let Some(landfall) = &course.land else { return };
+        let mut history = History::new();
+        let mut last = (0, 1.0);
+        for k in course.stops.iter().copied().take_while(|k| *k <= course.end) {
+            let Some(step) = course.steps.get(k) else { break };
+            let [along, cross, ..] = self.error(step);
+            let centre = displaced(step.centre, step.along, step.cross, along, cross);
+            let factor = landfall.factor(&mut history, course.waypoint(step, centre));
+            let (from, before) = if k == 0 { (0, factor) } else { last };
+            for between in from..k {
+                let share = (between - from) as f64 / (k - from) as f64;
+                self.land.push(before + (factor - before) * share);
+            }
+            last = (k, factor);
+        }
+        self.land.resize(course.steps.len(), last.1);
     }
 
     /// For how many stops from number `stop` on no wind can reach `place`, when it reaches at most `widening` times
@@ -165,9 +203,7 @@ impl Scenario {
     #[must_use]
     pub fn gale_reach_nmi(&self, course: &Course, k: usize) -> Option<(Vector, f64)> {
         let (state, storm) = self.state(course, k)?;
-        let expected = &storm.table.expected;
-        let usual = expected.scale(0, state.wind_kt.max(GIVEN_SPEEDS_KT[0]));
-        Some((state.centre, state.size * expected.mean_gale_ratio * usual))
+        Some((state.centre, storm.mean_gale_nmi(&state.change)))
     }
 
     /// The realised storm at step `k`; `None` beyond the last step.
@@ -178,6 +214,6 @@ impl Scenario {
             return Some(vortex);
         }
         let (state, storm) = self.state(course, k)?;
-        Some(kept.get_or_init(|| Vortex::realised(&storm.table, state.centre, state.wind_kt, state.size)))
+        Some(kept.get_or_init(|| Vortex::realised(storm, state.centre, &state.change)))
     }
 }

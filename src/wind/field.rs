@@ -4,8 +4,8 @@ use crate::units::bearing::Bearing;
 use crate::units::speed::Knots;
 use crate::wind::climatology::{radius_of_greatest_wind_nmi, rankine_exponent};
 use crate::wind::profile::{Profile, sector};
-use crate::wind::reach_table::ReachTable;
 use crate::wind::sphere::{Vector, bearing_degrees, distance_nmi};
+use crate::wind::structure::{Change, Expected};
 
 /// How far the surface wind is turned inwards from the circle around the centre, in degrees, over the sea.
 ///
@@ -64,12 +64,11 @@ pub struct Vortex {
 }
 
 impl Vortex {
-    /// The storm with its centre there, of greatest wind `wind_kt` and with the size error `size` (1 for
-    /// none), where what `table` holds was forecast.
+    /// The storm with its centre there, where it turns out so and `expected` was forecast.
     #[must_use]
-    pub fn realised(table: &ReachTable, centre: Vector, wind_kt: f64, size: f64) -> Vortex {
-        let expected = &table.expected;
-        let reach_nmi = table.reach(wind_kt, size);
+    pub fn realised(expected: &Expected, centre: Vector, change: &Change) -> Vortex {
+        let reach_nmi = expected.reach(change);
+        let wind_kt = change.wind_kt;
         Vortex {
             centre,
             max_wind_kt: wind_kt,
@@ -77,7 +76,7 @@ impl Vortex {
             widest_nmi: reach_nmi[0].into_iter().fold(0.0, f64::max),
             exponent: rankine_exponent(wind_kt, expected.latitude).max(LEAST_EXPONENT),
             core_nmi: expected.mean_gale_ratio
-                * size
+                * change.size
                 * radius_of_greatest_wind_nmi(wind_kt, expected.latitude),
         }
     }

@@ -8,7 +8,6 @@ pub mod field;
 pub mod height;
 pub mod inland;
 pub mod profile;
-pub mod reach_table;
 pub mod sphere;
 pub mod structure;
 pub mod swell;

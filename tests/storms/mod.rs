@@ -95,12 +95,21 @@ pub const SETTINGS: Settings = Settings {
     intensity_with_size: 0.0,
     size_follows_intensity: 0.5,
     radii_relaxation_h: 36.0,
-    accuracy_divisor: 1.5,
+    accuracy_usual_nmi: 15.0,
+    accuracy_power: 1.0,
+    accuracy_fades_h: 12.0,
+    scaling: [0.0; 4],
 };
 
 /// A table whose errors are constant in time and, with a serial correlation of one, frozen.
 pub fn constant(along: f64, cross: f64) -> ErrorTable {
-    let row = ErrorRow { lead_h: 0.0, deviation: [along, cross, 0.0, 0.0], bias: [0.0; 4], serial: [1.0; 4] };
+    let row = ErrorRow {
+        lead_h: 0.0,
+        deviation: [along, cross, 0.0, 0.0],
+        bias: [0.0; 4],
+        serial: [1.0; 4],
+        ..ErrorRow::NONE
+    };
     ErrorTable::new("constant", Vec::new(), vec![row], SETTINGS).unwrap()
 }
 
