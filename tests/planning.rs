@@ -5,6 +5,7 @@ mod common;
 
 use common::Reading;
 use snugdown::plan::changes::{Turn, changes_between};
+use snugdown::plan::fold::plan_again;
 use snugdown::plan::sheet::{DutyState, Plan, Point, StageStatus, TaskState};
 use snugdown::time::moment::{Minutes, Moment};
 
@@ -347,4 +348,23 @@ fn a_plan_made_before_an_advisory_was_withdrawn_still_stands_on_it() {
     assert!(taken.advisory.is_some());
     assert!(withdrawn.advisory.is_none() && now.advisory.is_none());
     assert!(history.plans.iter().all(|plan| plan.breaches.is_empty()));
+}
+
+#[test]
+fn a_plan_made_again_for_news_is_the_one_that_the_whole_record_gives() {
+    let old = event("2026-09-17T12:06-03:00", "declares = { stage = \"S1\" }")
+        + &event("2026-09-17T12:07-03:00", "done = { task = \"H1\" }")
+        + &event("2026-09-17T12:10-03:00", "started = { task = \"V01/secure\" }");
+    for news in [
+        "out = { member = \"T1\" }",
+        "withdraws = { event = 3 }",
+        "withdraws = { event = 1 }",
+        "adopts_arrival = { place = \"pilot-station\", wind = \"34 kt\", time = \"2026-09-18T09:00-03:00\" }",
+        "left = { task = \"V01/secure\", still = \"5 h\" }",
+    ] {
+        let earlier = port_with(&old).plans(NOW);
+        let reading = port_with(&(old.clone() + &event(NOW, news)));
+        let again = plan_again(&reading.inputs(), &earlier, reading.moment(NOW));
+        assert_eq!(again, reading.plans(NOW).plans.pop().unwrap(), "{news}");
+    }
 }

@@ -7,7 +7,7 @@ use crate::cli::exit::{Exit, Failure};
 use crate::cli::forecasts::taking;
 use crate::cli::kept::{STORE, TEXT, store_path};
 use crate::cli::load::{Loaded, load};
-use crate::cli::planning::{latest, plans_until};
+use crate::cli::planning::{latest, plan_with_news, plans_until};
 use crate::cli::screen::{show, tell, tell_findings, width};
 use crate::cli::write_args::WriteArgs;
 use crate::finding::fault::{Finding, has_error};
@@ -233,12 +233,11 @@ impl<'a> Desk<'a> {
             Some((taking.key(), paper.advisory.clone()?))
         });
         self.loaded.forecasts.extend(forecasts);
-        let after = plans_until(&self.loaded, self.now);
+        let after = plan_with_news(&self.loaded, &before, self.now);
         let Loaded { port, rules, .. } = &self.loaded;
         let setting = Setting::of(port, rules);
-        let (before, after) = (latest(&before)?, latest(&after)?);
-        let changes = changes_by(before, after, events.iter().collect(), &port.clock);
-        show(&changes_brief(&changes, after, &setting, width(None)))?;
+        let changes = changes_by(latest(&before)?, &after, events.iter().collect(), &port.clock);
+        show(&changes_brief(&changes, &after, &setting, width(None)))?;
         Ok(Exit::Fits)
     }
 }

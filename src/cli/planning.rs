@@ -3,7 +3,7 @@
 use crate::arrival::odds::Draw;
 use crate::cli::exit::{Exit, Failure};
 use crate::cli::load::Loaded;
-use crate::plan::fold::{History, plan_at};
+use crate::plan::fold::{History, plan_again, plan_at};
 use crate::plan::inputs::Inputs;
 use crate::plan::sheet::Plan;
 use crate::record::fold::situation;
@@ -13,7 +13,17 @@ use crate::time::moment::{Minutes, Moment};
 /// All plans up to a moment, with the usual number of scenarios and the usual effort.
 #[must_use]
 pub fn plans_until(loaded: &Loaded, now: Moment) -> History {
-    let inputs = Inputs {
+    plan_at(&inputs_of(loaded), now)
+}
+
+/// The plan for `now` after events known at `now` have joined the record; `earlier` are the plans until `now` without them.
+#[must_use]
+pub fn plan_with_news(loaded: &Loaded, earlier: &History, now: Moment) -> Plan {
+    plan_again(&inputs_of(loaded), earlier, now)
+}
+
+fn inputs_of(loaded: &Loaded) -> Inputs<'_> {
+    Inputs {
         port: &loaded.port,
         rules: &loaded.rules,
         work: &loaded.work,
@@ -24,8 +34,7 @@ pub fn plans_until(loaded: &Loaded, now: Moment) -> History {
         // arrival adopted earlier is held against the same count. `arrivals` draws more for what is rare.
         draw: Draw { most: Draw::default().scenarios, ..Draw::default() },
         effort: Effort::usual(loaded.work.task_ids().count()),
-    };
-    plan_at(&inputs, now)
+    }
 }
 
 /// The plan for the moment that was asked for.

@@ -67,6 +67,18 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
     })
 }
 
+/// The plan for `now` after more events have joined the record, all known at `now`; `earlier` are the plans until `now`
+/// without them. The same as the last plan of [`plan_at`], for the work of one plan: nothing before `now` can have changed.
+#[must_use]
+pub fn plan_again(inputs: &Inputs<'_>, earlier: &History, now: Moment) -> Plan {
+    let before = earlier.plans.iter().rev().find(|plan| plan.now < now);
+    let first = earlier.plans.first().map_or(now, |plan| plan.now);
+    let from = (first - REACH.0).max(now - LONGEST_RECORD);
+    let calendar = Calendar::of(inputs.port, from, now + REACH.1);
+    let odds = AllOdds::of(inputs, now, &[now]);
+    plan_then(inputs, (&odds, &calendar), &situation(inputs.events, now.to_utc()), before, true)
+}
+
 fn plan_then(
     inputs: &Inputs<'_>,
     (odds, calendar): (&AllOdds<'_>, &Calendar),
