@@ -32,6 +32,7 @@ if [ "${1:-}" = all ]; then
   say "long runs"
   SNUGDOWN_LONG=1 cargo test --locked --release --test demo_port
   SNUGDOWN_LONG=1 cargo test --locked --release --test record_faults -- --nocapture
+  SNUGDOWN_LONG=1 cargo test --locked --release --test demo_by_commands
   cargo build --locked --release --bins
   cargo run --locked --release --example record_speed
   say "benches"
