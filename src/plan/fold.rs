@@ -3,6 +3,8 @@
 use crate::plan::audit::audit;
 use crate::plan::audit_case::AuditInputs;
 use crate::plan::calendar::{Calendar, LONGEST_RECORD, REACH};
+use crate::plan::call_book::CallInputs;
+use crate::plan::calls::calls;
 use crate::plan::in_force::{at_adoption, in_force};
 use crate::plan::inputs::Inputs;
 use crate::plan::make::{Forecast, MakeInputs, make};
@@ -63,8 +65,20 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
             let plan = plan_then(inputs, (&odds, &calendar), then.situation(), plans.last(), number == end);
             plans.push(plan);
         }
+        tell_who_must_know(inputs, then.situation(), &mut plans);
         History { plans }
     })
+}
+
+/// Gives the last plan its calls: what differs from the plan issued last, and who has been told of it.
+fn tell_who_must_know(inputs: &Inputs<'_>, situation: &Situation, plans: &mut [Plan]) {
+    let Some((plan, before)) = plans.split_last_mut() else { return };
+    let issued_at = situation.issued.last().map(|said| Moment::at_or_after(said.known));
+    // What was issued at this very moment is this plan.
+    let issued = issued_at.map(|at| before.iter().chain([&*plan]).rev().find(|one| one.now <= at));
+    let issued = issued.flatten();
+    let found = calls(&CallInputs { port: inputs.port, situation, events: inputs.events, issued, plan });
+    plan.calls = found;
 }
 
 fn plan_then(
