@@ -92,7 +92,8 @@ fn chosen<'a>(args: &CallsArgs, plan: &'a Plan) -> Result<Vec<&'a Call>, Failure
         let offices = plan.tasks.iter().flat_map(|task| task.approvers.iter().chain([&task.who]));
         let known: Vec<&str> = all.chain(offices.map(String::as_str)).collect();
         if !known.iter().any(|name| name.to_lowercase() == who.trim().to_lowercase()) {
-            let hint = nearest(who, known).map_or(String::new(), |meant| format!("; did you mean \"{meant}\"?"));
+            let hint =
+                nearest(who, known).map_or(String::new(), |meant| format!("; did you mean \"{meant}\"?"));
             return Err(Failure::Usage(format!("--for: nobody here is called \"{who}\"{hint}")));
         }
     }

@@ -5,7 +5,8 @@ use crate::cli::exit::{Exit, Failure};
 use crate::cli::screen::{tell, tell_findings};
 use crate::cli::tell as telling;
 use crate::cli::{
-    arrivals, called, calls, changes, check, completions, man, mark, mend, now, order, plan, record, take, wind,
+    arrivals, called, calls, changes, check, completions, man, mark, mend, now, order, plan, record, take,
+    wind,
 };
 use clap::{CommandFactory, Parser};
 use std::ffi::OsString;

@@ -39,7 +39,8 @@ fn text_within(call: &Call, plan: &Plan, setting: &Setting, times: &Times<'_>, r
     sentences.extend((!banner.is_empty()).then(|| short(&banner, 40)));
     let draft = if call.released_by.is_none() { "DRAFT " } else { "" };
     let kind = if call.is_order { "ORDER" } else { "ADVICE" };
-    let channel = call.channel.as_ref().map_or_else(String::new, |channel| format!(" ({})", short(channel, 30)));
+    let channel =
+        call.channel.as_ref().map_or_else(String::new, |channel| format!(" ({})", short(channel, 30)));
     sentences.push(format!(
         "{draft}{kind} {} from {} to {}{channel}",
         short(&call.id, ID),
@@ -48,11 +49,13 @@ fn text_within(call: &Call, plan: &Plan, setting: &Setting, times: &Times<'_>, r
     ));
     let style = Style { first: &|at| times.full(at), short: &|text| short(text, room) };
     sentences.push(message(call, times, &style));
-    sentences.extend((!call.place.is_empty()).then(|| format!("Place: {}", short(&call.place, room.min(40)))));
+    sentences
+        .extend((!call.place.is_empty()).then(|| format!("Place: {}", short(&call.place, room.min(40)))));
     sentences.extend((!call.reason.is_empty()).then(|| format!("Reason: {}", short(&call.reason, room))));
     sentences.push(grounds(plan, setting, times, room));
     sentences.push(validity(call, plan, times));
-    sentences.extend(call.released_by.as_ref().map(|who| format!("Released by {}", short(who, room.min(40)))));
+    sentences
+        .extend(call.released_by.as_ref().map(|who| format!("Released by {}", short(who, room.min(40)))));
     sentences.push(format!("Please confirm {}", short(&call.id, ID)));
     let text: String = sentences.iter().map(|sentence| format!("{}. ", ascii(sentence))).collect();
     text.trim_end().to_owned()
@@ -81,7 +84,8 @@ pub fn message(call: &Call, times: &Times<'_>, style: &Style<'_>) -> String {
                     let start = Moment::at_or_after(start);
                     let told = first(times.told_start(start, *latest));
                     let latest = latest.filter(|latest| *latest >= start);
-                    let latest = latest.map(|at| format!(", latest {}", times.both(times.told_latest(start, at))));
+                    let latest =
+                        latest.map(|at| format!(", latest {}", times.both(times.told_latest(start, at))));
                     let was = was.map_or_else(|| String::from(", had no time"), |was| format!(", was {was}"));
                     format!("{task}: starts {told}{was}{}", latest.unwrap_or_default())
                 }
@@ -105,7 +109,10 @@ pub fn message(call: &Call, times: &Times<'_>, style: &Style<'_>) -> String {
         Matter::Adopt { adopted, computed } => {
             let computed = first(times.told_down(*computed));
             let adopted = times.both(*adopted);
-            format!("Arrival at {} computed {computed}, adopted {adopted}: adopt the earlier one?", short(&about))
+            format!(
+                "Arrival at {} computed {computed}, adopted {adopted}: adopt the earlier one?",
+                short(&about)
+            )
         }
         Matter::Confirm { order } => format!("A second person must confirm {about}: {}", short(order)),
         Matter::Duty { stage, act, by } => {
@@ -114,7 +121,11 @@ pub fn message(call: &Call, times: &Times<'_>, style: &Style<'_>) -> String {
         }
         Matter::Stay { conditions, until } => {
             let until = until.map(|until| format!(" until {}", first(until)));
-            let on = if conditions.is_empty() { String::new() } else { format!(", on condition: {}", short(conditions)) };
+            let on = if conditions.is_empty() {
+                String::new()
+            } else {
+                format!(", on condition: {}", short(conditions))
+            };
             format!("{} may stay in port{}{on}", short(&about), until.unwrap_or_default())
         }
     }
@@ -132,7 +143,11 @@ fn now_words(substance: Substance) -> &'static str {
 
 /// "Plan of Thu 06:20 (09:20Z), record event 63, chain 0f1e2d3c4b5a; advisory 12 on OSKELA".
 fn grounds(plan: &Plan, setting: &Setting, times: &Times<'_>, room: usize) -> String {
-    let record = if setting.record.is_empty() { String::new() } else { format!(", record {}", short(setting.record, 40)) };
+    let record = if setting.record.is_empty() {
+        String::new()
+    } else {
+        format!(", record {}", short(setting.record, 40))
+    };
     let advisory = plan.advisory.as_ref().map_or_else(
         || String::from("no advisory"),
         |advisory| {
@@ -163,12 +178,7 @@ pub fn overdue_words(plan: &Plan, times: &Times) -> Option<(String, usize)> {
     let late: Vec<&Call> = plan.calls.iter().filter(|call| call.is_overdue(plan.now)).collect();
     let first = late.first()?;
     let by = times.local_day(times.told_down(first.by));
-    let words = format!(
-        "{} UNANSWERED past {by}: {} about {}",
-        first.id,
-        first.to.words(),
-        first.about
-    );
+    let words = format!("{} UNANSWERED past {by}: {} about {}", first.id, first.to.words(), first.about);
     Some((words, late.len() - 1))
 }
 

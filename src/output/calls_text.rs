@@ -33,7 +33,8 @@ pub fn calls_text(calls: &[&Call], plan: &Plan, setting: &Setting, width: usize)
         page.gap();
         page.text(0, "No call is to be made.");
     }
-    let of = |test: &dyn Fn(&Call) -> bool| calls.iter().copied().filter(|call| test(call)).collect::<Vec<_>>();
+    let of =
+        |test: &dyn Fn(&Call) -> bool| calls.iter().copied().filter(|call| test(call)).collect::<Vec<_>>();
     let (late, done) = (|call: &Call| call.is_overdue(plan.now), |call: &Call| !call.is_unanswered());
     write_list(&mut page, &times, "UNANSWERED PAST THEIR TIME", &of(&late));
     write_list(&mut page, &times, "TO BE MADE", &of(&|call| !late(call) && !done(call)));

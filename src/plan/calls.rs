@@ -31,8 +31,12 @@ pub fn calls(inputs: &CallInputs<'_>) -> Vec<Call> {
 fn calls_about_tasks(inputs: &CallInputs<'_>, issued: &Plan) -> Vec<Call> {
     let changes = changes_between(issued, inputs.plan, inputs.events, &inputs.port.clock);
     let since = inputs.situation.issued.last().map(|said| said.nth);
-    let reports: Vec<&CallHeard> =
-        inputs.situation.calls.iter().filter(|heard| since.is_none_or(|issue| issue < heard.said.nth)).collect();
+    let reports: Vec<&CallHeard> = inputs
+        .situation
+        .calls
+        .iter()
+        .filter(|heard| since.is_none_or(|issue| issue < heard.said.nth))
+        .collect();
     let mut calls = Vec::new();
     for line in &inputs.plan.tasks {
         let Some(old) = issued.task(&line.id) else { continue };

@@ -4,8 +4,8 @@ use crate::record::event::{Event, Retracted, What};
 use crate::record::fact::Fact;
 use crate::record::ruling::RulingKind;
 use crate::record::situation::{
-    Adopted, CallHeard, Observation, Outage, Outcome, Said, Situation, StageState, Started, TakenAdvisory, TaskState,
-    Told, Way,
+    Adopted, CallHeard, Observation, Outage, Outcome, Said, Situation, StageState, Started, TakenAdvisory,
+    TaskState, Told, Way,
 };
 use crate::time::moment::{Minutes, Moment};
 use crate::units::speed::Knots;

@@ -230,7 +230,10 @@ pub enum Said {
 /// What an event says of a call.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 #[serde(deny_unknown_fields)]
-#[expect(missing_docs, reason = "each name is the key of events.toml, explained at `record::call::CallReport`")]
+#[expect(
+    missing_docs,
+    reason = "each name is the key of events.toml, explained at `record::call::CallReport`"
+)]
 pub struct CallSaid {
     pub call: String,
     #[serde(default, skip_serializing_if = "String::is_empty")]
