@@ -380,3 +380,25 @@ fn a_spacing_left_out_is_named() {
     assert!(text.contains("port-no-spacing: no spacing for a \"deep\" ship after a \"deep\" one"), "{text}");
     assert_eq!(findings.len(), 1, "{text}");
 }
+
+#[test]
+fn a_contact_is_for_known_pools_and_each_name_and_pool_has_one() {
+    provokes(
+        "means.toml",
+        ("pools = [\"tug\"]", "pools = [^\"tugs\"]"),
+        "port-unknown-pool",
+        &["not listed", "tug"],
+    );
+    provokes(
+        "means.toml",
+        ("who = \"Pilot office\"", "who = ^\"tug OFFICE\""),
+        "port-duplicate-contact",
+        &["has a contact already"],
+    );
+    provokes(
+        "means.toml",
+        ("pools = [\"pilot\"]", "pools = [\"pilot\", ^\"tug\"]"),
+        "port-duplicate-contact",
+        &["Tug office is called for \"tug\" already"],
+    );
+}

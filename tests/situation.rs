@@ -3,6 +3,7 @@
 use chrono::{DateTime, TimeDelta, Utc};
 use proptest::prelude::{Just, Strategy, any, prop_oneof, proptest};
 use snugdown::finding::fault::Place;
+use snugdown::record::call::{CallReport, CallStep, Substance};
 use snugdown::record::event::{Event, Retracted, What};
 use snugdown::record::fact::Fact;
 use snugdown::record::fold::{Fold, in_order, situation};
@@ -274,6 +275,24 @@ fn task_id() -> impl Strategy<Value = String> {
     prop_oneof![Just("T".to_owned()), Just("U".to_owned())]
 }
 
+fn told_call(m: i64) -> What {
+    let step = if m % 2 == 0 { CallStep::Told } else { CallStep::Acknowledged };
+    let (call, to, about) = ("C3F9A1".to_owned(), "Tug office".to_owned(), "T".to_owned());
+    What::Call(CallReport { call, step, to, about, substance: Some(Substance::Start(at(m))), at: at(m) })
+}
+
+#[test]
+fn a_call_is_remembered_and_no_plan_is_made_for_it() {
+    let now = told(&[(1, What::PlanIssued), (2, told_call(3)), (4, told_call(4))]);
+    assert_eq!(now.changes, [at(1)]);
+    let steps: Vec<CallStep> = now.calls.iter().map(|heard| heard.report.step).collect();
+    assert_eq!(steps, [CallStep::Acknowledged, CallStep::Told]);
+    assert_eq!(
+        mentions(&event(1, told_call(3))).first().map(|m| (m.kind, m.id)),
+        Some((MentionKind::Call, "C3F9A1"))
+    );
+}
+
 /// Any kind of event about one of a few things, so that events meet.
 fn some_what() -> impl Strategy<Value = What> {
     let orders = prop_oneof![
@@ -283,6 +302,7 @@ fn some_what() -> impl Strategy<Value = What> {
         (minute(), any::<bool>()).prop_map(|(m, two)| lifted(if two { "S2" } else { "S3" }, m)),
         Just(What::PlanIssued),
         (minute(), minute()).prop_map(|(wind, m)| observed(wind as f64, m)),
+        minute().prop_map(told_call),
     ];
     let means = prop_oneof![
         (minute(), proptest::option::of(minute())).prop_map(|(from, until)| out(from, until)),

@@ -1,6 +1,8 @@
 //! What can be asked on the command line.
 
 use crate::cli::arrivals::ArrivalsArgs;
+use crate::cli::called::CalledArgs;
+use crate::cli::calls::CallsArgs;
 use crate::cli::changes::ChangesArgs;
 use crate::cli::check::CheckArgs;
 use crate::cli::completions::CompletionsArgs;
@@ -27,7 +29,7 @@ pub struct Args {
 /// Stands under the help of the whole program.
 const AFTER_HELP: &str = "\
 A port is a folder of TOML files: port, rules, tasks, ships, means ..., and a record of what was known, ordered and \
-done: record.sqlite, to which take, mark, tell and order add, or a text, events.toml.
+done: record.sqlite, to which take, mark, tell, order and called add, or a text, events.toml.
 A plan depends on that folder and the time alone. The harbour master decides; the program advises.
 
 Examples:
@@ -35,6 +37,7 @@ Examples:
   snugdown plan demo-port                       the whole plan
   snugdown now demo-port --for 'pilot office'   one screen: what matters now
   snugdown changes demo-port                    what the last news moved, and why
+  snugdown calls demo-port                      who must be told what, by when
   snugdown take my-port advisory-12.txt --by 'Duty officer'
   snugdown mark my-port done H05 V01/papers --by 'Duty officer'
   snugdown arrivals advisory.txt --at 'Pilot station=22.3,-40.8'
@@ -62,6 +65,8 @@ pub enum Command {
     Now(NowArgs),
     /// Say what moved since an earlier plan, and why.
     Changes(ChangesArgs),
+    /// Say who must be told what, by when, with the texts to paste or read out.
+    Calls(CallsArgs),
     /// Say when gale, storm and hurricane force arrive at places, and with what chance.
     Arrivals(ArrivalsArgs),
     /// Show the wind at a place hour by hour: bands, gusts, direction, lull, end, and when each limit there is met.
@@ -74,6 +79,8 @@ pub enum Command {
     Tell(TellArgs),
     /// Order: adopt an arrival, declare a stage, fix a time, permit, waive, refuse.
     Order(OrderArgs),
+    /// Say what became of calls: released, told, acknowledged, not answered.
+    Called(CalledArgs),
     /// Take back events that were mistakes.
     Withdraw(MendArgs),
     /// Confirm orders that wait for a second person.

@@ -125,6 +125,19 @@ impl<'a> Desk<'a> {
     /// # Errors
     /// Any [`Failure`]; unless it comes after the line "recorded", nothing was recorded.
     pub fn record(mut self, drafts: &[Draft], papers: &[Paper]) -> Result<Exit, Failure> {
+        let events = self.put(drafts, papers)?;
+        self.tell_changes(events, papers)
+    }
+
+    /// Records drafts that move nothing.
+    ///
+    /// # Errors
+    /// As [`Desk::record`].
+    pub fn record_only(mut self, drafts: &[Draft]) -> Result<Exit, Failure> {
+        self.put(drafts, &[]).map(|_| Exit::Fits)
+    }
+
+    fn put(&mut self, drafts: &[Draft], papers: &[Paper]) -> Result<Vec<Event>, Failure> {
         let withdrawal = self.replaced()?;
         let drafts: Vec<Draft> = withdrawal.into_iter().chain(drafts.iter().cloned()).collect();
         let source = text_of(&drafts, &self.voice);
@@ -135,7 +148,7 @@ impl<'a> Desk<'a> {
             match self.append(&head, &events, papers) {
                 Ok(head) => {
                     show(&format!("recorded: {head}\n"))?;
-                    return self.tell_changes(events, papers);
+                    return Ok(events);
                 }
                 Err(StoreError::Moved { .. }) => self.loaded = load(&self.args.port)?,
                 Err(error) => return Err(error.into()),

@@ -116,6 +116,7 @@ fn told_before<'a>(events: &'a [Event], task: &str) -> Option<&'a Event> {
         | What::PlanIssued
         | What::Told(_)
         | What::Ruled(_)
+        | What::Call(_)
         | What::Withdrawn { .. }
         | What::Confirmed { .. } => false,
     };

@@ -2,6 +2,8 @@
 
 pub mod args;
 pub mod arrivals;
+pub mod called;
+pub mod calls;
 pub mod changes;
 pub mod check;
 pub mod clock;

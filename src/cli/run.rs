@@ -5,7 +5,8 @@ use crate::cli::exit::{Exit, Failure};
 use crate::cli::screen::{tell, tell_findings};
 use crate::cli::tell as telling;
 use crate::cli::{
-    arrivals, changes, check, completions, man, mark, mend, now, order, plan, record, take, wind,
+    arrivals, called, calls, changes, check, completions, man, mark, mend, now, order, plan, record, take,
+    wind,
 };
 use clap::{CommandFactory, Parser};
 use std::ffi::OsString;
@@ -40,6 +41,8 @@ fn answer(command: &Command) -> Result<Exit, Failure> {
         Command::Plan(args) => plan::run(args),
         Command::Now(args) => now::run(args),
         Command::Changes(args) => changes::run(args),
+        Command::Calls(args) => calls::run(args),
+        Command::Called(args) => called::run(args),
         Command::Arrivals(args) => arrivals::run(args),
         Command::Wind(args) => wind::run(args),
         Command::Take(args) => take::run(args),

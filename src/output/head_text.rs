@@ -1,6 +1,7 @@
 //! The head of a plan: the few things that must be known before anything else is read.
 
 use crate::output::arrival_text::{Onset, counted_from, glued_chance, onset_sentence};
+use crate::output::call_text::overdue_words;
 use crate::output::clock_text::{Times, lasting};
 use crate::output::given_up_text::{write_if_adopted, write_overtaken};
 use crate::output::layout::Page;
@@ -40,6 +41,10 @@ pub fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan
         );
     }
     write_overtaken(page, times, plan);
+    if let Some((first, more)) = overdue_words(plan, times) {
+        let more = if more == 0 { String::new() } else { format!(" (and {more} more: see 'calls')") };
+        page.labelled(MARGIN, "CALL", &format!("{first}{more}"));
+    }
     page.labelled(MARGIN, "in force", &in_force(times, setting, plan));
     page.labelled(MARGIN, "advisory", &advisory(times, setting, plan.advisory.as_ref()));
     for other in &plan.other_advisories {

@@ -5,6 +5,8 @@ pub mod arrivals_text;
 pub mod asked;
 pub mod beside;
 pub mod beside_text;
+pub mod call_text;
+pub mod calls_text;
 pub mod changes_brief;
 pub mod changes_text;
 pub mod clock_text;

@@ -1,6 +1,7 @@
 //! What matters now, on one screen: at most 24 lines of 80 columns, whatever the plan holds.
 
 use crate::output::arrival_text::{Onset, apart, onset_in_short};
+use crate::output::call_text::overdue_words;
 use crate::output::clock_text::{Times, lasting};
 use crate::output::escape::visible;
 use crate::output::head_text::{currency, next_one, next_stage_line};
@@ -55,6 +56,9 @@ fn write_head(page: &mut Page, times: &Times, setting: &Setting, plan: &Plan) {
             count(first.endangers.len(), "task"),
         );
         at_most(page, "EARLIER", &words, 2, plan.overtaken.len() - 1);
+    }
+    if let Some((first, more)) = overdue_words(plan, times) {
+        at_most(page, "CALL", &first, 1, more);
     }
     at_most(page, "in force", &in_force(times, setting, plan), 2, 0);
     at_most(page, "advisory", &advisory(times, setting, plan), 2, 0);

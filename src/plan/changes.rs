@@ -3,7 +3,7 @@
 use crate::plan::draft::LEAST_SPARE;
 use crate::plan::news::news_words;
 use crate::plan::sheet::{Arrival, Plan, StageLine, StageStatus, TaskLine, TaskState};
-use crate::record::event::Event;
+use crate::record::event::{Event, What};
 use crate::record::mention::{MentionKind, mentions};
 use crate::time::clock::PortClock;
 use crate::time::moment::{Minutes, Moment};
@@ -317,7 +317,9 @@ impl Teller<'_> {
         if is_earlier {
             return String::from("it can go earlier now, and must for what waits for it");
         }
-        self.between.last().map_or_else(|| String::from("the clock"), |event| news_words(event, self.clock))
+        // A call tells what moved; it moves nothing.
+        let mut moving = self.between.iter().rev().filter(|event| !matches!(event.what, What::Call(_)));
+        moving.next().map_or_else(|| String::from("the clock"), |event| news_words(event, self.clock))
     }
 
     /// The last thing that was said of something between the two plans.

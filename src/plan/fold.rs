@@ -3,6 +3,8 @@
 use crate::plan::audit::audit;
 use crate::plan::audit_case::AuditInputs;
 use crate::plan::calendar::{Calendar, LONGEST_RECORD, REACH};
+use crate::plan::call_book::CallInputs;
+use crate::plan::calls::calls;
 use crate::plan::in_force::{at_adoption, in_force};
 use crate::plan::inputs::Inputs;
 use crate::plan::make::{Forecast, MakeInputs, make};
@@ -63,6 +65,10 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
             let plan = plan_then(inputs, (&odds, &calendar), then.situation(), plans.last(), number == end);
             plans.push(plan);
         }
+        if let Some(mut plan) = plans.pop() {
+            tell_who_must_know(inputs, then.situation(), &plans, &mut plan);
+            plans.push(plan);
+        }
         History { plans }
     })
 }
@@ -71,12 +77,26 @@ pub fn plan_at(inputs: &Inputs<'_>, now: Moment) -> History {
 /// without them. The same as the last plan of [`plan_at`], for the work of one plan: nothing before `now` can have changed.
 #[must_use]
 pub fn plan_again(inputs: &Inputs<'_>, earlier: &History, now: Moment) -> Plan {
-    let before = earlier.plans.iter().rev().find(|plan| plan.now < now);
+    let before = earlier.plans.partition_point(|plan| plan.now < now);
+    let before = earlier.plans.get(..before).unwrap_or(&[]);
     let first = earlier.plans.first().map_or(now, |plan| plan.now);
     let from = (first - REACH.0).max(now - LONGEST_RECORD);
     let calendar = Calendar::of(inputs.port, from, now + REACH.1);
     let odds = AllOdds::of(inputs, now, &[now]);
-    plan_then(inputs, (&odds, &calendar), &situation(inputs.events, now.to_utc()), before, true)
+    let then = situation(inputs.events, now.to_utc());
+    let mut plan = plan_then(inputs, (&odds, &calendar), &then, before.last(), true);
+    tell_who_must_know(inputs, &then, before, &mut plan);
+    plan
+}
+
+/// Gives a plan its calls: what differs from the plan issued last, and who has been told of it.
+fn tell_who_must_know(inputs: &Inputs<'_>, situation: &Situation, before: &[Plan], plan: &mut Plan) {
+    let issued_at = situation.issued.last().map(|said| Moment::at_or_after(said.known));
+    // What was issued at this very moment is this plan.
+    let issued = issued_at.map(|at| before.iter().chain([&*plan]).rev().find(|one| one.now <= at));
+    let issued = issued.flatten();
+    let found = calls(&CallInputs { port: inputs.port, situation, events: inputs.events, issued, plan });
+    plan.calls = found;
 }
 
 fn plan_then(

@@ -121,6 +121,7 @@ pub fn make(inputs: MakeInputs<'_>) -> Plan {
         if_adopted: adoption,
         clashes: made.clashes.iter().cloned().chain(begun_too_soon(work, rules, &timed, situation)).collect(),
         breaches: Vec::new(),
+        calls: Vec::new(),
         notes: standing_words(situation, &port.clock),
     };
     if with_reliefs {

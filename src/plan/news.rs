@@ -1,5 +1,6 @@
 //! What an event says, in a few words.
 
+use crate::record::call::{CallReport, CallStep};
 use crate::record::event::{Event, What};
 use crate::record::fact::{AnchorageState, Fact, Measure};
 use crate::record::ruling::Ruling;
@@ -69,9 +70,23 @@ fn what_words(what: &What, shown: &dyn Fn(DateTime<Utc>) -> String) -> String {
         What::TaskLeft { task, left } => format!("{task} still takes {left}"),
         What::Told(fact) => fact_words(fact, shown),
         What::Ruled(ruling) => ruling_words(ruling, shown),
+        What::Call(report) => call_words(report),
         What::Withdrawn { event } => format!("event {event} withdrawn"),
         What::Confirmed { event } => format!("event {event} confirmed"),
     }
+}
+
+/// "call C3F9A1 to Tug office about V04/sail: acknowledged".
+fn call_words(report: &CallReport) -> String {
+    let to = if report.to.is_empty() { String::new() } else { format!(" to {}", report.to) };
+    let about = if report.about.is_empty() { String::new() } else { format!(" about {}", report.about) };
+    let step = match report.step {
+        CallStep::Released => "released",
+        CallStep::Told => "told",
+        CallStep::Acknowledged => "acknowledged",
+        CallStep::NoAnswer => "no answer",
+    };
+    format!("call {}{to}{about}: {step}", report.call)
 }
 
 /// "bridge stops from Thu 17 Sep 18:00 -03 (21:00Z) until ...".

@@ -1,5 +1,6 @@
 //! A finished plan as plain data: the head, the stages, the tasks, what does not fit and what would help.
 
+use crate::plan::call::Call;
 use crate::rules::stage::StageDirection;
 use crate::rules::task::Stake;
 use crate::time::moment::{Minutes, Moment};
@@ -37,6 +38,8 @@ pub struct Plan {
     pub clashes: Vec<Clash>,
     /// What the audit found wrong with this plan; empty for a sound one.
     pub breaches: Vec<Breach>,
+    /// Who must be told what, most urgent first; of the last plan of a history only.
+    pub calls: Vec<Call>,
     /// Which of two equally named inputs was used and similar remarks, in words.
     pub notes: Vec<String>,
 }

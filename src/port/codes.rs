@@ -45,5 +45,9 @@ pub const BAD_TIDE: &str = "port-bad-tide";
 pub const BAD_OWN_VALUE: &str = "port-bad-own-value";
 /// A place that port.toml does not list.
 pub const UNKNOWN_PLACE: &str = "port-unknown-place";
+/// A pool that means.toml does not list.
+pub const UNKNOWN_POOL: &str = "port-unknown-pool";
+/// Two contacts for the same people or the same pool.
+pub const DUPLICATE_CONTACT: &str = "port-duplicate-contact";
 /// A berth that berths.toml does not list.
 pub const UNKNOWN_BERTH: &str = "port-unknown-berth";

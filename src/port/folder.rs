@@ -5,11 +5,13 @@ use crate::finding::page::Page;
 use crate::finding::source::SourceText;
 use crate::finding::table::{Item, Keys};
 use crate::port::codes;
+use crate::port::contact::Contact;
 use crate::port::fleet::{Berth, Plant, Ship};
 use crate::port::harbour::{Place, Port};
 use crate::port::kind::Kind;
 use crate::port::known::Known;
 use crate::port::means::Pool;
+use crate::port::reader_contact::read_contacts;
 use crate::port::reader_fleet::{read_berths, read_plant, read_ships};
 use crate::port::reader_means::read_pools;
 use crate::port::reader_places::{Head, read_clock, read_exercise, read_head, read_places};
@@ -62,6 +64,8 @@ pub struct Draft {
     pub plant: Vec<Plant>,
     /// Pools without faults.
     pub pools: Vec<Pool>,
+    /// Contacts without faults.
+    pub contacts: Vec<Contact>,
     /// Channels without faults.
     pub channels: Vec<Channel>,
     /// The tide, if it is given and without faults.
@@ -161,7 +165,9 @@ fn read_things(pages: &BTreeMap<&str, Page<'_>>, known: Known) -> Draft {
     let berths = files.get_mut("berths.toml").map(|file| read_berths(file, &known, clock_now));
     let ships = files.get_mut("ships.toml").map(|file| read_ships(file, &known, clock_now));
     let plant = files.get_mut("plant.toml").map(|file| read_plant(file, &known, clock_now));
-    let pools = files.get_mut("means.toml").map(|file| read_pools(file, clock_now));
+    let means = files.get_mut("means.toml");
+    let means = means.map(|file| (read_pools(file, clock_now), read_contacts(file, &known)));
+    let (pools, contacts) = means.unwrap_or_default();
     files.into_values().for_each(Keys::finish);
     Draft {
         clock,
@@ -169,7 +175,8 @@ fn read_things(pages: &BTreeMap<&str, Page<'_>>, known: Known) -> Draft {
         berths: berths.unwrap_or_default(),
         ships: ships.unwrap_or_default(),
         plant: plant.unwrap_or_default(),
-        pools: pools.unwrap_or_default(),
+        pools,
+        contacts,
         channels,
         has_tide: tide.is_some(),
         tide: tide.and_then(|read| read.tide),
@@ -224,6 +231,7 @@ impl Draft {
             ships: self.ships,
             plant: self.plant,
             pools: self.pools,
+            contacts: self.contacts,
             channels: self.channels,
             tide: self.tide,
         })
@@ -249,6 +257,7 @@ impl Draft {
             ships: copy.ships,
             plant: copy.plant,
             pools: copy.pools,
+            contacts: copy.contacts,
             channels: copy.channels,
             has_tide: copy.tide.is_some(),
             tide: copy.tide,

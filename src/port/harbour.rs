@@ -2,6 +2,7 @@
 
 use crate::geo::exposure::Exposure;
 use crate::geo::position::Position;
+use crate::port::contact::{Contact, is_same_name};
 use crate::port::fleet::{Berth, Plant, Ship};
 use crate::port::means::Pool;
 use crate::port::water::Channel;
@@ -39,6 +40,8 @@ pub struct Port {
     pub plant: Vec<Plant>,
     /// People, craft and machines that tasks share.
     pub pools: Vec<Pool>,
+    /// How people are reached.
+    pub contacts: Vec<Contact>,
     /// Channels.
     pub channels: Vec<Channel>,
     /// Water level; `None` if the port has no tide file.
@@ -79,6 +82,12 @@ impl Port {
     #[must_use]
     pub fn pool(&self, id: &str) -> Option<&Pool> {
         self.pools.iter().find(|pool| pool.id == id)
+    }
+
+    /// The contact of people by their name.
+    #[must_use]
+    pub fn contact(&self, who: &str) -> Option<&Contact> {
+        self.contacts.iter().find(|contact| is_same_name(&contact.who, who))
     }
 
     /// The channel with this id.

@@ -104,6 +104,7 @@ fn contradiction(fold: &Situation, event: &Event, clock: Option<&PortClock>) -> 
         | What::TaskLeft { .. }
         | What::Told(_)
         | What::Ruled(_)
+        | What::Call(_)
         | What::Withdrawn { .. }
         | What::Confirmed { .. }
         | What::PlanIssued => return None,
@@ -162,6 +163,7 @@ fn idle(fold: &Situation, event: &Event, is_there: &dyn Fn(usize) -> bool) -> Op
         | What::TaskLeft { .. }
         | What::Told(_)
         | What::Ruled(_)
+        | What::Call(_)
         | What::StageDeclared { .. }
         | What::TaskStarted { .. }
         | What::TaskDone { .. }

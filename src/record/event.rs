@@ -1,6 +1,7 @@
 //! One event in the port's record.
 
 use crate::finding::fault::Place;
+use crate::record::call::CallReport;
 use crate::record::fact::Fact;
 use crate::record::ruling::Ruling;
 use crate::record::taking::Taking;
@@ -167,6 +168,8 @@ pub enum What {
     Told(Fact),
     /// An order about a stage, a ship or a rule that moves no time by itself.
     Ruled(Ruling),
+    /// What became of a call to whoever must know something.
+    Call(CallReport),
     /// An earlier event was a mistake: from now on it counts as never said. Taken back itself, that event counts again.
     Withdrawn {
         /// The number of that event.

@@ -4,8 +4,8 @@ use crate::record::event::{Event, Retracted, What};
 use crate::record::fact::Fact;
 use crate::record::ruling::RulingKind;
 use crate::record::situation::{
-    Adopted, Observation, Outage, Outcome, Said, Situation, StageState, Started, TakenAdvisory, TaskState,
-    Told, Way,
+    Adopted, CallHeard, Observation, Outage, Outcome, Said, Situation, StageState, Started, TakenAdvisory,
+    TaskState, Told, Way,
 };
 use crate::time::moment::{Minutes, Moment};
 use crate::units::speed::Knots;
@@ -30,6 +30,7 @@ use std::collections::BTreeSet;
 /// * **Observation**: told again for the same place, time and averaging replaces.
 /// * **Facts and rulings**: of each thing the last counts; a service that resumes, or a place that is usable again, ends
 ///   what was told before. Declaring or lifting a stage ends a hold on it.
+/// * **Calls**: every report counts; it moves nothing, so no plan is made at its time.
 /// * **Withdrawn**: the event counts as never said from the time at which its withdrawal is known.
 /// * **Awaiting a second person**: it counts from its confirmation by somebody else.
 #[must_use]
@@ -125,7 +126,8 @@ impl Situation {
         if counts && matches!(&event.what, What::AdvisoryTaken(taking) if self.has_taken(taking)) {
             return;
         }
-        if self.changes.last() != Some(&event.known) {
+        let moves_nothing = matches!(event.what, What::Call(_));
+        if !moves_nothing && self.changes.last() != Some(&event.known) {
             self.changes.push(event.known);
         }
         if !counts {
@@ -137,6 +139,13 @@ impl Situation {
         }
         match &event.what {
             What::Confirmed { event: number } => self.confirm(*number, event, nth),
+            What::Call(report) => {
+                let who = match event.name.as_str() {
+                    "" => event.by.clone(),
+                    name => format!("{name}, {}", event.by),
+                };
+                self.calls.push(CallHeard { report: report.clone(), who, said: said_of(event, nth) });
+            }
             what => self.tell(what, said_of(event, nth)),
         }
     }
@@ -195,6 +204,10 @@ impl Situation {
             What::Ruled(ruling) => {
                 let (kind, about) = ruling.about();
                 self.rulings.insert((kind, about.to_owned()), Told { value: ruling.clone(), said });
+            }
+            What::Call(report) => {
+                let who = said.by.clone();
+                self.calls.push(CallHeard { report: report.clone(), who, said });
             }
             // Both act on other events, in the fold.
             What::Withdrawn { .. } | What::Confirmed { .. } => {}

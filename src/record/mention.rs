@@ -32,6 +32,8 @@ pub enum MentionKind {
     Ship,
     /// A file in the port's folder.
     File,
+    /// A call.
+    Call,
 }
 
 /// Everything `event` names, in the order written.
@@ -67,6 +69,7 @@ pub fn mentions(event: &Event) -> Vec<Mention<'_>> {
             vec![named(MentionKind::Stage, stage)]
         }
         What::Ruled(Ruling::Stay { ship, .. }) => vec![named(MentionKind::Ship, ship)],
+        What::Call(report) => vec![named(MentionKind::Call, report.call.as_str())],
         What::Ruled(Ruling::Waive { .. } | Ruling::Refuse { .. })
         | What::PlanIssued
         | What::Withdrawn { .. }

@@ -7,6 +7,7 @@ use crate::finding::table::{Item, Keys};
 use crate::record::codes;
 use crate::record::doubt::doubts;
 use crate::record::event::{Event, Retracted, What};
+use crate::record::reader_call;
 use crate::record::reader_fact;
 use crate::record::taking::read_taking;
 use crate::record::telling::{Telling, event_number, named, task_id, wind};
@@ -18,7 +19,7 @@ use crate::units::wind::Averaging;
 type Reading = for<'t> fn(&Telling<'_>, &mut Keys<'t>) -> Option<What>;
 
 /// The key of each kind of event, and how it is read.
-const KINDS: [(&str, Reading); 37] = [
+const KINDS: [(&str, Reading); 41] = [
     ("took_advisory", took_advisory),
     ("adopts_arrival", adopts_arrival),
     ("withdraws_arrival", withdraws_arrival),
@@ -54,6 +55,10 @@ const KINDS: [(&str, Reading); 37] = [
     ("permits_stay", reader_fact::permits_stay),
     ("waives", reader_fact::waives),
     ("refuses", reader_fact::refuses),
+    ("releases_call", reader_call::releases),
+    ("told", reader_call::told),
+    ("acknowledged", reader_call::acknowledged),
+    ("no_answer", reader_call::no_answer),
     ("withdraws", withdraws),
     ("confirms", confirms),
 ];

@@ -1,6 +1,7 @@
 //! The situation at a time: what follows from all that was known by then.
 
 use crate::finding::fault::Place;
+use crate::record::call::CallReport;
 use crate::record::event::Event;
 use crate::record::fact::{Fact, FactKind};
 use crate::record::ruling::{Ruling, RulingKind};
@@ -40,6 +41,8 @@ pub struct Situation {
     pub rulings: BTreeMap<(RulingKind, String), Told<Ruling>>,
     /// Orders that wait for a second person, by their number.
     pub waiting: BTreeMap<usize, Event>,
+    /// What became of calls, in order.
+    pub calls: Vec<CallHeard>,
     /// The distinct times at which something became known, in order: at each of them the plan is made again.
     pub changes: Vec<DateTime<Utc>>,
 }
@@ -65,6 +68,17 @@ pub struct Told<T> {
     /// The value.
     pub value: T,
     /// Who said so.
+    pub said: Said,
+}
+
+/// A report about a call, and who said so.
+#[derive(Clone, Debug, PartialEq)]
+pub struct CallHeard {
+    /// The report.
+    pub report: CallReport,
+    /// Who told it, with the name, if it was given.
+    pub who: String,
+    /// Who told it, and when.
     pub said: Said,
 }
 

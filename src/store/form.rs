@@ -1,8 +1,10 @@
 //! An event as the store keeps it: one JSON text whose keys are those of events.toml, times in UTC, quantities with units.
 
 use crate::advisory::choice::cycle_text;
+use crate::record::call::{CallReport, CallStep, Substance};
 use crate::record::event::{Event, Retracted, What};
 use crate::record::fact::{AnchorageState, Fact, Measure};
+use crate::record::reader_call::said_word;
 use crate::record::ruling::Ruling;
 use crate::time::moment::Minutes;
 use crate::units::length::Metres;
@@ -213,12 +215,36 @@ pub enum Said {
     Refuses {
         what: String,
     },
+    ReleasesCall(CallSaid),
+    Told(CallSaid),
+    Acknowledged(CallSaid),
+    NoAnswer(CallSaid),
     Withdraws {
         event: usize,
     },
     Confirms {
         event: usize,
     },
+}
+
+/// What an event says of a call.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+#[expect(
+    missing_docs,
+    reason = "each name is the key of events.toml, explained at `record::call::CallReport`"
+)]
+pub struct CallSaid {
+    pub call: String,
+    #[serde(default, skip_serializing_if = "String::is_empty")]
+    pub to: String,
+    #[serde(default, skip_serializing_if = "String::is_empty")]
+    pub about: String,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub start: Option<String>,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub said: Option<String>,
+    pub at: String,
 }
 
 /// How a time is written.
@@ -319,8 +345,30 @@ fn said(what: &What, t: Spell<'_>) -> Said {
         What::PlanIssued => Said::Issued {},
         What::Told(fact) => told(fact, t),
         What::Ruled(ruling) => ruled(ruling, t),
+        What::Call(report) => called(report, t),
         What::Withdrawn { event } => Said::Withdraws { event: *event },
         What::Confirmed { event } => Said::Confirms { event: *event },
+    }
+}
+
+fn called(report: &CallReport, t: Spell<'_>) -> Said {
+    let start = match report.substance {
+        Some(Substance::Start(start)) => Some(t(start)),
+        Some(_) | None => None,
+    };
+    let said = CallSaid {
+        call: report.call.clone(),
+        to: report.to.clone(),
+        about: report.about.clone(),
+        start,
+        said: report.substance.and_then(said_word).map(str::to_owned),
+        at: t(report.at),
+    };
+    match report.step {
+        CallStep::Released => Said::ReleasesCall(said),
+        CallStep::Told => Said::Told(said),
+        CallStep::Acknowledged => Said::Acknowledged(said),
+        CallStep::NoAnswer => Said::NoAnswer(said),
     }
 }
 

@@ -2,11 +2,13 @@
 
 use crate::advisory::choice::parse_cycle;
 use crate::finding::fault::Place;
+use crate::record::call::{CallReport, CallStep, Substance};
 use crate::record::event::{Event, Retracted, What};
 use crate::record::fact::{AnchorageState, Fact, Measure};
+use crate::record::reader_call::SAID;
 use crate::record::ruling::Ruling;
 use crate::record::taking::Taking;
-use crate::store::form::{Form, Said};
+use crate::store::form::{CallSaid, Form, Said};
 use crate::time::moment::Minutes;
 use crate::units::length::Metres;
 use crate::units::speed::Knots;
@@ -100,6 +102,10 @@ fn what(said: Said) -> Option<What> {
             What::Ruled(Ruling::Waive { waived: what, conditions, until: time(&until)? })
         }
         Said::Refuses { what } => What::Ruled(Ruling::Refuse { refused: what }),
+        Said::ReleasesCall(said) => called(said, CallStep::Released)?,
+        Said::Told(said) => called(said, CallStep::Told)?,
+        Said::Acknowledged(said) => called(said, CallStep::Acknowledged)?,
+        Said::NoAnswer(said) => called(said, CallStep::NoAnswer)?,
         Said::Withdraws { event } => What::Withdrawn { event },
         Said::Confirms { event } => What::Confirmed { event },
         Said::Stops { service, from, until } => {
@@ -144,6 +150,17 @@ fn what(said: Said) -> Option<What> {
             What::Told(Fact::Anchorage { spot: place, state, from: time(&from)? })
         }
     })
+}
+
+fn called(said: CallSaid, step: CallStep) -> Option<What> {
+    let CallSaid { call, to, about, start, said, at } = said;
+    let substance = match (start, said) {
+        (Some(start), None) => Some(Substance::Start(time(&start)?)),
+        (None, Some(word)) => Some(SAID.iter().find(|(known, _)| *known == word)?.1),
+        (None, None) => None,
+        (Some(_), Some(_)) => return None,
+    };
+    Some(What::Call(CallReport { call, step, to, about, substance, at: time(&at)? }))
 }
 
 fn retracts(task: String, what: &str) -> Option<What> {

@@ -68,7 +68,7 @@ impl<'a> Known<'a> {
             MentionKind::Member => ("work-unknown-event-member", "member of a pool", &self.members),
             MentionKind::Spot => ("work-unknown-event-spot", "place, berth or channel", &self.spots),
             MentionKind::Ship => ("work-unknown-event-ship", "ship", &self.ships),
-            MentionKind::File => return None,
+            MentionKind::File | MentionKind::Call => return None,
         };
         // Records are long, and a large port has hundreds of tasks.
         if self.all.contains(&(mention.kind, mention.id)) {
@@ -133,6 +133,7 @@ fn impossible_order(work: &WorkGraph, event: &Event) -> Option<Finding> {
         | What::TaskLeft { .. }
         | What::Told(_)
         | What::Ruled(_)
+        | What::Call(_)
         | What::Withdrawn { .. }
         | What::Confirmed { .. }
         | What::PlanIssued => return None,

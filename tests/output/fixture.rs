@@ -59,6 +59,7 @@ pub fn empty() -> Plan {
         duties: vec![],
         joint: None,
         if_adopted: Vec::new(),
+        calls: Vec::new(),
         overtaken: vec![],
         clashes: vec![],
         breaches: vec![],
@@ -267,6 +268,7 @@ pub fn rich() -> Plan {
         }],
         joint: Some(JointChance { chance: Chance::share(93, 100), tasks: 42, scenarios: 1000 }),
         if_adopted: Vec::new(),
+        calls: Vec::new(),
         overtaken: vec![Overtaken {
             place: "pilot-station".into(),
             adopted: at(18, 22, 0),

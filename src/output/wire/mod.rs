@@ -4,6 +4,7 @@
 //! whole minutes. Chances are shares between 0 and 1.
 
 pub mod arrivals;
+pub mod calls;
 pub mod changes;
 pub mod findings;
 pub mod head;

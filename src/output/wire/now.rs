@@ -2,6 +2,7 @@
 
 use crate::output::now_lists::{Now, NowOptions};
 use crate::output::setting::Setting;
+use crate::output::wire::calls::{CallOut, call};
 use crate::output::wire::head::{AdvisoryOut, ArrivalOut, advisory, arrival};
 use crate::output::wire::plan::{OvertakenOut, overtaken};
 use crate::output::wire::port::{PortOut, port};
@@ -33,6 +34,8 @@ pub struct NowOut {
     pub arrivals: Vec<ArrivalOut>,
     /// Adopted arrivals left behind by the computed ones.
     pub overtaken: Vec<OvertakenOut>,
+    /// Calls that nobody has confirmed in time, as in `calls`; everybody's.
+    pub calls_overdue: Vec<CallOut>,
     /// Given up, then late.
     pub no_longer_fits: Vec<TaskOut>,
     /// Planned time passed without a report.
@@ -69,6 +72,12 @@ pub fn now_out(plan: &Plan, setting: &Setting, options: &NowOptions, now: &Now) 
         advisory: plan.advisory.as_ref().map(advisory),
         arrivals: plan.arrivals.iter().filter(|one| one.is_reference).map(arrival).collect(),
         overtaken: plan.overtaken.iter().map(overtaken).collect(),
+        calls_overdue: plan
+            .calls
+            .iter()
+            .filter(|one| one.is_overdue(plan.now))
+            .map(|one| call(one, plan, setting))
+            .collect(),
         no_longer_fits: tasks(&now.no_longer_fits),
         unreported: tasks(&now.unreported),
         start_now: tasks(&now.start_now),

@@ -1,6 +1,7 @@
 //! A plan in JSON.
 
 use crate::output::setting::Setting;
+use crate::output::wire::calls::{CallOut, call};
 use crate::output::wire::changes::{MovedOut, moved};
 use crate::output::wire::head::{AdvisoryOut, ArrivalOut, advisory, arrival};
 use crate::output::wire::port::{PortOut, port};
@@ -46,6 +47,8 @@ pub struct PlanOut {
     pub moved: Vec<MovedOut>,
     /// What would help, earliest decision first.
     pub reliefs: Vec<ReliefOut>,
+    /// Who must be told what, most urgent first, as in `calls`.
+    pub calls: Vec<CallOut>,
     /// Duties.
     pub duties: Vec<DutyOut>,
     /// The chance that all hard tasks are done in time; null if no wind limits any.
@@ -233,6 +236,7 @@ pub fn plan_out(plan: &Plan, setting: &Setting, since_before: Option<&Changes>) 
         moved_since: since_before.map(|changes| time(changes.from)),
         moved: since_before.map(moved).unwrap_or_default(),
         reliefs: plan.reliefs.iter().map(relief).collect(),
+        calls: plan.calls.iter().map(|one| call(one, plan, setting)).collect(),
         duties: plan.duties.iter().map(duty).collect(),
         joint: plan.joint.map(|joint| JointOut {
             chance: chance(joint.chance),

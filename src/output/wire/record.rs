@@ -101,5 +101,6 @@ fn kind_key(kind: MentionKind) -> &'static str {
         MentionKind::File => "file",
         MentionKind::Spot => "spot",
         MentionKind::Ship => "ship",
+        MentionKind::Call => "call",
     }
 }
