@@ -94,7 +94,7 @@ fn call_about(
         substance: now,
         matter: Matter::Task { name: line.name.clone(), issued: known, latest: line.latest_start },
         place: place(inputs.port, line),
-        reason: reason(changes, line),
+        reason: reason(changes, inputs.plan, line),
         stake: line.stake,
         standing: told.standing,
         released_by: told.released_by,
@@ -102,10 +102,12 @@ fn call_about(
 }
 
 /// Why a task is not as it was issued; empty if nothing says so.
-fn reason(changes: &Changes, line: &TaskLine) -> String {
+fn reason(changes: &Changes, plan: &Plan, line: &TaskLine) -> String {
     let turned = changes.turned.iter().find(|turned| turned.id == line.id).map(|turned| &turned.cause);
     let moved = changes.moved.iter().find(|moved| moved.id == line.id).map(|moved| &moved.cause);
-    turned.or(moved).cloned().unwrap_or_default()
+    let cause = turned.or(moved).cloned().unwrap_or_default();
+    // A chain's last link may be a task alone.
+    if plan.task(&cause).is_some() { format!("it waits for {cause}") } else { cause }
 }
 
 fn place(port: &Port, line: &TaskLine) -> String {
