@@ -1,12 +1,15 @@
 //! Reading forecast-error tables: the shipped one, and each finding that a faulty one provokes.
 #![allow(clippy::unwrap_used, reason = "helpers of tests may fail loudly")]
 
-use snugdown::arrival::errors::{Basin, ErrorTables};
+use snugdown::arrival::basin::Basin;
+use snugdown::arrival::errors::ErrorTables;
 use snugdown::arrival::errors_reader::read_error_tables;
 use snugdown::finding::fault::Finding;
 use snugdown::finding::source::SourceText;
 
 const SHIPPED: &str = include_str!("../rules/forecast-errors.toml");
+
+const FITTED: &str = include_str!("../rules/forecast-errors-2006-2015.toml");
 
 const SMALL: &str = r#"[[table]]
 name = "mine"
@@ -85,17 +88,35 @@ fn a_column_left_out_where_it_may_be_is_zero_and_one_given_is_used() {
 }
 
 #[test]
+fn seas_outside_the_fit_say_so_wherever_their_odds_are() {
+    let tables = read(SHIPPED).unwrap();
+    for (basins, table) in tables.tables() {
+        let says = table.notes().iter().any(|note| note.starts_with("not fitted here"));
+        assert_eq!(says, !basins.contains(&Basin::Atlantic), "{}", table.name());
+    }
+}
+
+#[test]
+fn the_fitted_table_beside_the_shipped_one_is_read_and_scatters_more() {
+    let (shipped, fitted) = (read(SHIPPED).unwrap(), read(FITTED).unwrap());
+    let [of_today, of_then] = [&shipped, &fitted].map(|tables| tables.tables()[0].1.at(48.0).deviation);
+    assert!(of_then[0] > of_today[0] && of_then[1] > of_today[1] && of_then[2] > of_today[2]);
+}
+
+#[test]
 fn each_fault_has_its_code_and_place() {
     assert_eq!(told("along_nmi = [10, 20]", "along_nmi = [10, nan]"), [(6, "arrival-errors-range")]);
     assert_eq!(told("size_serial = [0.7, 0.7]", "size_serial = [0.7, 1.7]"), [(14, "arrival-errors-range")]);
-    assert_eq!(told("widen = 1.25", "widen = 0.5"), [(21, "arrival-errors-range")]);
+    assert_eq!(told("accuracy_power = 1", "accuracy_power = 9"), [(17, "arrival-errors-range")]);
+    assert_eq!(told("[elsewhere]", "along_by_wind = -3\n[elsewhere]"), [(21, "arrival-errors-range")]);
+    assert_eq!(told("widen = 1.25", "widen = 0.5"), [(23, "arrival-errors-range")]);
     assert_eq!(told("cross_nmi = [10, 20]", "cross_nmi = [10]"), [(7, "arrival-errors-length")]);
     assert_eq!(told("lead_h = [0, 12]", "lead_h = [12, 0]"), [(5, "arrival-errors-leads")]);
     assert_eq!(told("\"AL\"", "\"XX\""), [(3, "arrival-errors-basin")]);
     assert_eq!(told("\"AL\"", "\"AL\", \"AL\""), [(3, "arrival-errors-basin")]);
-    assert_eq!(told("table = \"mine\"", "table = \"nine\""), [(20, "arrival-errors-elsewhere")]);
+    assert_eq!(told("table = \"mine\"", "table = \"nine\""), [(22, "arrival-errors-elsewhere")]);
     assert_eq!(told("along_nmi", "along_miles"), [(6, "arrival-errors-unreadable")]);
-    assert_eq!(told("[elsewhere]", "[elsewhere"), [(19, "arrival-errors-unreadable")]);
+    assert_eq!(told("[elsewhere]", "[elsewhere"), [(21, "arrival-errors-unreadable")]);
 }
 
 #[test]

@@ -1,12 +1,14 @@
 //! An error table fitted to an archive.
 //!
-//! Deviations are mean absolute errors x 1.2533, as offices publish mean errors and as single wild forecasts weigh less in them. How they
+//! Deviations are mean absolute errors x 1.2533, as offices publish mean errors and as single wild forecasts weigh less in them; of
+//! size errors those of storms that reach far weigh more, as they come to more places. How deviations
 //! grow with wind, stated accuracy and reach is the least-squares slope of ln |error|. Serial correlations are those of the errors over
 //! their deviations.
 
 use super::Archive;
 use super::cases::{Case, LEADS_H, cases};
 use snugdown::arrival::errors::{ErrorRow, ErrorTable, Settings};
+use std::collections::BTreeMap;
 
 /// Leads of a table; 60 h lies half way between its neighbours.
 const TABLE_H: [f64; 9] = [0.0, 12.0, 24.0, 36.0, 48.0, 60.0, 72.0, 96.0, 120.0];
@@ -72,7 +74,9 @@ pub fn table(archive: &Archive, without: Option<&str>) -> ErrorTable {
         accuracy_fades_h: ACCURACY_FADES_H,
         scaling,
     };
-    let rows = rows(&scaled);
+    let reaches: BTreeMap<(usize, usize), f64> =
+        cases.iter().filter_map(|case| Some(((case.entry, case.lead), case.reach_nmi?[0]))).collect();
+    let rows = rows(&scaled, |case| reaches.get(case).copied().unwrap_or(0.0));
     ErrorTable::new("Atlantic, fitted", Vec::new(), rows, settings).unwrap_or_else(|error| panic!("{error}"))
 }
 
@@ -80,14 +84,16 @@ fn rounded(value: f64) -> f64 {
     libm::round(value * 100.0) / 100.0
 }
 
-fn rows(scaled: &[[Vec<(usize, f64)>; 8]; 4]) -> Vec<ErrorRow> {
+fn rows(scaled: &[[Vec<(usize, f64)>; 8]; 4], reach_of: impl Fn(&(usize, usize)) -> f64) -> Vec<ErrorRow> {
     let mut rows: Vec<ErrorRow> =
         TABLE_H.iter().map(|lead_h| ErrorRow { lead_h: *lead_h, ..ErrorRow::NONE }).collect();
     for component in 0..4 {
         let of = &scaled[component];
         let deviation: [f64; 8] = std::array::from_fn(|lead| {
-            OVER_MEAN * of[lead].iter().map(|(_, error)| error.abs()).sum::<f64>()
-                / of[lead].len().max(1) as f64
+            let weight = |entry: &usize| if component == 3 { reach_of(&(*entry, lead)) } else { 1.0 };
+            let weights: f64 = of[lead].iter().map(|(entry, _)| weight(entry)).sum();
+            OVER_MEAN * of[lead].iter().map(|(entry, error)| weight(entry) * error.abs()).sum::<f64>()
+                / weights.max(1e-9)
         });
         // What is measured at issue lies a quarter of the way from lead 0 to 12 h.
         let start = ((deviation[0] - 0.25 * deviation[1]) / 0.75).max(0.25 * deviation[0]);
@@ -120,7 +126,7 @@ fn rows(scaled: &[[Vec<(usize, f64)>; 8]; 4]) -> Vec<ErrorRow> {
 
 /// The correlation of two kinds of errors of the same advisories.
 fn correlation(a: &[(usize, f64)], b: &[(usize, f64)]) -> f64 {
-    let b: std::collections::BTreeMap<usize, f64> = b.iter().copied().collect();
+    let b: BTreeMap<usize, f64> = b.iter().copied().collect();
     let pairs: Vec<(f64, f64)> = a.iter().filter_map(|(entry, x)| Some((*x, *b.get(entry)?))).collect();
     let n = pairs.len().max(1) as f64;
     let (ma, mb) = (pairs.iter().map(|p| p.0).sum::<f64>() / n, pairs.iter().map(|p| p.1).sum::<f64>() / n);

@@ -52,16 +52,30 @@ fn line(rows: &[Row], i: usize, [low, high]: [f64; 2]) -> Option<Vec<String>> {
     let sums = Sums::of(rows, |row| {
         is_in(row).then(|| [100.0 * (row.happened(i) - row.chance(Teller::Ours, i)), 1.0])
     });
-    let interval = sums.interval();
+    let told = mean(&|row| row.chance(Teller::Ours, i));
+    let interval = widened(sums.interval(), mean(&|row| row.happened(i)), told, storms.len());
     let is_off = storms.len() >= ENOUGH_STORMS && (interval[0] > 0.0 || interval[1] < 0.0);
     Some(vec![
         LEADS_H[i].to_string(),
         format!("{low:.0} to {:.0}", high.min(100.0)),
         within.len().to_string(),
         storms.len().to_string(),
-        format!("{:.1}", mean(&|row| row.chance(Teller::Ours, i))),
+        format!("{told:.1}"),
         format!("{:.1}", mean(&|row| row.happened(i))),
         with_interval(sums.ratio(), interval, 1),
         if is_off { "off" } else { "" }.to_owned(),
     ])
+}
+
+/// Where the wind always came, or never, drawing storms again always finds the same. There the interval reaches as far as it would with
+/// as many independent trials as storms: were the true share beyond it, all of them alike had a chance below 5 %.
+fn widened([low, high]: [f64; 2], came: f64, told: f64, storms: usize) -> [f64; 2] {
+    let least = 100.0 * libm::pow(0.05, 1.0 / storms as f64);
+    if came >= 100.0 {
+        [least - told, high]
+    } else if came <= 0.0 {
+        [low, 100.0 - least - told]
+    } else {
+        [low, high]
+    }
 }

@@ -1,9 +1,9 @@
 //! Reads a file of forecast-error tables.
 
+use crate::arrival::basin::Basin;
 use crate::arrival::errors::{
-    ACCURACY_BOUNDS, Basin, COLUMNS, ErrorRow, ErrorTable, ErrorTables, FADING_BOUNDS, FOLLOWS_BOUNDS,
-    LEAD_BOUNDS, MUTUAL_BOUNDS, POWER_BOUNDS, RELAXATION_BOUNDS, SCALING, SCALING_BOUNDS, Settings,
-    is_within,
+    ACCURACY_BOUNDS, COLUMNS, ErrorRow, ErrorTable, ErrorTables, FADING_BOUNDS, FOLLOWS_BOUNDS, LEAD_BOUNDS,
+    MUTUAL_BOUNDS, POWER_BOUNDS, RELAXATION_BOUNDS, SCALING, SCALING_BOUNDS, Settings, is_within,
 };
 use crate::finding::fault::{Finding, nearest, sort_findings};
 use crate::finding::source::SourceText;
@@ -35,6 +35,7 @@ struct RawTable {
     name: Spanned<String>,
     basins: Vec<Spanned<String>>,
     sources: Vec<String>,
+    caution: Option<String>,
     radii_relaxation_h: Spanned<f64>,
     accuracy_usual_nmi: Spanned<f64>,
     accuracy_power: Spanned<f64>,
@@ -193,6 +194,10 @@ impl Reader<'_> {
             }),
         };
         let table = ErrorTable::new(raw.name.get_ref(), raw.sources.clone(), rows, settings).ok()?;
+        let table = match &raw.caution {
+            Some(caution) => table.with_note(caution.clone()),
+            None => table,
+        };
         (self.findings.len() == before).then_some(table)
     }
 

@@ -1,5 +1,6 @@
 //! Arrival: error tables, scenarios, and the chance that a wind reaches a place by a time.
 
+pub mod basin;
 pub mod course;
 pub mod drawing;
 pub mod earlier;

@@ -102,3 +102,54 @@ impl<'a> Spread<'a> {
         [norm.map(|norm| (1.0 - s) / norm), norm.map(|norm| s / norm)]
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::Spread;
+    use crate::arrival::errors::{ErrorRow, ErrorTable, Settings};
+    use crate::wind::structure::Expected;
+    use approx::assert_relative_eq;
+
+    /// Forecast points 12 h apart at the table's own deviations.
+    fn table() -> ErrorTable {
+        let settings = Settings {
+            intensity_with_size: 0.0,
+            size_follows_intensity: 0.5,
+            radii_relaxation_h: 36.0,
+            accuracy_usual_nmi: 20.0,
+            accuracy_power: 1.0,
+            accuracy_fades_h: 60.0,
+            scaling: [-0.5, 0.0, 0.5, -1.0],
+        };
+        let row = |lead_h: f64| ErrorRow { lead_h, deviation: [10.0, 10.0, 5.0, 0.2], ..ErrorRow::NONE };
+        ErrorTable::new("t", Vec::new(), vec![row(0.0), row(120.0)], settings).unwrap()
+    }
+
+    fn of(accuracy: f64) -> impl Fn(f64, f64) -> [f64; 4] {
+        move |hour, wind_kt| {
+            let table = table();
+            let spread =
+                Spread { table: &table, lead_at_issue_h: 0.0, accuracy, own: Vec::new(), widening: [1.0; 4] };
+            spread.at(hour, &Expected::new(wind_kt, 25.0, [[1.0; 4]; 3], 0.5)).0
+        }
+    }
+
+    #[test]
+    fn a_stronger_storm_is_better_forecast_in_place_and_worse_in_strength_by_the_given_powers() {
+        let deviation = of(1.0);
+        let (usual, stronger) = (deviation(24.0, 60.0), deviation(24.0, 120.0));
+        assert_relative_eq!(usual[0], 10.0, max_relative = 1e-12);
+        assert_relative_eq!(stronger[0], 10.0 / f64::sqrt(2.0), max_relative = 1e-12);
+        assert_relative_eq!(stronger[1], 10.0, max_relative = 1e-12);
+        assert_relative_eq!(stronger[2], 5.0 * f64::sqrt(2.0), max_relative = 1e-12);
+        assert!(stronger[3] < usual[3]);
+    }
+
+    #[test]
+    fn a_vague_centre_tells_less_the_further_ahead() {
+        let (usual, vague) = (of(1.0), of(4.0));
+        for (hour, factor) in [(0.0, 4.0), (30.0, 2.0), (60.0, 1.0), (90.0, 1.0)] {
+            assert_relative_eq!(vague(hour, 60.0)[1], factor * usual(hour, 60.0)[1], max_relative = 1e-12);
+        }
+    }
+}
