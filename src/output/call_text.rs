@@ -178,7 +178,7 @@ pub fn overdue_words(plan: &Plan, times: &Times) -> Option<(String, usize)> {
     let late: Vec<&Call> = plan.calls.iter().filter(|call| call.is_overdue(plan.now)).collect();
     let first = late.first()?;
     let by = times.local_day(times.told_down(first.by));
-    let words = format!("{} UNANSWERED past {by}: {} about {}", first.id, first.to.words(), first.about);
+    let words = format!("UNANSWERED past {by}: {} {} to {}", first.id, first.about, first.to.words());
     Some((words, late.len() - 1))
 }
 

@@ -125,7 +125,9 @@ fn ship_of<'a>(port: &'a Port, task: &str) -> Option<&'a Ship> {
 /// the port's authority is told if nobody is named.
 fn addressees(port: &Port, old: &TaskLine, line: &TaskLine) -> Vec<Addressee> {
     let ship = ship_of(port, &line.id).map(|ship| format!("{} {}", ship.id, ship.name)).unwrap_or_default();
-    let ship = if is_same_name(&line.who, &port.authority) { String::new() } else { ship };
+    // An office serves every ship; a master, an agent or an officer belongs to one.
+    let is_office = port.contact(&line.who).is_some_and(|contact| !contact.pools.is_empty());
+    let ship = if is_office || is_same_name(&line.who, &port.authority) { String::new() } else { ship };
     let plain = |who: &String| Addressee { who: who.clone(), ship: String::new() };
     let pools = old.members.iter().chain(&line.members).map(|(pool, _)| office(port, pool));
     let all = std::iter::once(Addressee { who: line.who.clone(), ship })
