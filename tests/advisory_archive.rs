@@ -7,6 +7,7 @@ mod archive;
 use archive::Archive;
 use archive::best_track::There;
 use snugdown::advisory::forecast::{Advisory, Quadrants, Reach};
+use snugdown::units::length::NauticalMiles;
 use snugdown::wind::sphere::vector;
 use std::path::Path;
 
@@ -18,16 +19,13 @@ fn advisory<'a>(archive: &'a Archive, key: &str) -> &'a Advisory {
     &archive.entries.iter().find(|entry| entry.key == key).unwrap().advisory
 }
 
-fn quadrants(reach: Reach) -> [f64; 4] {
-    let Reach::Given(quadrants) = reach else { panic!("not given") };
-    quadrants.clockwise().map(|miles| miles.get())
-}
-
 #[test]
 fn radii_are_as_written_none_where_the_wind_is_weaker_and_not_given_where_it_is_not() {
     let archive = read();
     let weak = advisory(&archive, "AL052006");
-    assert_eq!(quadrants(weak.points[0].radii.gale), [75.0, 0.0, 0.0, 40.0]);
+    let [northeast, none, northwest] = [75.0, 0.0, 40.0].map(|miles| NauticalMiles::new(miles).unwrap());
+    let written = Quadrants { northeast, southeast: none, southwest: none, northwest };
+    assert_eq!(weak.points[0].radii.gale, Reach::Given(written));
     assert_eq!(weak.points[0].radii.storm, Reach::Given(Quadrants::NONE));
     let strong = advisory(&archive, "AL092008");
     let last = strong.points.last().unwrap();

@@ -69,11 +69,11 @@ fn body(table: &ErrorTable, seasons: &[String]) -> String {
         writeln!(text, "{name:<16} = [{}]", numbers.join(", ")).unwrap();
     };
     column("lead_h", &leads);
-    for component in 0..4 {
-        column(COLUMNS[0][component].name, &leads.map(|lead| table.at(lead).deviation[component]));
+    for (i, name) in COLUMNS[0].iter().enumerate() {
+        column(name.name, &leads.map(|lead| table.at(lead).deviation[i]));
     }
-    for component in 0..4 {
-        column(COLUMNS[2][component].name, &leads.map(|lead| table.at(lead).serial[component]));
+    for (i, name) in COLUMNS[2].iter().enumerate() {
+        column(name.name, &leads.map(|lead| table.at(lead).serial[i]));
     }
     let settings = table.settings();
     for (name, value) in SCALING.iter().zip(settings.scaling) {

@@ -103,13 +103,7 @@ pub const SETTINGS: Settings = Settings {
 
 /// A table whose errors are constant in time and, with a serial correlation of one, frozen.
 pub fn constant(along: f64, cross: f64) -> ErrorTable {
-    let row = ErrorRow {
-        lead_h: 0.0,
-        deviation: [along, cross, 0.0, 0.0],
-        bias: [0.0; 4],
-        serial: [1.0; 4],
-        ..ErrorRow::NONE
-    };
+    let row = ErrorRow { lead_h: 0.0, deviation: [along, cross, 0.0, 0.0], bias: [0.0; 4], serial: [1.0; 4] };
     ErrorTable::new("constant", Vec::new(), vec![row], SETTINGS).unwrap()
 }
 
