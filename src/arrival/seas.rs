@@ -5,7 +5,7 @@
 //!
 //! R(t) = R(0) x G(t) / G(0), with G the mean reach of 34 kt as the scenario has it (of a storm just of gale force where it
 //! is weaker), and G(0) that of the forecast at issue. Nothing is known of shores: seas behind land do not reach as far.
-//! Looked at every hour, straight between.
+//! Looked at every hour in which they may be near, straight between.
 
 use crate::advisory::forecast::{Advisory, Quadrants};
 use crate::arrival::course::Course;
@@ -39,28 +39,56 @@ impl HighSeas {
     #[must_use]
     pub fn follow(&self, course: &Course, scenario: &Scenario, place: Vector) -> ScenarioOnset {
         let mut told = ScenarioOnset::NEVER;
-        let mut before: Option<(f64, f64)> = None;
-        for (k, step) in course.steps.iter().enumerate() {
-            let Some((gap, bearing)) = self.gap_nmi(course, scenario, k, place) else { break };
-            let crossing = before.map(|(minute, last)| minute + (step.minute - minute) * last / (last - gap));
-            let is_met = gap <= 0.0;
-            let was_met = before.is_some_and(|(_, last)| last <= 0.0);
-            if k > course.end {
-                told.is_cut_off |= is_met && told.onset == Onset::Never;
-            } else if is_met && told.onset == Onset::Never {
-                let minute = crossing.map_or(0, |minute| minute as i64);
-                let at = course.issued + Minutes::new(minute);
-                told.onset = if minute < 1 { Onset::Already } else { Onset::At(at) };
-                told.from = bearing;
-            } else if was_met && !is_met {
-                told.until = crossing.map(|minute| course.issued + Minutes::new(f64::ceil(minute) as i64));
+        let mut before: Option<(usize, f64)> = None;
+        let widest = self.share.into_iter().fold(0.0, f64::max);
+        let mut stop = 0;
+        while let Some(from) = course.stops.get(stop) {
+            let out_of_reach = scenario.stops_out_of_reach(stop, place, widest);
+            stop += out_of_reach.max(1);
+            if out_of_reach > 0 {
+                continue;
             }
-            if is_met && k <= course.end {
-                told.until = None;
+            let to = course.stops.get(stop).copied().unwrap_or(*from);
+            for k in *from..=to {
+                if before.is_none_or(|(last, _)| last < k) {
+                    before = self.pass(course, scenario, (k, place), before, &mut told);
+                }
             }
-            before = Some((step.minute, gap));
         }
         told
+    }
+
+    /// Takes in step `k` after what was seen one step before, if it was looked at.
+    fn pass(
+        &self,
+        course: &Course,
+        scenario: &Scenario,
+        (k, place): (usize, Vector),
+        before: Option<(usize, f64)>,
+        told: &mut ScenarioOnset,
+    ) -> Option<(usize, f64)> {
+        let (gap, bearing) = self.gap_nmi(course, scenario, k, place)?;
+        let minute = course.steps.get(k)?.minute;
+        let last = before.filter(|(last, _)| last + 1 == k);
+        let crossing = last.and_then(|(last, was)| {
+            let then = course.steps.get(last)?.minute;
+            Some(then + (minute - then) * was / (was - gap))
+        });
+        let (is_met, was_met) = (gap <= 0.0, last.is_some_and(|(_, was)| was <= 0.0));
+        if k > course.end {
+            told.is_cut_off |= is_met && told.onset == Onset::Never;
+        } else if is_met && told.onset == Onset::Never {
+            let minute = crossing.unwrap_or(minute) as i64;
+            let at = course.issued + Minutes::new(minute);
+            told.onset = if minute < 1 { Onset::Already } else { Onset::At(at) };
+            told.from = bearing;
+        } else if was_met && !is_met {
+            told.until = crossing.map(|minute| course.issued + Minutes::new(f64::ceil(minute) as i64));
+        }
+        if is_met && k <= course.end {
+            told.until = None;
+        }
+        Some((k, gap))
     }
 
     /// Distance of the place from the centre less the reach of the seas, n mi; and on which true bearing from the place
