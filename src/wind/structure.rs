@@ -107,7 +107,7 @@ pub struct Expected {
     /// How far radii follow the strength, 0..[`MOST_FOLLOWING`].
     follows: f64,
     /// For the three given speeds the mean reach of the four quadrants in n mi in a storm of any strength, over
-    /// [`Expected::growth`].
+    /// g (see [`Expected::reach`]).
     base_nmi: [f64; 3],
     /// Each quadrant's reach as a multiple of that mean.
     shapes: [[f64; 4]; 3],
@@ -172,7 +172,7 @@ impl Expected {
     /// The reach in n mi of the three given speeds.
     ///
     /// R = size x R_f x g(u / V) / g(u / V_f), u the given speed, R_f the forecast reach, V the realised and V_f the forecast wind (u, if
-    /// it is below); zero where V is below u. g is [`growth`]. As the storm grows stronger than forecast, quadrants below the storm's mean
+    /// it is below); zero where V is below u. g(x) = 1 - c x^3, c how far radii follow the strength. As the storm grows stronger than forecast, quadrants below the storm's mean
     /// come up to it.
     #[must_use]
     pub fn reach(&self, change: &Change) -> [[f64; 4]; 3] {
