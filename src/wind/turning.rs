@@ -51,12 +51,12 @@ pub fn fan(directions: &[Bearing]) -> Option<[Bearing; 3]> {
     let mean = Bearing::wrapped(libm::atan2(east, north).to_degrees());
     let mut offsets: Vec<f64> = directions.iter().map(|direction| signed(mean, *direction)).collect();
     offsets.sort_unstable_by(f64::total_cmp);
-    let point = |tenths: usize| {
-        let rank = (offsets.len() * tenths).div_ceil(10).saturating_sub(1);
-        let offset = offsets.get(rank).copied().unwrap_or(0.0);
-        Bearing::wrapped(mean.get() + offset)
-    };
-    Some([point(1), point(5), point(9)])
+    // Counted from both ends alike, so that a mirrored storm has the mirrored fan.
+    let outer = offsets.len().div_ceil(10) - 1;
+    let last = offsets.len() - 1;
+    let at = |index: usize| offsets.get(index).copied().unwrap_or(0.0);
+    let middle = (at(last / 2) + at(offsets.len() / 2)) / 2.0;
+    Some([at(outer), middle, at(last - outer)].map(|offset| Bearing::wrapped(mean.get() + offset)))
 }
 
 /// Below this length of the mean unit vector directions have no middle worth telling. Our choice.
